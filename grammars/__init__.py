@@ -1,0 +1,1 @@
+"""The grammars of the languages that tardigate reads, shipped as package data."""

@@ -1,0 +1,1 @@
+"""Tardigate: when every net of a gate-level design settles, and which chain of gates sets the limit."""

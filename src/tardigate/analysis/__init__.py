@@ -1,0 +1,1 @@
+"""Analysis: graph to facts; integers and times, no names and no text."""

@@ -1,0 +1,1 @@
+"""Cli: argv to exit status."""

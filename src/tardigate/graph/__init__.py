@@ -1,0 +1,1 @@
+"""Graph: the flat design to vertices (net, edge) and hops."""

@@ -1,0 +1,148 @@
+"""The hops of a flat design, kind by kind, before they are in any order.
+
+Takes the flat columns, gives columns of hops and of arcs (hops without their edges). Hops from or to an
+open pin or a constant net are left out. Does not check anything.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tardigate.netlist.flat import CONSTANTS, Flat
+from tardigate.parts.kind import Kind
+
+Ints = NDArray[np.int32]
+
+
+@dataclass(frozen=True, slots=True)
+class ClockPins:
+    """Register clock pins on a net, one a point beyond the nets: `instance`, `pin` int32, in that order."""
+
+    instance: Ints
+    pin: Ints
+
+
+@dataclass(frozen=True, slots=True)
+class Hops:
+    """Hops in order of kind, row and instance: int32 columns `tail`, `head` (vertices), `row`, `instance`."""
+
+    tail: Ints
+    head: Ints
+    row: Ints
+    instance: Ints
+
+
+@dataclass(frozen=True, slots=True)
+class Arcs:
+    """Hops without their edges, by points: int32 columns `tail`, `head`, `instance`, `pin_in`, `pin_out`."""
+
+    tail: Ints
+    head: Ints
+    instance: Ints
+    pin_in: Ints
+    pin_out: Ints
+
+
+@dataclass(frozen=True, slots=True)
+class Batch:
+    """The part instances of one kind: its number, the first row of its delays, and `nets` int32[pins, members]."""
+
+    number: int
+    kind: Kind
+    first_row: int
+    members: Ints
+    nets: Ints
+
+
+def batches(flat: Flat) -> Iterator[Batch]:
+    """Yield the part instances kind by kind, in order of kind, in order of instance within."""
+    narrow = np.uint16 if len(flat.kinds) <= 1 << 16 else np.int32  # 16 bits are sorted by digits
+    order = np.argsort(flat.inst_kind.astype(narrow), kind="stable").astype(np.int32)
+    start = np.concatenate(([0], np.cumsum(np.bincount(flat.inst_kind, minlength=len(flat.kinds)))))
+    row = 0
+    for number, kind in enumerate(flat.kinds):
+        members = order[start[number] : start[number + 1]]
+        if len(members):
+            pins = flat.pin_start[members] + np.arange(len(kind.pins))[:, None]
+            yield Batch(number, kind, row, members, flat.pin_net[pins])
+        row += kind.hops
+
+
+def find_clock_pins(flat: Flat) -> ClockPins:
+    """Return the register clock pins that launch a hop onto a net, in order of instance and pin."""
+    found = [np.empty((0, 2), np.int64)]
+    for batch in batches(flat):
+        kind = batch.kind
+        for pin in np.unique(kind.hop_from[kind.launches]):
+            heads = kind.hop_to[kind.launches & (kind.hop_from == pin)]
+            live = (batch.nets[pin] >= CONSTANTS) & (batch.nets[heads] >= CONSTANTS).any(axis=0)
+            members = batch.members[live]
+            found.append(np.stack([members, np.full(len(members), pin)], axis=1))
+    pairs = np.concatenate(found)
+    pairs = pairs[np.lexsort((pairs[:, 1], pairs[:, 0]))].astype(np.int32)
+    return ClockPins(np.ascontiguousarray(pairs[:, 0]), np.ascontiguousarray(pairs[:, 1]))
+
+
+def expand_hops(flat: Flat, clock_pins: ClockPins) -> Hops:
+    """Return every hop of every part instance."""
+    found: list[tuple[Ints, Ints, Ints, Ints]] = []
+    for batch in batches(flat):
+        kind = batch.kind
+        tail, head, live = _ends(batch, kind.hop_from, kind.hop_to, kind.launches, flat, clock_pins)
+        tail = 2 * tail + kind.from_edge[:, None]
+        head = 2 * head + kind.to_edge[:, None]
+        row = np.broadcast_to(np.arange(kind.hops, dtype=np.int32)[:, None] + batch.first_row, tail.shape)
+        found.append(_picked(live, tail, head, row, np.broadcast_to(batch.members, tail.shape)))
+    return Hops(*_joined(found, 4))
+
+
+def expand_arcs(flat: Flat, clock_pins: ClockPins) -> Arcs:
+    """Return an arc for each pair of pins of each part instance that hops join."""
+    found: list[tuple[Ints, Ints, Ints, Ints, Ints]] = []
+    for batch in batches(flat):
+        kind = batch.kind
+        ways = np.unique(np.stack([kind.hop_from, kind.hop_to, kind.launches], axis=1), axis=0)
+        pin_in, pin_out, launches = ways[:, 0], ways[:, 1], ways[:, 2].astype(bool)
+        tail, head, live = _ends(batch, pin_in, pin_out, launches, flat, clock_pins)
+        members = np.broadcast_to(batch.members, tail.shape)
+        pins = (np.broadcast_to(pin.astype(np.int32)[:, None], tail.shape) for pin in (pin_in, pin_out))
+        found.append(_picked(live, tail, head, members, *pins))
+    return Arcs(*_joined(found, 5))
+
+
+def _ends(
+    batch: Batch,
+    pin_in: NDArray[np.integer],
+    pin_out: NDArray[np.integer],
+    launches: NDArray[np.bool_],
+    flat: Flat,
+    clock_pins: ClockPins,
+) -> tuple[Ints, Ints, NDArray[np.bool_]]:
+    """Return the points at both ends, int32[ways, members], and which of them are both on a net."""
+    tail, head = batch.nets[pin_in], batch.nets[pin_out]
+    live = (tail >= CONSTANTS) & (head >= CONSTANTS)
+    for way in np.flatnonzero(launches):
+        tail[way] = flat.nets + _clock_point(clock_pins, batch.members, int(pin_in[way]))
+    return tail, head, live
+
+
+def _clock_point(clock_pins: ClockPins, members: Ints, pin: int) -> Ints:
+    """Return the number of each member's clock pin, or any number where it has none."""
+    keys = clock_pins.instance.astype(np.int64) << 32 | clock_pins.pin
+    return np.searchsorted(keys, members.astype(np.int64) << 32 | pin).astype(np.int32)
+
+
+def _picked(live: NDArray[np.bool_], *columns: Ints) -> tuple[Ints, ...]:
+    if live.all():
+        return tuple(column.reshape(-1) for column in columns)
+    return tuple(column[live] for column in columns)
+
+
+def _joined(found: list[tuple[Ints, ...]], width: int) -> list[Ints]:
+    if not found:
+        return [np.empty(0, np.int32) for _ in range(width)]
+    return [np.concatenate(column).astype(np.int32, copy=False) for column in zip(*found, strict=True)]

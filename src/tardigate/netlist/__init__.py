@@ -1,0 +1,1 @@
+"""Netlist: trees and parts to the flat design in columns."""

@@ -1,0 +1,72 @@
+"""Names and places of the flat design's nets and part instances, rebuilt when asked for.
+
+Takes numbers, gives hierarchical names (`alu.u3.carry[2]`) and spans, and finds numbers by name.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+
+from tardigate.netlist.flat import CONSTANTS, Flat
+from tardigate.source.span import Span
+
+CONSTANT_NAMES = ("1'b0", "1'b1", "1'bx", "1'bz")
+
+
+class Names:
+    """The names of one flat design."""
+
+    def __init__(self, flat: Flat) -> None:
+        self._flat = flat
+        self._paths: dict[int, str] = {0: ""}
+        self._scope_of: dict[str, int] | None = None
+        self._net_of_raw: dict[int, int] | None = None
+
+    def scope(self, scope: int) -> str:
+        """Return the path of a scope with a dot at its end; the top's is empty."""
+        chain = []
+        while scope not in self._paths:
+            chain.append(scope)
+            scope = int(self._flat.scope_parent[scope])
+        path = self._paths[scope]
+        for below in reversed(chain):
+            path = self._paths[below] = f"{path}{self._flat.scope_name[below]}."
+        return path
+
+    def net(self, net: int) -> str:
+        """Return a net's name, in the outermost scope that has it."""
+        if net < CONSTANTS:
+            return CONSTANT_NAMES[net]
+        raw = int(self._flat.net_raw[net])
+        scope = int(np.searchsorted(self._flat.scope_net, raw, "right")) - 1
+        template = self._flat.templates[self._flat.scope_template[scope]]
+        return self.scope(scope) + template.net_names[raw - int(self._flat.scope_net[scope])]
+
+    def net_place(self, net: int) -> Span | None:
+        """Return where a net is declared; None for a constant."""
+        if net < CONSTANTS:
+            return None
+        raw = int(self._flat.net_raw[net])
+        scope = int(np.searchsorted(self._flat.scope_net, raw, "right")) - 1
+        template = self._flat.templates[self._flat.scope_template[scope]]
+        return template.text.span(int(template.net_place[raw - int(self._flat.scope_net[scope])]))
+
+    def _inst(self, inst: int) -> tuple[int, int]:
+        scope = int(np.searchsorted(self._flat.scope_inst, inst, "right")) - 1
+        return scope, inst - int(self._flat.scope_inst[scope])
+
+    def instance(self, inst: int) -> str:
+        """Return a part instance's name; one without a name is called by its kind and line, `and:12`."""
+        scope, local = self._inst(inst)
+        template = self._flat.templates[self._flat.scope_template[scope]]
+        name = template.inst_names[local]
+        if not name:
+            kind = self._flat.kinds[self._flat.inst_kind[inst]].name.replace(" ", ":")
+            name = f"{kind}:{template.text.span(int(template.inst_place[local])).line}"
+        return self.scope(scope) + name
+
+    def place(self, inst: int) -> Span:
+        """Return where a part instance is written."""
+        scope, local = self._inst(inst)
+        template = self._flat.templates[self._flat.scope_template[scope]]
+        return template.text.span(int(template.inst_place[local]))

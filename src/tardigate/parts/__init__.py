@@ -1,0 +1,1 @@
+"""Parts: trees to parts, the one model of a delay description."""

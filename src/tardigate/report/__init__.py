@@ -1,0 +1,1 @@
+"""Report: facts and names to things to see."""

@@ -1,0 +1,1 @@
+"""Source: files to text with places; diagnostics as data."""

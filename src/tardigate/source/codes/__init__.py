@@ -1,0 +1,1 @@
+"""The one table of diagnostic codes, one TOML file a reader."""

@@ -1,0 +1,43 @@
+"""Files as they were read.
+
+Takes paths, gives bytes with their paths. Does not look at what is written in them.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from pathlib import Path
+
+from tardigate.source.diagnostic import Diagnostic
+from tardigate.source.faults import InputRefusedError
+from tardigate.source.span import Span, span_in
+
+LARGEST_FILE = 1 << 30
+"""Bytes; offsets are kept in 32 bits further on."""
+
+
+@dataclass(frozen=True, slots=True)
+class SourceFile:
+    """One file: its path as the user wrote it, and its bytes."""
+
+    path: str
+    data: bytes
+
+    def span(self, start: int, stop: int) -> Span:
+        """Return the span of the bytes from `start` to before `stop`."""
+        return span_in(self.path, self.data, start, stop)
+
+
+def read_file(path: str | Path, asked_at: Span | None = None) -> SourceFile:
+    """Read a file; `asked_at` is the place that asks for it, where one does.
+
+    Raises InputRefusedError (U101: cannot be read, U102: too large).
+    """
+    try:
+        size = Path(path).stat().st_size
+        if size > LARGEST_FILE:
+            raise InputRefusedError((Diagnostic.of("U102", asked_at, path=str(path), size=size),))
+        return SourceFile(str(path), Path(path).read_bytes())
+    except (OSError, ValueError) as error:
+        reason = getattr(error, "strerror", None) or str(error)
+        raise InputRefusedError((Diagnostic.of("U101", asked_at, path=str(path), reason=reason),)) from None

@@ -1,0 +1,52 @@
+"""Where something stands in a file, complete enough to be shown without the file.
+
+Takes offsets and bytes, gives spans. Does not read files and does not check that the file still says so.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+SNIPPET = 320
+"""Longest piece of a source line that a span keeps, in characters."""
+
+
+@dataclass(frozen=True, slots=True, order=True)
+class Span:
+    """A piece of one line of a file.
+
+    `line` and `column` count from 1, `column` in characters (a tab is one); `length` is the number of
+    characters on that line; `snippet` is the line, or the part of a long one that begins at column
+    `snippet_column`. `start` and `stop` are byte offsets into the file, `stop` past the end.
+    """
+
+    path: str
+    line: int
+    column: int
+    length: int
+    snippet: str
+    snippet_column: int
+    start: int
+    stop: int
+
+    def __str__(self) -> str:
+        return f"{self.path}:{self.line}:{self.column}"
+
+
+def span_in(path: str, data: bytes, start: int, stop: int) -> Span:
+    """Make the span of `data[start:stop]`, cut at the end of its first line."""
+    start = max(0, min(start, len(data)))
+    stop = max(start, min(stop, len(data)))
+    line_start = data.rfind(b"\n", 0, start) + 1
+    line_stop = data.find(b"\n", start)
+    if line_stop < 0:
+        line_stop = len(data)
+    line = data.count(b"\n", 0, start) + 1
+    before = data[line_start:start].decode("utf-8", "replace")
+    inside = data[start : min(stop, line_stop)].decode("utf-8", "replace")
+    column = len(before) + 1
+    text = data[line_start : min(line_stop, start + 4 * SNIPPET)].decode("utf-8", "replace").rstrip("\r")
+    first = 0 if column <= SNIPPET - 40 else column - SNIPPET // 2
+    snippet = text[first : first + SNIPPET]
+    length = max(1, min(len(inside), SNIPPET))
+    return Span(path, line, column, length, snippet, first + 1, start, stop)

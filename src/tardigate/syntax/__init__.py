@@ -1,0 +1,1 @@
+"""Syntax: text to trees."""

@@ -1,0 +1,159 @@
+"""Numbers for names, in bulk: equal words get equal numbers, exactly.
+
+Takes a text and where its words stand, gives a number for each word and the words themselves when asked.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+_MULTIPLIER = np.uint64(0x9E3779B97F4A7C15)
+_FINISHER = np.uint64(0xD6E8FEB86659FD93)
+_SHIFT = np.uint64(29)
+_HALF = np.uint64(32)
+_MASKS = np.array([0] + [(1 << 8 * i) - 1 for i in range(1, 9)], dtype=np.uint64)
+
+
+@dataclass(frozen=True, slots=True)
+class Interned:
+    """The names of a text, without repeats.
+
+    `ids` int32[words]: the number of each word's name. `start`, `stop` int32[names]: where the first word of
+    that name stands. `hashes` uint64[names], ascending: the order of the names.
+    """
+
+    data: bytes
+    ids: NDArray[np.int32]
+    start: NDArray[np.int32]
+    stop: NDArray[np.int32]
+    hashes: NDArray[np.uint64]
+    spill: dict[bytes, int]
+
+    def __len__(self) -> int:
+        return len(self.start)
+
+    def text(self, name: int) -> str:
+        """Return the name with a number."""
+        return self.data[self.start[name] : self.stop[name]].decode("latin-1")
+
+    def find(self, text: str) -> int:
+        """Return the number of a name, or -1 when the text does not have it."""
+        return int(self.find_all((text,))[0])
+
+    def find_all(self, texts: Sequence[str]) -> NDArray[np.int32]:
+        """Return the numbers of names, int32[texts], -1 for those that the text does not have."""
+        found = np.full(len(texts), -1, np.int32)
+        if not len(self.hashes):
+            return found
+        words = [text.encode("utf-8", "surrogateescape") for text in texts]
+        stop = np.cumsum([len(word) for word in words])
+        start = np.concatenate(([0], stop[:-1]))
+        keys = _keys(b"".join(words), start, stop)
+        near = np.minimum(np.searchsorted(self.hashes, keys), len(self.hashes) - 1)
+        for at in np.flatnonzero(self.hashes[near] == keys):
+            if self.data[self.start[near[at]] : self.stop[near[at]]] == words[at]:
+                found[at] = near[at]
+        for at, word in enumerate(words if self.spill else ()):
+            found[at] = self.spill.get(word, found[at])
+        return found
+
+
+def _keys(data: bytes, start: NDArray[np.integer], stop: NDArray[np.integer]) -> NDArray[np.uint64]:
+    """Return a 64-bit key of each word, made of the word's 8-byte pieces."""
+    padded = data + bytes(16)
+    pieces = np.ndarray((len(data) + 8,), dtype="<u8", buffer=padded, strides=(1,))
+    length = stop - start
+    keys = pieces[start] & _MASKS[np.minimum(length, 8)]
+    rest = np.flatnonzero(length > 8)
+    offset = 8
+    with np.errstate(over="ignore"):
+        while rest.size:
+            piece = pieces[start[rest] + offset] & _MASKS[np.minimum(length[rest] - offset, 8)]
+            keys[rest] = (keys[rest] * _MULTIPLIER + (keys[rest] >> _SHIFT)) ^ piece
+            offset += 8
+            rest = rest[length[rest] > offset]
+        keys *= _MULTIPLIER
+        keys ^= keys >> _HALF
+        keys *= _FINISHER
+    return keys
+
+
+def intern(data: bytes, start: NDArray[np.int32], stop: NDArray[np.int32]) -> Interned:
+    """Number the words `data[start:stop]`.
+
+    Words are put together by a 64-bit key; then every word is compared with the first of its key, byte for
+    byte, and the words of which that fails (none, but for an attack) get numbers of their own.
+    """
+    keys = _keys(data, start, stop)
+    order, first, ids = _group(keys)
+    heads = order[first]
+    name_start, name_stop = start[heads], stop[heads]
+    odd = _differing(data, start, stop, name_start[ids], name_stop[ids])
+    spill: dict[bytes, int] = {}
+    for word in odd:
+        text = data[start[word] : stop[word]]
+        if text not in spill:
+            spill[text] = len(name_start)
+            name_start = np.append(name_start, start[word])
+            name_stop = np.append(name_stop, stop[word])
+        ids[word] = spill[text]
+    return Interned(data, ids, name_start, name_stop, keys[heads], spill)
+
+
+def _group(
+    keys: NDArray[np.uint64],
+) -> tuple[NDArray[np.int64], NDArray[np.bool_], NDArray[np.int32]]:
+    """Sort keys; return the order, where a new key begins in it, and each key's rank among the distinct."""
+    order = np.argsort(keys, kind="stable") if len(keys) < 4096 else _packed_order(keys)
+    ordered = keys[order]
+    first = np.ones(len(keys), bool)
+    first[1:] = ordered[1:] != ordered[:-1]
+    ids = np.empty(len(keys), np.int32)
+    ids[order] = np.cumsum(first, dtype=np.int32) - 1
+    return order, first, ids
+
+
+def _packed_order(keys: NDArray[np.uint64]) -> NDArray[np.int64]:
+    """Return a stable order of keys by sorting their high bits together with their positions.
+
+    A plain sort of packed integers is several times faster than an argsort. Where different keys agree in
+    the high bits the order may be off, which shows; then the plain way is taken.
+    """
+    count = len(keys)
+    low = np.uint64((1 << count.bit_length()) - 1)
+    packed = (keys & ~low) | np.arange(count, dtype=np.uint64)
+    packed.sort()
+    order = (packed & low).astype(np.int64)
+    ordered = keys[order]
+    if (ordered[1:] < ordered[:-1]).any():
+        return np.argsort(keys, kind="stable")
+    return order
+
+
+def _differing(
+    data: bytes,
+    start: NDArray[np.int32],
+    stop: NDArray[np.int32],
+    other_start: NDArray[np.int32],
+    other_stop: NDArray[np.int32],
+) -> NDArray[np.int64]:
+    """Return the numbers of the words that differ from the words they are compared with."""
+    padded = data + bytes(16)
+    pieces = np.ndarray((len(data) + 8,), dtype="<u8", buffer=padded, strides=(1,))
+    length = stop - start
+    differs = length != other_stop - other_start
+    rest = np.flatnonzero(length > 8)
+    offset = 8
+    # Up to 8 bytes the key is the word itself, mixed by bijections: equal keys are equal words.
+    head = pieces[start[rest]] != pieces[other_start[rest]]
+    differs[rest] |= head
+    while rest.size:
+        mask = _MASKS[np.minimum(length[rest] - offset, 8)]
+        differs[rest] |= ((pieces[start[rest] + offset] ^ pieces[other_start[rest] + offset]) & mask) != 0
+        offset += 8
+        rest = rest[length[rest] > offset]
+    return np.flatnonzero(differs)

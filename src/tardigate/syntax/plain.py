@@ -1,0 +1,247 @@
+"""Plain statements: instances and declarations so simple that they are read in bulk.
+
+Takes a scan, gives columns of all plain statements of the text. What is plain is a small part of what the
+grammar accepts; a statement that is not exactly of that shape is left to the grammar.
+
+    kind [name] ( net, net[3], 1'b0 ) ;        a gate, or a module instance with a name
+    kind name ( .pin(net), .pin() ) ;
+    input|output|inout|wire net, net ;
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tardigate.syntax import words
+from tardigate.syntax.scan import CLOSE, COMMA, DOT, LEFT, OPEN, OTHER, RIGHT, SEMICOLON, WORD, Scan
+
+NAME, GATE, DECLARATION, NUMBER, CONSTANT, STRANGE = range(16, 22)
+"""What a word is: an identifier, a gate primitive, `input` and its like, a decimal number, a constant of one
+bit, anything else (reserved words among it)."""
+
+_ONE_BIT = {f"1'{base}{digit}": value for base in "bBhHdDoO" for digit, value in zip("01", (0, 1), strict=True)}
+_ONE_BIT |= {f"1'{base}{digit}": 2 + (digit in "zZ?") for base in "bBhHoO" for digit in "xXzZ?"}
+_LARGEST_INDEX_DIGITS = 8
+
+
+@dataclass(frozen=True, slots=True)
+class Plain:
+    """All plain statements of a text, in order, in columns.
+
+    `first` int32[statements]: its first mark; `stop` int32[statements]: the mark after its semicolon.
+    `head` int32: the number of the name of its first word; `is_declaration` bool.
+    Instances: `name` int32: number of the instance's name, or -1. Connections of statement `s` are
+    `start[s]` to `start[s + 1]`: `pin` int32 (number of the pin's name, -1 by order), `net` int32 (number of
+    the net's name; -1 open; -2, -3, -4, -5 the constants 0, 1, x, z), `bit` int32 (index, -1 for the whole
+    net), `at` int32 (offset of the connection's word in the text). Of a declaration the connections are its
+    names.
+    """
+
+    first: NDArray[np.int32]
+    stop: NDArray[np.int32]
+    head: NDArray[np.int32]
+    is_declaration: NDArray[np.bool_]
+    name: NDArray[np.int32]
+    start: NDArray[np.int64]
+    pin: NDArray[np.int32]
+    net: NDArray[np.int32]
+    bit: NDArray[np.int32]
+    at: NDArray[np.int32]
+
+
+def classify_names(scan: Scan) -> NDArray[np.uint8]:
+    """Return what each name of the text is when it is not escaped, uint8[names]."""
+    names = scan.names
+    first = np.frombuffer(scan.data, np.uint8)[names.start] if len(names) else np.zeros(0, np.uint8)
+    kinds = np.full(len(names), NAME, np.uint8)
+    for name in np.flatnonzero((first < 0x41) | _hold_quote(scan)):
+        text = names.text(int(name))
+        if text.isdigit() and len(text) <= _LARGEST_INDEX_DIGITS:
+            kinds[name] = NUMBER
+        elif text in _ONE_BIT:
+            kinds[name] = CONSTANT
+        else:
+            kinds[name] = STRANGE
+    for group, kind in ((words.RESERVED, STRANGE), (words.GATES, GATE), (words.PLAIN_DECLARATIONS, DECLARATION)):
+        found = names.find_all(tuple(group))
+        kinds[found[found >= 0]] = kind
+    return kinds
+
+
+def _hold_quote(scan: Scan) -> NDArray[np.bool_]:
+    """Tell which names hold a `'` after their first byte (bool[names])."""
+    found = np.zeros(len(scan.names), bool)
+    if b"'" in scan.data:
+        quotes = np.flatnonzero(np.frombuffer(scan.data, np.uint8) == 0x27)
+        starts = scan.word_stop
+        owner = np.searchsorted(starts, quotes, "right")
+        owner = owner[owner < len(scan.word)]
+        found[scan.word[owner]] = True
+    return found
+
+
+def refine(scan: Scan, kinds: NDArray[np.uint8]) -> NDArray[np.uint8]:
+    """Return the kind of each mark, words by what they are (uint8[marks])."""
+    of_words = kinds[scan.word]
+    if scan.escaped is not None:
+        of_words[scan.escaped] = NAME
+    refined = scan.kind.copy()
+    refined[scan.kind == WORD] = of_words
+    return refined
+
+
+def find_plain(scan: Scan, marks: NDArray[np.uint8]) -> Plain:
+    """Find and read all plain statements; `marks` is what `refine` gives."""
+    bounds = np.flatnonzero(marks == SEMICOLON)
+    if not len(bounds):
+        return _read(scan, marks, np.zeros(0, np.int64), np.zeros(0, np.int64), np.zeros(len(marks), np.int8))
+    first = np.concatenate(([0], bounds[:-1] + 1))
+    stop = bounds + 1
+    depth = _depth(marks, first, stop)
+    wrong = np.cumsum(~_fits(marks, depth), dtype=np.int32)
+    before = np.concatenate(([0], wrong))
+    plain = before[stop] == before[first]
+    plain &= stop - first >= 3
+    plain &= _whole(marks, first, stop, depth)
+    return _read(scan, marks, first[plain], stop[plain], depth)
+
+
+def _depth(marks: NDArray[np.uint8], first: NDArray[np.int64], stop: NDArray[np.int64]) -> NDArray[np.int8]:
+    """Return how deep in parentheses each mark stands within its statement (before it; at most 3)."""
+    opens = np.cumsum((marks == OPEN).view(np.int8) - (marks == CLOSE).view(np.int8), dtype=np.int32)
+    before = np.concatenate(([0], opens[:-1]))
+    depth = np.zeros(len(marks), np.int32)
+    last = int(stop[-1])
+    depth[:last] = before[:last] - np.repeat(before[first], stop - first)
+    return np.clip(depth, -1, 3).astype(np.int8)
+
+
+def _shift(marks: NDArray[np.uint8], by: int) -> NDArray[np.uint8]:
+    moved = np.full(len(marks), SEMICOLON, np.uint8)
+    moved[by:] = marks[: len(marks) - by]
+    return moved
+
+
+_KINDS = 22
+
+
+def _allowed() -> NDArray[np.bool_]:
+    """Build the table of what may follow what: [depth + 1, mark before the last, last mark, mark]."""
+    table = np.zeros((5, _KINDS, _KINDS, _KINDS), bool)
+    anything = slice(None)
+    outside, inside, pin = table[1], table[2], table[3]
+    outside[anything, SEMICOLON, [NAME, GATE, DECLARATION]] = True
+    outside[SEMICOLON, NAME, NAME] = outside[SEMICOLON, GATE, NAME] = True  # kind, then its instance's name
+    outside[anything, SEMICOLON, NAME] = True
+    outside[SEMICOLON, GATE, OPEN] = True
+    outside[[NAME, GATE], NAME, OPEN] = True
+    outside[anything, CLOSE, SEMICOLON] = True
+    outside[SEMICOLON, DECLARATION, NAME] = True
+    outside[[DECLARATION, COMMA], NAME, [[COMMA], [SEMICOLON]]] = True
+    outside[NAME, COMMA, NAME] = True
+    for level in (inside, pin):
+        level[[OPEN, COMMA], NAME, LEFT] = level[NAME, LEFT, NUMBER] = level[LEFT, NUMBER, RIGHT] = True
+    inside[anything, OPEN, [[NAME], [CONSTANT], [DOT]]] = True
+    inside[anything, COMMA, [[NAME], [CONSTANT], [DOT]]] = True
+    inside[[OPEN, COMMA], NAME, [[COMMA], [CLOSE]]] = True
+    inside[[OPEN, COMMA], CONSTANT, [[COMMA], [CLOSE]]] = True
+    inside[anything, RIGHT, [[COMMA], [CLOSE]]] = True
+    inside[[OPEN, COMMA], DOT, NAME] = True
+    inside[DOT, NAME, OPEN] = True
+    inside[anything, CLOSE, [[COMMA], [CLOSE]]] = True
+    pin[NAME, OPEN, [[NAME], [CONSTANT], [CLOSE]]] = True
+    pin[OPEN, [NAME, CONSTANT], CLOSE] = True
+    pin[NUMBER, RIGHT, CLOSE] = True
+    return table.reshape(-1)
+
+
+_ALLOWED: list[NDArray[np.bool_]] = []
+
+
+def _fits(marks: NDArray[np.uint8], depth: NDArray[np.int8]) -> NDArray[np.bool_]:
+    """Tell for each mark whether it may stand after the two before it, at its depth."""
+    if not _ALLOWED:
+        _ALLOWED.append(_allowed())
+    key = (depth + np.int8(1)).astype(np.int32)
+    for by in (2, 1, 0):
+        key *= _KINDS
+        key += _shift(marks, by) if by else marks
+    return _ALLOWED[0][key]
+
+
+def _whole(
+    marks: NDArray[np.uint8], first: NDArray[np.int64], stop: NDArray[np.int64], depth: NDArray[np.int8]
+) -> NDArray[np.bool_]:
+    """Tell which statements are by name throughout or by order throughout, and closed."""
+    dots = np.concatenate(([0], np.cumsum(marks == DOT, dtype=np.int32)))
+    commas = np.concatenate(([0], np.cumsum((marks == COMMA) & (depth == 1), dtype=np.int32)))
+    count = dots[stop] - dots[first]
+    whole = (count == 0) | (count == commas[stop] - commas[first] + 1)
+    whole &= depth[stop - 1] == 0
+    # A module instance has a name; only a gate may go without (clause 7.1, 12.1.2).
+    second = marks[np.minimum(first + 1, len(marks) - 1)]
+    whole &= (marks[first] != NAME) | (second == NAME)
+    gate_by_name = (marks[first] == GATE) & (count > 0)
+    return whole & ~gate_by_name
+
+
+def _read(
+    scan: Scan,
+    marks: NDArray[np.uint8],
+    first: NDArray[np.int64],
+    stop: NDArray[np.int64],
+    depth: NDArray[np.int8],
+) -> Plain:
+    """Read the plain statements that begin and end at the given marks."""
+    length = stop - first
+    if len(first) and length.sum() == stop[-1] - first[0]:
+        inside = np.arange(first[0], stop[-1])  # one unbroken run: the usual netlist
+    else:
+        inside = np.arange(length.sum()) + np.repeat(first - (np.cumsum(length) - length), length)
+    name_of = np.full(len(marks) + 1, -1, np.int32)
+    name_of[:-1][scan.kind == WORD] = scan.word
+    is_declaration = marks[first] == DECLARATION
+    has_name = (marks[np.minimum(first + 1, max(len(marks) - 1, 0))] == NAME) & ~is_declaration
+    name = np.where(has_name, name_of[first + 1], -1).astype(np.int32)
+    kind, level = marks[inside], depth[inside]
+    before = marks[inside - 1]
+    term = (level >= 1) & ((kind == NAME) | (kind == CONSTANT)) & ((before == OPEN) | (before == COMMA))
+    term |= (level == 2) & (kind == CLOSE) & (before == OPEN)
+    if is_declaration.any():
+        term |= (level == 0) & (kind == NAME) & ((before == DECLARATION) | (before == COMMA))
+    terms = inside[term]
+    of_statement = np.searchsorted(terms, np.append(first, stop[-1] if len(stop) else 0))
+    net = _nets(scan, marks, terms, name_of)
+    pin = np.where(depth[terms] == 2, name_of[terms - 2], -1).astype(np.int32)
+    bit = np.full(len(terms), -1, np.int32)
+    selected = np.flatnonzero((marks[np.minimum(terms + 1, len(marks) - 1)] == LEFT) & (net >= 0))
+    if len(selected):
+        bit[selected] = _numbers(scan, name_of[terms[selected] + 2])
+    return Plain(
+        first.astype(np.int32), stop.astype(np.int32), name_of[first], is_declaration, name,
+        of_statement.astype(np.int64), pin, net, bit, scan.at[terms],
+    )  # fmt: skip
+
+
+def _nets(
+    scan: Scan, marks: NDArray[np.uint8], terms: NDArray[np.int64], name_of: NDArray[np.int32]
+) -> NDArray[np.int32]:
+    """Return what each connection is on: a name's number, -1 open, -2 to -5 a constant."""
+    net = name_of[terms]
+    constants = np.flatnonzero(marks[terms] == CONSTANT)
+    if len(constants):
+        distinct, back = np.unique(net[constants], return_inverse=True)
+        values = np.array([-2 - _ONE_BIT[scan.names.text(int(name))] for name in distinct], np.int32)
+        net[constants] = values[back]
+    net[marks[terms] == CLOSE] = -1
+    return net
+
+
+def _numbers(scan: Scan, names: NDArray[np.int32]) -> NDArray[np.int32]:
+    """Return the values of decimal numbers, given the numbers of their names."""
+    distinct, back = np.unique(names, return_inverse=True)
+    values = np.array([int(scan.names.text(int(name))) for name in distinct], np.int32)
+    return values[back].astype(np.int32)

@@ -1,0 +1,118 @@
+"""Coarse lexing of Verilog: bytes to columns of words and marks, without a loop over the text.
+
+Takes placed text, gives `Scan`. Knows what is a word and what a mark, not what they mean; whatever it does
+not understand it leaves to the grammar.
+"""
+
+from __future__ import annotations
+
+import re
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tardigate.syntax.intern import Interned, intern
+
+SPACE, WORD, OPEN, CLOSE, COMMA, SEMICOLON, DOT, LEFT, RIGHT, OTHER = range(10)
+"""Classes of bytes, and of marks: white space, word, ( ) , ; . [ ], anything else."""
+
+_CLASSES = bytearray([OTHER] * 256)
+for _chars, _class in (
+    (b" \t\r\n\f\v", SPACE),
+    (b"abcdefghijklmnopqrstuvwxyzABCDEFGHIJKLMNOPQRSTUVWXYZ0123456789_$'", WORD),
+    (b"(", OPEN), (b")", CLOSE), (b",", COMMA), (b";", SEMICOLON), (b".", DOT), (b"[", LEFT), (b"]", RIGHT),
+):  # fmt: skip
+    for _char in _chars:
+        _CLASSES[_char] = _class
+_TABLE = bytes(_CLASSES)
+
+_STRING = re.compile(rb'\\[^ \t\r\n\f\v]+|"(?:\\.|[^"\\\n])*"?', re.DOTALL)
+
+
+@dataclass(frozen=True, slots=True)
+class Scan:
+    """The marks of a text, in order.
+
+    `kind` uint8[marks]: class of each mark (WORD for a word, else the class of a single byte);
+    `at` int32[marks]: its first byte. For words, in order: `word` int32[words] is the number of the name in
+    `names`, `word_stop` int32[words] where it ends, `escaped` bool[words] or None when there is no escaped
+    identifier. `word_of` int32[marks]: number of the word that a mark is, or of the next one.
+    """
+
+    data: bytes
+    kind: NDArray[np.uint8]
+    at: NDArray[np.int32]
+    word: NDArray[np.int32]
+    word_stop: NDArray[np.int32]
+    escaped: NDArray[np.bool_] | None
+    word_of: NDArray[np.int32]
+    names: Interned
+
+
+def scan(data: bytes) -> Scan:
+    """Split a text into words and marks.
+
+    A word is a run of identifier characters and `'`, so that `1'b0` is one, or an escaped identifier
+    (IEEE 1364-2005 clause 2.7.1), whose name is without the backslash. Each byte of a string is a mark of
+    class OTHER.
+    """
+    classes = np.frombuffer(data.translate(_TABLE), np.uint8)
+    backslashes = b"\\" in data
+    if backslashes or b'"' in data:
+        classes = _protect(data, classes.copy())
+    is_word = classes == WORD
+    begins = is_word.copy()
+    begins[1:] &= ~is_word[:-1]
+    if backslashes:
+        # `\a\b ` is one word, but `a\b ` is two: an escape always begins a word.
+        begins |= is_word & (np.frombuffer(data, np.uint8) == 0x5C) & _outside_escapes(data, classes)
+    ends = is_word.copy()
+    ends[:-1] &= ~is_word[1:]
+    if backslashes:
+        ends[:-1] |= is_word[:-1] & begins[1:]
+    at = np.flatnonzero(begins | (classes >= OPEN)).astype(np.int32)
+    kind = classes[at]
+    words = np.flatnonzero(kind == WORD)
+    start = at[words]
+    stop = (np.flatnonzero(ends) + 1).astype(np.int32)
+    escaped = None
+    if backslashes:
+        escaped = np.frombuffer(data, np.uint8)[start] == 0x5C
+        start = start + escaped
+    names = intern(data, start, stop)
+    word_of = np.cumsum(kind == WORD, dtype=np.int32)
+    word_of -= kind == WORD
+    return Scan(data, kind, at, names.ids, stop, escaped, word_of, names)
+
+
+def _protect(data: bytes, classes: NDArray[np.uint8]) -> NDArray[np.uint8]:
+    """Make escaped identifiers words and strings OTHER, whatever bytes they hold."""
+    if b'"' not in data:
+        start = np.flatnonzero(np.frombuffer(data, np.uint8) == 0x5C)
+        spaces = np.flatnonzero(classes == SPACE)
+        # A backslash inside an escaped identifier is part of it: keep the first up to each end.
+        order = np.searchsorted(spaces, start)
+        stop = np.append(spaces, len(data))[order]
+        first = np.ones(len(start), bool)
+        first[1:] = stop[1:] != stop[:-1]
+        start, stop = start[first], stop[first]
+        length = stop - start
+        flat = np.arange(length.sum()) + np.repeat(start - (np.cumsum(length) - length), length)
+        classes[flat] = WORD
+        return classes
+    for found in _STRING.finditer(data):
+        classes[found.start() : found.end()] = WORD if data[found.start()] == 0x5C else OTHER
+    return classes
+
+
+def _outside_escapes(data: bytes, classes: NDArray[np.uint8]) -> NDArray[np.bool_]:
+    """Tell for each byte whether an escaped identifier may begin there (not inside another one)."""
+    start = np.flatnonzero((np.frombuffer(data, np.uint8) == 0x5C) & (classes == WORD))
+    spaces = np.flatnonzero(classes == SPACE)
+    order = np.searchsorted(spaces, start)
+    first = np.ones(len(start), bool)
+    first[1:] = order[1:] != order[:-1]
+    outside = np.zeros(len(data), bool)
+    outside[start[first]] = True
+    return outside
