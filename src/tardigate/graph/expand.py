@@ -49,7 +49,7 @@ class Arcs:
 
 @dataclass(frozen=True, slots=True)
 class Batch:
-    """The part instances of one kind: its number, the first row of its delays, and `nets` int32[pins, members]."""
+    """The part instances of one kind, the first row of its delays, and `nets` int32[pins, members]."""
 
     number: int
     kind: Kind
@@ -89,7 +89,7 @@ def find_clock_pins(flat: Flat) -> ClockPins:
 
 def expand_hops(flat: Flat, clock_pins: ClockPins) -> Hops:
     """Return every hop of every part instance."""
-    found: list[tuple[Ints, Ints, Ints, Ints]] = []
+    found: list[tuple[Ints, ...]] = []
     for batch in batches(flat):
         kind = batch.kind
         tail, head, live = _ends(batch, kind.hop_from, kind.hop_to, kind.launches, flat, clock_pins)
@@ -102,7 +102,7 @@ def expand_hops(flat: Flat, clock_pins: ClockPins) -> Hops:
 
 def expand_arcs(flat: Flat, clock_pins: ClockPins) -> Arcs:
     """Return an arc for each pair of pins of each part instance that hops join."""
-    found: list[tuple[Ints, Ints, Ints, Ints, Ints]] = []
+    found: list[tuple[Ints, ...]] = []
     for batch in batches(flat):
         kind = batch.kind
         ways = np.unique(np.stack([kind.hop_from, kind.hop_to, kind.launches], axis=1), axis=0)

@@ -61,8 +61,8 @@ class _Kahn:
 
     def _narrow(self, front: NDArray[np.int64], level: int) -> tuple[int, NDArray[np.int64]]:
         """Take levels point by point while they are narrow; return the last level's number and points."""
-        out, start = memoryview(self.out), memoryview(self.start)
-        waiting, level_of = memoryview(self.waiting), memoryview(self.level)
+        out, start = self.out.data, self.start.data
+        waiting, level_of = self.waiting.data, self.level.data
         here: list[int] = front.tolist()
         while here and len(here) < WIDE:
             level += 1

@@ -7,7 +7,8 @@ Data only.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -22,8 +23,7 @@ OPEN = -1
 """The net number of a pin that is connected to nothing."""
 
 
-@dataclass(frozen=True, slots=True)
-class Port:
+class Port(NamedTuple):
     """One bit of a port of the top module: its name (`a`, `bus[3]`), way and net."""
 
     name: str
@@ -43,7 +43,8 @@ class Flat:
     `templates`; `scope_parent` int32, -1 for the top; `scope_name` the instance's name in its parent;
     `scope_inst` int64[scopes + 1]: its own part instances are these; `scope_net` int64[scopes + 1]: its
     template's own nets in raw numbering. `net_raw` int64[nets]: the raw number, in the outermost scope that
-    has the net, that gives each net its name.
+    has the net, that gives each net its name. `wired`, `driven` int32: nets that may have several drivers
+    by their type, and nets that need none.
     """
 
     kinds: tuple[Kind, ...]
@@ -59,6 +60,8 @@ class Flat:
     scope_inst: NDArray[np.int64]
     scope_net: NDArray[np.int64]
     net_raw: NDArray[np.int64]
+    wired: NDArray[np.int32] = field(default_factory=lambda: np.zeros(0, np.int32))
+    driven: NDArray[np.int32] = field(default_factory=lambda: np.zeros(0, np.int32))
 
     @property
     def instances(self) -> int:

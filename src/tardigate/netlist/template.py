@@ -6,7 +6,8 @@ Net numbers are local to the template: 0 to 3 are the constants 0, 1, x, z, then
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, field
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -15,13 +16,16 @@ from tardigate.parts.kind import Way
 from tardigate.source.placed import PlacedText
 
 
-@dataclass(frozen=True, slots=True)
-class TemplatePort:
-    """A port: its name in the header (empty for none), way, and local nets, most significant bit first."""
+class TemplatePort(NamedTuple):
+    """A port: its name in the header (empty for none), way, and local nets, most significant bit first.
+
+    `bits` are the names of its bits: `a`, or `bus[3]` and so on.
+    """
 
     name: str
     way: Way
-    nets: tuple[int, ...]
+    nets: Sequence[int]
+    bits: Sequence[str]
 
 
 @dataclass(frozen=True, slots=True)
@@ -46,6 +50,8 @@ class Template:
     int64 their declarations' offsets in `text`. Part instances are columns: `kind` int32 (numbers in the
     design's kinds), `pin_start` int64[instances + 1] into `pin_net` int32 (OPEN -1), `inst_names` (an empty
     name for one that has none), `inst_place` int64. `parameters` is the canonical list, `N=4, W=8`.
+    `wired`, `driven` int32: local nets that may have several drivers (`wand`, `tri`, …), and those that
+    need none (`supply0`, `tri1`, …).
     """
 
     module: str
@@ -61,6 +67,8 @@ class Template:
     inst_names: Sequence[str]
     inst_place: NDArray[np.int64]
     children: tuple[Child, ...]
+    wired: NDArray[np.int32] = field(default_factory=lambda: np.zeros(0, np.int32))
+    driven: NDArray[np.int32] = field(default_factory=lambda: np.zeros(0, np.int32))
 
     @property
     def nets(self) -> int:

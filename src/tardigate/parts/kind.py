@@ -72,6 +72,11 @@ class Kind:
     three_state: bool = False
 
     @property
+    def inputs(self) -> int:
+        """Number of input bits."""
+        return int((self.ways == Way.INPUT).sum())
+
+    @property
     def hops(self) -> int:
         """Number of hops."""
         return len(self.hop_from)

@@ -7,10 +7,28 @@ exact up to 2**53 fs (9 s): results depend neither on the unit written nor on th
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from fractions import Fraction
 
-FEMTOSECONDS = {"s": 10**15, "ms": 10**12, "us": 10**9, "ns": 10**6, "ps": 10**3, "fs": 1}
+FEMTOSECONDS: Mapping[str, int | Fraction] = {"s": 10**15, "ms": 10**12, "us": 10**9, "ns": 10**6, "ps": 10**3, "fs": 1}
 """Units of time in femtoseconds (SI prefixes)."""
+
+FEMTOFARADS: Mapping[str, int | Fraction] = {"uF": 10**9, "nF": 10**6, "pF": 10**3, "fF": 1}
+"""Units of capacitance in femtofarads."""
+
+MICROMETRES: Mapping[str, int | Fraction] = {"m": 10**6, "cm": 10**4, "mm": 10**3, "um": 1}
+"""Units of length in micrometres."""
+
+VOLTS: Mapping[str, int | Fraction] = {"kV": 1000, "V": 1, "mV": Fraction(1, 1000)}
+"""Units of voltage in volts."""
+
+CELSIUS: Mapping[str, int | Fraction] = {"C": 1}
+"""Temperature has one unit: degrees Celsius."""
+
+UNITS: Mapping[str, Mapping[str, int | Fraction]] = {
+    unit: table for table in (FEMTOSECONDS, FEMTOFARADS, MICROMETRES, VOLTS, CELSIUS) for unit in table
+}
+"""Every unit and the table that it stands in."""
 
 LONGEST = 2.0**53
 """Femtoseconds; beyond it sums would no longer be exact."""
@@ -22,12 +40,21 @@ def time_in_fs(number: str, unit: str) -> float:
     Raises KeyError for an unknown unit, ValueError for what is no decimal number, OverflowError beyond
     `LONGEST`.
     """
+    value = amount(number, unit, FEMTOSECONDS)
+    if abs(value) > LONGEST:
+        raise OverflowError(number)
+    return value
+
+
+def amount(number: str, unit: str, units: Mapping[str, int | Fraction]) -> float:
+    """Return `number` `unit` in the unit that `units` counts in, correctly rounded.
+
+    Raises KeyError for an unknown unit, ValueError for what is no decimal number, OverflowError for a number
+    of more than 60 digits or beyond 1e60.
+    """
     if len(number) > 60:
         raise OverflowError(number[:60])
     mantissa, _, exponent = number.lower().partition("e")
     if exponent and abs(int(exponent)) > 60:
         raise OverflowError(number)
-    value = Fraction(mantissa + (f"e{exponent}" if exponent else "")) * FEMTOSECONDS[unit]
-    if abs(value) > LONGEST:
-        raise OverflowError(number)
-    return float(value)
+    return float(Fraction(mantissa + (f"e{exponent}" if exponent else "")) * units[unit])

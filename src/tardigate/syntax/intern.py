@@ -47,7 +47,7 @@ class Interned:
     def find_all(self, texts: Sequence[str]) -> NDArray[np.int32]:
         """Return the numbers of names, int32[texts], -1 for those that the text does not have."""
         found = np.full(len(texts), -1, np.int32)
-        if not len(self.hashes):
+        if not len(self.hashes) or not texts:
             return found
         words = [text.encode("utf-8", "surrogateescape") for text in texts]
         stop = np.cumsum([len(word) for word in words])

@@ -1,0 +1,123 @@
+"""What is printed: reports to standard output, diagnostics to standard error, or one JSON object.
+
+Takes lines and objects, writes them as the terminal can show them. The only file that prints.
+"""
+
+from __future__ import annotations
+
+import os
+import sys
+from collections.abc import Sequence
+from typing import Any, TextIO
+
+from rich.console import Console
+from rich.text import Text
+
+from tardigate.cli.answer import Answer
+from tardigate.cli.options import VERSION, Colour, Options
+from tardigate.report.diagnostic_view import diagnostic_lines
+from tardigate.report.looks import NARROWEST, WIDEST, Look
+from tardigate.source.diagnostic import Diagnostic, printable
+
+PIPED_WIDTH = 100
+"""Columns to lay out for where no terminal says how many it has."""
+
+
+class Screen:
+    """Standard output and standard error of one run."""
+
+    def __init__(self, command: str | None, json: bool, colour: Colour = "auto", width: int | None = None):
+        self.command, self.json = command, json
+        self._colour, self._width = colour, width
+
+    def look(self, stream: TextIO | None = None) -> Look:
+        """Return what to lay out for on a stream (standard output for None)."""
+        stream = stream or sys.stdout
+        encoding = (getattr(stream, "encoding", None) or "ascii").lower()
+        return Look(
+            min(WIDEST, max(NARROWEST, self._width or _width_of(stream))), not encoding.startswith("utf")
+        )
+
+    def adopt(self, options: Options) -> None:
+        """Follow what the options say about the look."""
+        self.json, self._colour, self._width = options.json, options.colour, options.width
+
+    def answer(self, answer: Answer, most_warnings: int | None) -> None:
+        """Print an answer: the first `most_warnings` of its warnings (all for None), then its report."""
+        if self.json:
+            self.object(answer.body(), answer.warnings)
+            return
+        if answer.warnings:
+            lines = diagnostic_lines(answer.warnings, self.look(sys.stderr), most_warnings)
+            self._print([*lines, Text()], sys.stderr)
+        view = answer.view()
+        if isinstance(view, str):
+            self.text(view)
+        else:
+            self._print(view, sys.stdout)
+
+    def text(self, text: str) -> None:
+        """Print text as it is."""
+        _write(text, sys.stdout)
+
+    def object(self, body: dict[str, Any], diagnostics: Sequence[Diagnostic]) -> None:
+        """Print the JSON object."""
+        from tardigate.report.json_form import json_text  # for those who ask for it
+
+        self.text(json_text(self.command, body, diagnostics, VERSION))
+
+    def refuse(self, diagnostics: Sequence[Diagnostic]) -> None:
+        """Print why the input is refused."""
+        if self.json:
+            self.object({}, diagnostics)
+        else:
+            self._print(diagnostic_lines(diagnostics, self.look(sys.stderr)), sys.stderr)
+
+    def remark(self, words: str) -> None:
+        """Print a line on standard error."""
+        _write(f"tardigate: {words}\n", sys.stderr)
+
+    def fault(self, words: str) -> None:
+        """Say that tardigate is at fault, and how to report it."""
+        if self.json:
+            self.object({"fault": words}, ())
+            return
+        self.remark(f"a fault of tardigate itself, not of the input: {printable(words, 400)}")
+        self.remark("please report it with the command, its files and what TARDIGATE_DEBUG=1 prints")
+
+    def _print(self, lines: Sequence[Text], stream: TextIO) -> None:
+        look = self.look(stream)
+        console = self._console(stream, look.width)
+        for line in lines:
+            line.rstrip()
+        with console.capture() as capture:
+            console.print(Text("\n").join(lines), soft_wrap=True)
+        shown = capture.get()
+        _write(shown.encode("ascii", "replace").decode() if look.plain else shown, stream)
+
+    def _console(self, stream: TextIO, width: int) -> Console:
+        return Console(
+            file=stream,
+            width=width,
+            force_terminal={"auto": None, "always": True, "never": False}[self._colour],
+            color_system={"auto": "auto", "always": "standard", "never": None}[self._colour],
+            markup=False,
+            highlight=False,
+            emoji=False,
+        )
+
+
+def _width_of(stream: TextIO) -> int:
+    columns = os.environ.get("COLUMNS", "")
+    if columns.isdecimal() and int(columns):
+        return int(columns)
+    try:
+        return os.get_terminal_size(stream.fileno()).columns or PIPED_WIDTH
+    except (OSError, ValueError):
+        return PIPED_WIDTH
+
+
+def _write(text: str, stream: TextIO) -> None:
+    encoding = getattr(stream, "encoding", None) or "ascii"
+    stream.write(text.encode(encoding, "replace").decode(encoding))
+    stream.flush()

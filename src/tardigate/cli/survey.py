@@ -1,0 +1,33 @@
+"""The command `survey`."""
+
+from __future__ import annotations
+
+from tardigate.cli.answer import Answer
+from tardigate.cli.given import request_of, subject_of
+from tardigate.cli.options import Options
+from tardigate.pipeline import load
+from tardigate.report.looks import Look
+from tardigate.report.model import SurveyRecord
+from tardigate.report.survey import clock_records, hierarchy_records, kind_records, port_counts
+from tardigate.report.survey_view import survey_view
+
+
+def survey(options: Options, look: Look) -> Answer:
+    """Tell what is in a design. Raises InputRefusedError."""
+    from tardigate.report.json_form import survey_json
+
+    loaded = load(request_of(options))
+    registers, clocks = clock_records(loaded.flat, loaded.names)
+    record = SurveyRecord(
+        subject_of(loaded),
+        loaded.modules,
+        len(loaded.flat.scope_name),
+        port_counts(loaded.flat),
+        registers,
+        clocks,
+        kind_records(loaded.flat),
+        hierarchy_records(loaded.flat),
+        tuple((stranger.name, stranger.count) for stranger in loaded.undescribed),
+        loaded.warnings,
+    )
+    return Answer(lambda: survey_view(record, look), lambda: survey_json(record), loaded.warnings)

@@ -1,0 +1,202 @@
+"""Elaboration as a list of passes: units and a library to the flat design.
+
+Takes scanned files, the parts library and the top's name, gives a `Built`. Delays may still be missing and
+instances undescribed: `check` and the pipeline refuse what a figure would need.
+"""
+
+from __future__ import annotations
+
+from bisect import bisect_right
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, field
+
+import numpy as np
+
+from tardigate.netlist.columns import Kinds
+from tardigate.netlist.constants import Value
+from tardigate.netlist.declare import Declarer
+from tardigate.netlist.delays import Delays
+from tardigate.netlist.elaborate import Elaborator
+from tardigate.netlist.flat import Flat
+from tardigate.netlist.interface import Interface, InterfacePin
+from tardigate.netlist.lookup import Lookup
+from tardigate.netlist.modules import Modules, collect, find_ring, find_top
+from tardigate.netlist.ports import template_ports
+from tardigate.netlist.stamp import TooLargeError, stamp
+from tardigate.netlist.template import Template
+from tardigate.netlist.wiring import Wiring
+from tardigate.parts.library import Library
+from tardigate.parts.source_delay import SourceDelay, Triple
+from tardigate.source.collector import Collector
+from tardigate.source.span import Span
+from tardigate.syntax import tree
+from tardigate.syntax.verilog_reader import Unit
+
+MOST_TEMPLATES = 1 << 16
+"""Modules times sets of parameters that one design may have."""
+
+
+@dataclass(slots=True)
+class Undescribed:
+    """A module that is instantiated and that nobody describes: where first, how often, pins as connected."""
+
+    name: str
+    place: Span
+    count: int = 0
+    pins: dict[str, int] = field(default_factory=dict)
+
+
+@dataclass(frozen=True, slots=True)
+class Built:
+    """What elaboration gives: the flat design, the undescribed, and the delays whose unit was assumed."""
+
+    top: str
+    flat: Flat
+    modules: int
+    undescribed: tuple[Undescribed, ...]
+    units_assumed: int
+
+
+def build(
+    units: Sequence[Unit], library: Library, top: str | None, collector: Collector, *, bulk: bool = True
+) -> Built:
+    """Elaborate a design. Raises InputRefusedError."""
+    modules = collect(units, library.describes, collector, bulk)
+    collector.refuse()
+    found = find_top(modules, top, collector)
+    collector.refuse()
+    assert found is not None
+    find_ring(modules, [found], collector)
+    collector.refuse()
+    shop = _Shop(modules, library, collector)
+    first = shop.number(found, {})
+    templates = shop.elaborate_all()
+    collector.refuse()
+    try:
+        flat = stamp(templates, first, shop.kinds.kinds)
+    except TooLargeError:
+        collector.tell("N124", modules.span(found))
+        collector.refuse()
+        raise
+    return Built(found, flat, len({t.module for t in templates}), tuple(shop.strangers.values()), shop.assumed)
+
+
+class _Shop:
+    """What elaboration needs from outside a module (see `Workshop`), and the list of work."""
+
+    def __init__(self, modules: Modules, library: Library, collector: Collector) -> None:
+        self.modules, self.library, self.collector = modules, library, collector
+        self.kinds = Kinds()
+        self.strangers: dict[str, Undescribed] = {}
+        self.assumed = 0
+        self._numbers: dict[tuple[str, tuple[tuple[str, Value], ...]], int] = {}
+        self._work: list[tuple[str, dict[str, Value]]] = []
+        self._interfaces: dict[int, Interface] = {}
+        self._lookups: dict[int, Lookup] = {}
+        self._parts: dict[tuple[str, tuple[tuple[str, int], ...]], tuple[Interface, int]] = {}
+        self._delays: dict[tuple[Triple, ...], SourceDelay] = {}
+        self._at: Unit | None = None
+
+    def elaborate_all(self) -> list[Template]:
+        """Elaborate the modules on the list; elaborating one may put others on it."""
+        templates: list[Template] = []
+        while len(templates) < len(self._work):
+            name, values = self._work[len(templates)]
+            templates.append(self._elaborate(name, values))
+        return templates
+
+    def _elaborate(self, name: str, values: dict[str, Value]) -> Template:
+        unit = self._at = self.modules.unit(name)
+        start = self.modules.text(name).start
+        state = _in_force([s[0] for s in unit.source.timescales], start)
+        _, step, precision = unit.source.timescales[state] if state >= 0 else (0, None, None)
+        delays = Delays(unit.text, step, precision, values, self.collector, self._delays)
+        nets = _in_force([s[0] for s in unit.source.default_nettypes], start)
+        implicit = nets < 0 or unit.source.default_nettypes[nets][1] != "none"
+        module = self.modules.tree(name)
+        elaborator = Elaborator(module, self._declarer(unit), values, self, delays, implicit)
+        template = elaborator.template(", ".join(f"{key}={value.value}" for key, value in values.items()))
+        self.assumed += delays.assumed
+        return template
+
+    def _declarer(self, unit: Unit) -> Declarer:
+        lookup = self._lookups.setdefault(id(unit), Lookup(unit.scan.names))
+        return Declarer(unit, lookup, self.collector)
+
+    def number(self, name: str, overrides: Mapping[str, Value]) -> int:
+        """Return the number of a module's template for a set of parameters; puts it on the list when new."""
+        values = self._declarer(self.modules.unit(name)).parameters(self.modules.tree(name), overrides)
+        key = (name, tuple(values.items()))
+        if key not in self._numbers:
+            if len(self._work) >= MOST_TEMPLATES:
+                self.collector.tell("N125", self.modules.span(name), most=MOST_TEMPLATES)
+                self.collector.refuse()
+            self._numbers[key] = len(self._work)
+            self._work.append((name, values))
+        return self._numbers[key]
+
+    def _module_interface(self, name: str, values: dict[str, Value]) -> Interface:
+        """Return a module's ports; what is wrong with them is told when the module itself is elaborated."""
+        unit, module = self.modules.unit(name), self.modules.tree(name)
+        lookup = self._lookups.setdefault(id(unit), Lookup(unit.scan.names))
+        declarer = Declarer(unit, lookup, Collector())
+        variables = declarer.variables(module, values)
+        of_name = np.full(len(unit.scan.names) + 1, -1, np.int32)
+        of_name[variables.name] = np.arange(len(variables))
+        of_name[-1] = -1
+        ports = template_ports(module, Wiring(declarer, variables, values, of_name))
+        return Interface(name, [InterfacePin(port.name, port.way, len(port.nets)) for port in ports])
+
+    # Workshop
+
+    def gate(self, gate: str, inputs: int, outputs: int, delay: SourceDelay | None) -> int:
+        """Return the number of a gate's kind."""
+        return self.kinds.number(self.library.gate_kind(gate, inputs, outputs, delay))
+
+    def operator(self, operator: str, inputs: int, delay: SourceDelay | None) -> int:
+        """Return the number of an operator's kind."""
+        return self.kinds.number(self.library.operator_kind(operator, inputs, delay))
+
+    def part(self, module: str, parameters: Mapping[str, int]) -> tuple[Interface, int] | None:
+        """Return a described part's interface and kind number."""
+        if not self.library.describes(module):
+            return None
+        key = (module, tuple(sorted(parameters.items())))
+        if key not in self._parts:
+            pins = [InterfacePin(pin.name, pin.way, pin.width) for pin in self.library.pins(module)]
+            kind = self.kinds.number(self.library.part_kind(module, parameters))
+            self._parts[key] = (Interface(module, pins), kind)
+        return self._parts[key]
+
+    def interface(self, module: str, parameters: Mapping[str, Value]) -> tuple[Interface, int] | None:
+        """Return a module's interface and template number."""
+        if module not in self.modules:
+            return None
+        number = self.number(module, parameters)
+        if number not in self._interfaces:
+            self._interfaces[number] = self._module_interface(*self._work[number])
+        return self._interfaces[number], number
+
+    def undescribed(self, module: str, pins: Sequence[tuple[str, int]], place: int) -> None:
+        """Take note of an instance of something that nobody describes."""
+        assert self._at is not None
+        span = self._at.text.span(place, place + len(module))
+        stranger = self.strangers.setdefault(module, Undescribed(module, span))
+        stranger.count += 1
+        for at, (name, width) in enumerate(pins):
+            key = name or f"P{at + 1}"
+            stranger.pins[key] = max(width, stranger.pins.get(key, 1))
+
+    def parameter_names(self, module: str) -> list[str]:
+        """Return the parameters that an instance may override."""
+        if self.library.describes(module):
+            return list(self.library.parameters(module))
+        if module not in self.modules:
+            return []
+        tree_of = self.modules.tree(module)
+        declared = [*tree_of.parameters, *(i for i in tree_of.items if isinstance(i, tree.Parameter))]
+        return [named.name for declaration in declared if not declaration.local for named in declaration.names]
+
+
+def _in_force(offsets: Sequence[int], at: int) -> int:
+    return bisect_right(offsets, at) - 1

@@ -1,0 +1,242 @@
+"""Plain instance statements to columns, all of a module at once.
+
+Takes the plain statements of a module's runs, gives blocks of part instances and, as trees, those statements
+that want a closer look (vectors, modules, anything that might be a fault).
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import NamedTuple
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tardigate.netlist.columns import Block
+from tardigate.netlist.flat import CONSTANTS, OPEN
+from tardigate.netlist.interface import Interface
+from tardigate.netlist.variables import RANGED, Variables
+from tardigate.parts.kind import Way
+from tardigate.syntax import tree
+from tardigate.syntax.numbers import read_number
+from tardigate.syntax.verilog_reader import Unit
+from tardigate.syntax.words import GATES
+
+_THREE_STATE = ("bufif0", "bufif1", "notif0", "notif1")
+_ONE_INPUT = ("buf", "not")
+
+
+class Rows(NamedTuple):
+    """Connections of the statements: `net` int32 local nets (UNCLEAR for a closer look), by statement."""
+
+    start: NDArray[np.int64]
+    count: NDArray[np.int64]
+    row: NDArray[np.int64]
+    net: NDArray[np.int32]
+
+
+UNCLEAR = -2
+
+
+class Bulk:
+    """Reads the plain instances of one module."""
+
+    def __init__(
+        self,
+        unit: Unit,
+        variables: Variables,
+        of_name: NDArray[np.int32],
+        gate_kind: Callable[[str, int, int], int],
+        part_kind: Callable[[str], tuple[Interface, int] | None],
+    ) -> None:
+        self.unit, self.plain = unit, unit.plain
+        self.variables, self.of_name = variables, of_name
+        self.gate_kind, self.part_kind = gate_kind, part_kind
+
+    def statements(self, module: tree.Module) -> NDArray[np.int64]:
+        """Return the numbers of the plain instance statements of a module."""
+        runs = [item for item in module.items if isinstance(item, tree.Run)]
+        if not runs:
+            return np.zeros(0, np.int64)
+        every = np.concatenate([np.arange(run.first, run.last) for run in runs])
+        return every[~self.plain.is_declaration[every]]
+
+    def names(self, statements: NDArray[np.int64]) -> tuple[NDArray[np.int32], NDArray[np.int64]]:
+        """Return the names of nets that the statements use, each once, and where first, in order of place."""
+        row = _spread(self.plain.start[statements], self._count(statements))
+        row = row[self.plain.net[row] >= 0]
+        names = self.plain.net[row]
+        unknown = row[self.of_name[names] < 0]
+        names, first = np.unique(self.plain.net[unknown], return_index=True)
+        order = np.argsort(first)
+        return names[order], self.plain.at[unknown[first[order]]].astype(np.int64)
+
+    def read(self, statements: NDArray[np.int64]) -> tuple[list[Block], NDArray[np.int64]]:
+        """Return blocks, and the numbers of the statements that want a closer look."""
+        blocks: list[Block] = []
+        left: list[NDArray[np.int64]] = []
+        heads = self.plain.head[statements]
+        gate_numbers = self.unit.scan.names.find_all(GATES)
+        is_gate = np.isin(heads, gate_numbers[gate_numbers >= 0])
+        first = self.unit.scan.at[self.plain.first[statements]]
+        if self.unit.scan.escaped is not None:
+            is_gate &= np.frombuffer(self.unit.scan.data, np.uint8)[first] != 0x5C
+        if is_gate.any():
+            self._gates(statements[is_gate], gate_numbers, blocks, left)
+        others = statements[~is_gate]
+        for head in np.unique(heads[~is_gate]).tolist():
+            self._parts(others[self.plain.head[others] == head], head, blocks, left)
+        return blocks, np.sort(np.concatenate([*left, np.zeros(0, np.int64)]))
+
+    def _count(self, statements: NDArray[np.int64]) -> NDArray[np.int64]:
+        return self.plain.start[statements + 1] - self.plain.start[statements]
+
+    def _rows(self, statements: NDArray[np.int64]) -> Rows:
+        count = self._count(statements)
+        row = _spread(self.plain.start[statements], count)
+        return Rows(np.cumsum(count) - count, count, row, self._nets(row))
+
+    def _nets(self, row: NDArray[np.int64]) -> NDArray[np.int32]:
+        """Return the local net of each connection, UNCLEAR where it is not a single declared bit."""
+        names, bit = self.plain.net[row], self.plain.bit[row]
+        named = names >= 0
+        variable = np.where(named, self.of_name[names], -1)
+        known = variable >= 0
+        net = np.full(len(row), UNCLEAR, np.int32)
+        single = known & (bit < 0) & (self.variables.width[variable] == 1)
+        net[single] = self.variables.base[variable[single]]
+        selected = np.flatnonzero(known & (bit >= 0))
+        if len(selected):
+            chosen = variable[selected]
+            msb, lsb = self.variables.msb[chosen], self.variables.lsb[chosen]
+            low, high = np.minimum(msb, lsb), np.maximum(msb, lsb)
+            there = (self.variables.flags[chosen] & RANGED > 0) & (bit[selected] >= low) & (bit[selected] <= high)
+            found = self.variables.base[chosen] + np.abs(bit[selected] - lsb)
+            net[selected[there]] = found[there]
+        constants = names <= -2
+        net[constants] = -2 - names[constants]
+        net[names == -1] = OPEN
+        return net
+
+    def _names_and_places(
+        self, statements: NDArray[np.int64]
+    ) -> tuple[NDArray[np.int32], NDArray[np.int64]]:
+        name = self.plain.name[statements]
+        mark = self.plain.first[statements] + np.where(name >= 0, 1, 2)
+        return name, self.unit.scan.at[mark].astype(np.int64)
+
+    def _gates(
+        self,
+        statements: NDArray[np.int64],
+        gate_numbers: NDArray[np.int32],
+        blocks: list[Block],
+        left: list[NDArray[np.int64]],
+    ) -> None:
+        rows = self._rows(statements)
+        heads = self.plain.head[statements]
+        inner = np.ones(len(rows.row), bool)  # rows that are inputs
+        inner[rows.start] = False
+        many = np.isin(heads, [gate_numbers[GATES.index(gate)] for gate in _ONE_INPUT]) & (rows.count > 2)
+        for statement in np.flatnonzero(many):
+            begin = int(rows.start[statement])
+            inner[begin : begin + int(rows.count[statement]) - 1] = False
+        unclear = (rows.net == UNCLEAR) | (~inner & (rows.net < CONSTANTS))
+        clear = ~np.logical_or.reduceat(unclear, rows.start)
+        kind = np.full(len(statements), -1, np.int32)
+        widest = int(rows.count.max()) + 1
+        pairs, back = np.unique(heads.astype(np.int64) * widest + rows.count, return_inverse=True)
+        for at, pair in enumerate(pairs.tolist()):
+            gate, count = self.unit.scan.names.text(pair // widest), pair % widest
+            legal = count == 3 if gate in _THREE_STATE else count >= 2
+            if legal:
+                kind[back == at] = self.gate_kind(gate, *gate_terminals(gate, count))
+        clear &= kind >= 0
+        if not clear.all():
+            left.append(statements[~clear])
+            keep = np.repeat(clear, rows.count)
+            statements, kind = statements[clear], kind[clear]
+            rows = Rows(rows.start, rows.count[clear], rows.row[keep], rows.net[keep])
+        name, place = self._names_and_places(statements)
+        blocks.append(Block(kind, place, name, rows.count, rows.net))
+
+    def _parts(
+        self, statements: NDArray[np.int64], head: int, blocks: list[Block], left: list[NDArray[np.int64]]
+    ) -> None:
+        known = self.part_kind(self.unit.scan.names.text(head))
+        if known is None or any(pin.width != 1 for pin in known[0].pins) or not known[0].pins:
+            left.append(statements)
+            return
+        interface, kind = known
+        rows = self._rows(statements)
+        owner = np.repeat(np.arange(len(statements)), rows.count)
+        pin = self._pins(rows, interface)
+        wrong = (pin < 0) | (pin >= len(interface.pins)) | (rows.net == UNCLEAR)
+        ways = np.array([int(p.way) for p in interface.pins])
+        drives = ways[np.clip(pin, 0, len(ways) - 1)] != Way.INPUT
+        wrong |= drives & (rows.net >= 0) & (rows.net < CONSTANTS)
+        cell = owner * len(interface.pins) + np.clip(pin, 0, len(interface.pins) - 1)
+        wrong |= np.bincount(cell, minlength=len(statements) * len(interface.pins))[cell] > 1
+        clear = np.ones(len(statements), bool)
+        clear[owner[wrong]] = False
+        nets = np.full(len(statements) * len(interface.pins), OPEN, np.int32)
+        nets[cell] = rows.net
+        nets = nets.reshape(len(statements), -1)[clear].reshape(-1)
+        left.append(statements[~clear])
+        statements = statements[clear]
+        name, place = self._names_and_places(statements)
+        count = np.full(len(statements), len(interface.pins), np.int64)
+        blocks.append(Block(np.full(len(statements), kind, np.int32), place, name, count, nets))
+
+    def _pins(self, rows: Rows, interface: Interface) -> NDArray[np.int64]:
+        """Return the number of the pin of each connection, -1 for one that is not there."""
+        names = self.plain.pin[rows.row]
+        by_order = np.arange(len(rows.row)) - np.repeat(rows.start, rows.count)
+        distinct, back = np.unique(names, return_inverse=True)
+        found = np.array([interface.find(self.unit.scan.names.text(n)) if n >= 0 else -1 for n in distinct.tolist()])
+        return np.where(names >= 0, found[back], by_order)
+
+    def as_tree(self, statement: int) -> tree.Gates | tree.Instances:
+        """Return a plain statement as the grammar would have read it."""
+        plain, names, scan = self.plain, self.unit.scan.names, self.unit.scan
+        first, stop = int(plain.start[statement]), int(plain.start[statement + 1])
+        nets = [self._net_tree(row) for row in range(first, stop)]
+        name_number = int(plain.name[statement])
+        mark = int(plain.first[statement]) + (1 if name_number >= 0 else 2)
+        at, name = int(scan.at[mark]), names.text(name_number) if name_number >= 0 else ""
+        head, start = names.text(int(plain.head[statement])), int(scan.at[plain.first[statement]])
+        if head in GATES and scan.data[start] != 0x5C:
+            return tree.Gates(head, None, (tree.Gate(name, None, tuple(n for n in nets if n), at),), start)
+        connections = []
+        for row, net in zip(range(first, stop), nets, strict=True):
+            pin = int(plain.pin[row])
+            # A named connection stands at its pin, three marks before an identifier, as in the grammar.
+            place = self._pin_place(int(plain.at[row])) if pin >= 0 else int(plain.at[row])
+            connections.append(tree.Connection(names.text(pin) if pin >= 0 else "", net, place))
+        return tree.Instances(head, (), (tree.Instance(name, None, tuple(connections), at),), start)
+
+    def _pin_place(self, net_at: int) -> int:
+        mark = int(np.searchsorted(self.unit.scan.at, net_at))
+        return int(self.unit.scan.at[mark - 2])
+
+    def _net_tree(self, row: int) -> tree.Expression | None:
+        name, bit, at = int(self.plain.net[row]), int(self.plain.bit[row]), int(self.plain.at[row])
+        if name == -1:
+            return None
+        if name < -1:
+            mark = int(np.searchsorted(self.unit.scan.at, at))
+            stop = int(self.unit.scan.word_stop[self.unit.scan.word_of[mark]])
+            return read_number(self.unit.scan.data[at:stop].decode("latin-1"), at)
+        selections: tuple[tree.Selection, ...] = ()
+        if bit >= 0:
+            selections = (tree.Selection("bit", tree.Number(bit, None, 0, 0, True, at), None),)
+        return tree.Reference((self.unit.scan.names.text(name),), selections, at)
+
+
+def gate_terminals(gate: str, count: int) -> tuple[int, int]:
+    """Return how many inputs and outputs a gate with so many terminals has (clauses 7.2 to 7.4)."""
+    return (1, count - 1) if gate in _ONE_INPUT else (count - 1, 1)
+
+
+def _spread(start: NDArray[np.int64], count: NDArray[np.int64]) -> NDArray[np.int64]:
+    """Return the numbers `start[i]` to `start[i] + count[i]` of all `i`, joined."""
+    return np.arange(count.sum()) + np.repeat(start - (np.cumsum(count) - count), count)

@@ -1,0 +1,91 @@
+"""Part instances of a module on their way into columns.
+
+Takes instances one by one or in bulk, in any order, gives the columns of a template in order of place.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tardigate.parts.kind import Kind
+
+
+@dataclass(slots=True)
+class Kinds:
+    """The kinds in use, numbered as they are met."""
+
+    kinds: list[Kind] = field(default_factory=list)
+    _numbers: dict[int, int] = field(default_factory=dict)
+
+    def number(self, kind: Kind) -> int:
+        """Return the number of a kind; the same object always has the same."""
+        number = self._numbers.setdefault(id(kind), len(self.kinds))
+        if number == len(self.kinds):
+            self.kinds.append(kind)
+        return number
+
+
+@dataclass(frozen=True, slots=True)
+class Block:
+    """Instances in columns: `pins` int32 holds the nets of all, `count` int64 of each."""
+
+    kind: NDArray[np.int32]
+    place: NDArray[np.int64]
+    name: NDArray[np.int32]
+    count: NDArray[np.int64]
+    pins: NDArray[np.int32]
+
+
+@dataclass(slots=True)
+class Instances:
+    """The part instances of one module."""
+
+    others: list[str] = field(default_factory=list)
+    _blocks: list[Block] = field(default_factory=list)
+    _kind: list[int] = field(default_factory=list)
+    _place: list[int] = field(default_factory=list)
+    _name: list[int] = field(default_factory=list)
+    _count: list[int] = field(default_factory=list)
+    _pins: list[int] = field(default_factory=list)
+
+    def add(self, kind: int, place: int, name: int, pins: Sequence[int]) -> None:
+        """Add one instance; `name` is a number in the file, -1 for none, or what `other_name` gave."""
+        self._kind.append(kind)
+        self._place.append(place)
+        self._name.append(name)
+        self._count.append(len(pins))
+        self._pins.extend(pins)
+
+    def other_name(self, name: str) -> int:
+        """Return a number for a name that does not stand in the file."""
+        self.others.append(name)
+        return -1 - len(self.others)
+
+    def add_block(self, block: Block) -> None:
+        """Add instances in bulk."""
+        self._blocks.append(block)
+
+    def columns(self) -> Block:
+        """Return all instances in order of place, those of one place as they were added."""
+        single = Block(
+            np.array(self._kind, np.int32), np.array(self._place, np.int64), np.array(self._name, np.int32),
+            np.array(self._count, np.int64), np.array(self._pins, np.int32),
+        )  # fmt: skip
+        blocks = [block for block in (*self._blocks, single) if len(block.kind)]
+        if not blocks:
+            return single
+        kind, place, name, count, pins = (
+            np.concatenate([getattr(block, column) for block in blocks])
+            for column in ("kind", "place", "name", "count", "pins")
+        )
+        if (place[1:] >= place[:-1]).all():
+            return Block(kind, place, name, count, pins)
+        order = np.argsort(place, kind="stable")
+        start = np.cumsum(count) - count
+        count = count[order]
+        moved = np.repeat(start[order] - (np.cumsum(count) - count), count) + np.arange(len(pins))
+        return Block(kind[order], place[order], name[order], count, pins[moved])

@@ -1,0 +1,143 @@
+"""The modules of all files by name, and what a design needs of them.
+
+Takes units, gives the modules under a top, each parsed once; tells of doubles, of a missing or doubtful top
+and of a hierarchy that contains itself. Does not elaborate.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable, Sequence
+from dataclasses import dataclass, field
+
+from tardigate.source.collector import Collector
+from tardigate.source.diagnostic import Related, did_you_mean
+from tardigate.source.span import Span
+from tardigate.syntax.outline import ModuleText
+from tardigate.syntax.tree import Module
+from tardigate.syntax.verilog_reader import Unit, parse_module
+
+
+@dataclass(slots=True)
+class Modules:
+    """The modules that may be elaborated; `bulk` says whether plain statements go past the grammar."""
+
+    described: Callable[[str], bool]
+    bulk: bool = True
+    _texts: dict[str, tuple[Unit, ModuleText]] = field(default_factory=dict)
+    _trees: dict[str, Module] = field(default_factory=dict)
+
+    def __contains__(self, name: str) -> bool:
+        return name in self._texts
+
+    def __len__(self) -> int:
+        return len(self._texts)
+
+    def names(self) -> list[str]:
+        """Return the names of all modules, in order of the files."""
+        return list(self._texts)
+
+    def unit(self, name: str) -> Unit:
+        """Return the file that a module stands in."""
+        return self._texts[name][0]
+
+    def text(self, name: str) -> ModuleText:
+        """Return where a module stands in its file."""
+        return self._texts[name][1]
+
+    def span(self, name: str) -> Span:
+        """Return the place of a module's name."""
+        unit, text = self._texts[name]
+        return unit.text.span(text.at, text.at + len(name))
+
+    def tree(self, name: str) -> Module:
+        """Return a module's tree. Raises InputRefusedError when it is not in the subset."""
+        if name not in self._trees:
+            self._trees[name] = parse_module(*self._texts[name], bulk=self.bulk)
+        return self._trees[name]
+
+    def uses(self, name: str) -> list[str]:
+        """Return the modules, none of them a described part, that a module uses."""
+        unit, text = self._texts[name]
+        return [used for used in unit.uses(text) if used in self._texts and not self.described(used)]
+
+
+def collect(units: Iterable[Unit], described: Callable[[str], bool], collector: Collector, bulk: bool) -> Modules:
+    """Put the modules of all files together; tells of two with one name (N101) and of UDPs (V006)."""
+    modules = Modules(described, bulk)
+    for unit in units:
+        for text in unit.modules:
+            span = unit.text.span(text.at, text.at + max(1, len(text.name)))
+            if text.word != "module":
+                if not described(text.name):
+                    collector.tell("V006", span, word=text.word, name=text.name)
+            elif text.name in modules and not described(text.name):
+                first = Related(modules.span(text.name), "first one here")
+                collector.tell("N101", span, name=text.name, related=(first,))
+            elif text.name:
+                modules._texts[text.name] = (unit, text)
+            else:
+                collector.tell("V007", span)
+    return modules
+
+
+def find_top(modules: Modules, wanted: str | None, collector: Collector) -> str | None:
+    """Return the top module: the wanted one, or the only one that no other uses. Tells N102 to N105."""
+    names = [name for name in modules.names() if not modules.described(name)]
+    if wanted is not None:
+        if wanted in names:
+            return wanted
+        if modules.described(wanted):
+            collector.tell("N105", name=wanted)
+        else:
+            collector.tell("N102", name=wanted, hint=did_you_mean(wanted, names) or _listed(names))
+        return None
+    if not names:
+        collector.tell("N104")
+        return None
+    used = {below for name in names for below in modules.uses(name)}
+    tops = [name for name in names if name not in used]
+    if len(tops) == 1:
+        return tops[0]
+    if tops:
+        related = tuple(Related(modules.span(name), f"`{name}`") for name in tops[:8])
+        collector.tell("N103", count=len(tops), names=_some(tops), related=related)
+    else:
+        find_ring(modules, names, collector)
+    return None
+
+
+def find_ring(modules: Modules, starts: Sequence[str], collector: Collector) -> bool:
+    """Tell of a module that contains itself, as the ring of modules (N106); return whether there is one.
+
+    Depth-first search with a stack of its own.
+    """
+    done: set[str] = set()
+    for start in starts:
+        path: list[str] = []
+        on_path: set[str] = set()
+        stack: list[tuple[str, bool]] = [(start, True)]
+        while stack:
+            name, enter = stack.pop()
+            if not enter:
+                on_path.discard(path.pop())
+                done.add(name)
+            elif name in on_path:
+                ring = path[path.index(name) :]
+                related = tuple(Related(modules.span(m), f"`{m}`") for m in ring[:12])
+                collector.tell("N106", modules.span(ring[0]), ring=" > ".join([*ring, ring[0]]), related=related)
+                return True
+            elif name not in done:
+                path.append(name)
+                on_path.add(name)
+                stack.append((name, False))
+                stack += [(below, True) for below in modules.uses(name)]
+    return False
+
+
+def _some(names: Sequence[str]) -> str:
+    shown = ", ".join(f"`{name}`" for name in names[:6])
+    return shown if len(names) <= 6 else f"{shown} and {len(names) - 6} more"
+
+
+def _listed(names: Sequence[str]) -> str:
+    return f"The modules are {_some(names)}." if names else "No module was read."

@@ -1,0 +1,141 @@
+"""All parts files of a run under one condition: what the netlist asks for kinds.
+
+Takes files, gives kinds; equal questions get the same object. Does not know any design.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from types import MappingProxyType
+
+from tardigate.parts import gates
+from tardigate.parts.build import build_family
+from tardigate.parts.by_kind import ByKind, Choice
+from tardigate.parts.check import check_families, choose_condition, resolve
+from tardigate.parts.kind import Kind, Origin
+from tardigate.parts.kind_maker import Delay
+from tardigate.parts.model import Family, Part, Pin
+from tardigate.parts.part_kind import part_kind
+from tardigate.parts.source_delay import SourceDelay
+from tardigate.source.collector import Collector
+from tardigate.source.files import SourceFile
+from tardigate.syntax.parts_reader import read_families
+
+NO_PARAMETERS: Mapping[str, int] = MappingProxyType({})
+
+
+class Library:
+    """Parts, gates and operators with their delays under one condition.
+
+    `conditions`: the names known, in order; `condition_assumed`: the first one's, when there are several and
+    none was chosen.
+    """
+
+    def __init__(
+        self, families: Sequence[Family], columns: Sequence[int], condition_assumed: str | None = None
+    ) -> None:
+        self.families = tuple(families)
+        self.conditions = tuple(dict.fromkeys(c.name for family in families for c in family.conditions))
+        self.condition_assumed = condition_assumed
+        self._choice = _choice(families, columns)
+        self._parts: dict[str, Part] = {}
+        self._column: dict[str, int] = {}
+        for family, column in zip(families, columns, strict=True):
+            for part in family.parts:
+                self._parts.setdefault(part.name, part)
+                self._column.setdefault(part.name, column)
+        for family in families:
+            for alias in family.aliases:
+                part_of = resolve(alias, families, self._parts)
+                if part_of is not None:
+                    self._parts.setdefault(alias, part_of)
+        self._kinds: dict[tuple[object, ...], Kind] = {}
+
+    @classmethod
+    def read(cls, files: Sequence[SourceFile], condition: str | None, collector: Collector) -> Library:
+        """Read parts files; no files make an empty library. Faults are told to the collector."""
+        families: list[Family] = []
+        for file in files:
+            families += [build_family(family, collector) for family in read_families(file, collector)]
+        if not any(d.severity == "error" for d in collector.all()):
+            check_families(families, frozenset(), collector)
+        columns, assumed = choose_condition(families, condition, collector)
+        return cls(families, columns, assumed)
+
+    def describes(self, module: str) -> bool:
+        """Say whether a module's name is that of a part or alias."""
+        return module in self._parts
+
+    def part_names(self) -> list[str]:
+        """Return the names of parts and aliases, sorted."""
+        return sorted(self._parts)
+
+    def pins(self, module: str) -> tuple[Pin, ...]:
+        """Return the pins of a part in the order of their declaration. Raises KeyError for an unknown part."""
+        return self._parts[module].pins
+
+    def parameters(self, module: str) -> Mapping[str, int | None]:
+        """Return the names of a part's parameters with their defaults, None where there is none."""
+        return {parameter.name: parameter.default for parameter in self._parts[module].parameters}
+
+    def parameter_width(self, module: str, name: str) -> int:
+        """Return the number of bits of a parameter. Raises KeyError when it is unknown."""
+        return {p.name: p.width for p in self._parts[module].parameters}[name]
+
+    def part_kind(self, module: str, parameters: Mapping[str, int] = NO_PARAMETERS) -> Kind:
+        """Return the kind of a part: bits of its pins in the order of `pins`, most significant first.
+
+        Parameters that the part does not have make no difference. Raises KeyError for an unknown part.
+        """
+        part = self._parts[module]
+        chosen = {p.name: parameters[p.name] for p in part.parameters if p.name in parameters}
+        key = ("part", part.name, *sorted(chosen.items()))
+        if key not in self._kinds:
+            self._kinds[key] = part_kind(part, self._column[part.name], chosen, self._choice)
+        return self._kinds[key]
+
+    def gate_kind(self, gate: str, inputs: int, outputs: int = 1, delay: SourceDelay | None = None) -> Kind:
+        """Return the kind of a gate primitive; `inputs` counts a three-state gate's control as well.
+
+        A delay written in the source comes first, then a parts file's entry, then a default.
+        Raises KeyError for an unknown gate.
+        """
+        key = ("gate", gate, inputs, outputs, _hashable(delay))
+        if key not in self._kinds:
+            delay_of = gates.source_delays(delay) if delay else self._delay_of(self._choice.gates, gate, inputs)
+            self._kinds[key] = gates.gate(gate, inputs, outputs, delay_of)
+        return self._kinds[key]
+
+    def operator_kind(self, operator: str, inputs: int, delay: SourceDelay | None = None) -> Kind:
+        """Return the kind of an operator of an assignment, `copy` for an assignment without one.
+
+        `inputs` counts bits of all operands. Raises KeyError for an unknown operator.
+        """
+        key = ("operator", operator, inputs, _hashable(delay))
+        if key not in self._kinds:
+            table = self._choice.operators
+            delay_of = gates.source_delays(delay) if delay else self._delay_of(table, operator, inputs)
+            self._kinds[key] = gates.operator(operator, inputs, delay_of)
+        return self._kinds[key]
+
+    def _delay_of(self, table: ByKind, name: str, inputs: int) -> gates.DelayOf:
+        def delay_of(transition: str) -> Delay:
+            if name == "copy":  # a wire unless a parts file says otherwise; no default is meant for it
+                return table.find(name, inputs, transition) or gates.NO_DELAY
+            return self._choice.delay(table, name, inputs, transition)
+
+        return delay_of
+
+
+def _hashable(delay: SourceDelay | None) -> object:
+    """Return what equal delays have in common; NaN is equal to itself here."""
+    return None if delay is None else (repr(delay.values), delay.words)
+
+
+def _choice(families: Sequence[Family], columns: Sequence[int]) -> Choice:
+    choice = Choice(ByKind(), ByKind(), ByKind())
+    for family, column in zip(families, columns, strict=True):
+        choice.gates.add(family.gates, column, Origin.PARTS)
+        choice.operators.add(family.operators, column, Origin.PARTS)
+        choice.default.add(family.default, column, Origin.DEFAULT, "default of ")
+    return choice

@@ -1,0 +1,126 @@
+"""Rows of times against what a part's functions can do.
+
+Takes a part, gives for each change that can pass the rows that time it, the changes that no row times, and the
+rows that time nothing. Tells nothing: `check_part` and `part_kind` do with it what they must.
+"""
+
+from __future__ import annotations
+
+from typing import NamedTuple
+
+from tardigate.parts.function import NEGATIVE, POSITIVE, Values
+from tardigate.parts.kind import Edge, Way
+from tardigate.parts.model import Part, Row
+from tardigate.parts.needs import DISABLING, ENABLING, NOBODY, Need, function_of, needs_of, output_bits
+
+
+class Matched(NamedTuple):
+    """`timed`: changes and the row of each; `missing`: changes without; `idle`: rows and the pair they time nothing of."""
+
+    timed: list[tuple[Need, Row]]
+    missing: list[Need]
+    idle: list[tuple[Row, tuple[int, int]]]
+
+
+def match(part: Part, values: Values) -> Matched:
+    """Return what the rows of a part time; `values` of parameter bits that are known."""
+    rows: dict[int, dict[int, list[Row]]] = {}
+    for row in part.rows:
+        for tail, head in row.pairs:
+            rows.setdefault(head, {}).setdefault(tail, []).append(row)
+    matched = Matched([], [], [])
+    for head in output_bits(part):
+        given = rows.get(head, {})
+        if function_of(part, head) >= 0:
+            needs = needs_of(part, head, values)
+            _known(part, head, needs, given, values, matched)
+        else:
+            _unknown(part, head, given, values, matched)
+    return matched
+
+
+def _known(
+    part: Part, head: int, needs: dict[int, list[Need]], given: dict[int, list[Row]], values: Values,
+    matched: Matched,
+) -> None:  # fmt: skip
+    for tail in needs | given:
+        served: set[int] = set()
+        for need in needs.get(tail, ()):
+            fitting = [row for row in given.get(tail, ()) if _fits(part, need, row, values)]
+            matched.timed.extend([(need, row) for row in fitting])
+            served.update(id(row) for row in fitting)
+            if not fitting:
+                matched.missing.append(need)
+        matched.idle.extend([(row, (tail, head)) for row in given.get(tail, ()) if id(row) not in served])
+
+
+def _fits(part: Part, need: Need, row: Row, values: Values) -> bool:
+    if need.transition not in row.transitions or row.edge not in (None, need.tail_edge):
+        return False
+    follows = need.tail_edge == need.head_edge
+    if row.polarity and not need.launches and (row.polarity == "+") != follows:
+        return False
+    if row.when < 0 or need.root == NOBODY:
+        return True
+    polarity = part.network.polarities(need.root, values, row.when).get(need.tail, 0)
+    if need.transition in ("LH", "HL"):
+        return bool(polarity & (POSITIVE if follows else NEGATIVE))
+    enabling = need.transition in ("ZH", "ZL")
+    return bool(polarity & (POSITIVE if (need.tail_edge == Edge.RISE) == enabling else NEGATIVE))
+
+
+def _unknown(part: Part, head: int, given: dict[int, list[Row]], values: Values, matched: Matched) -> None:
+    """Take rows at their word where no function speaks; an edge of the output that none gives is missing."""
+    for tail, rows in given.items():
+        clocks = [register for register in part.registers if register.clock == tail]
+        wanted: dict[Need, None] = {}
+        timed: dict[Need, None] = {}
+        for row in rows:
+            edges = {register.edge for register in clocks} or set(Edge)
+            for tail_edge in sorted(edges if row.edge is None else edges & {row.edge}):
+                for need in _moves(tail, head, tail_edge, row, bool(clocks)):
+                    wanted[need] = None
+                    if need.transition in row.transitions:
+                        timed[need] = None
+                        matched.timed.append((need, row))
+        matched.missing.extend([need for need in wanted if need not in timed])
+        matched.idle.extend([(row, (tail, head)) for row in rows if row.edge is not None and not _any(matched, row)])
+    if not given:
+        matched.missing.extend(_everything(part, head))
+
+
+def _any(matched: Matched, row: Row) -> bool:
+    return any(other is row for _, other in matched.timed)
+
+
+def _moves(tail: int, head: int, tail_edge: Edge, row: Row, launches: bool) -> list[Need]:
+    """Return the changes that a row may be about: the output's two edges, or its four with letting go."""
+    if "Z" in row.transitions[0]:
+        group = ENABLING if row.transitions[0][0] == "Z" else DISABLING
+        return [Need(tail, head, tail_edge, edge, transition, launches) for transition, edge in group]
+    found = []
+    for edge, transition in ((Edge.RISE, "LH"), (Edge.FALL, "HL")):
+        if launches or not row.polarity or (row.polarity == "+") == (tail_edge == edge):
+            found.append(Need(tail, head, tail_edge, edge, transition, launches))
+    return found
+
+
+def _everything(part: Part, head: int) -> list[Need]:
+    """Return what an output may do of which nothing at all is known: follow any clock, or else any input."""
+    clocks = {(register.clock, register.edge) for register in part.registers}
+    found = [
+        Need(tail, head, tail_edge, edge, "LH" if edge == Edge.RISE else "HL", True)
+        for tail, tail_edge in sorted(clocks)
+        for edge in Edge
+    ]
+    tail = 0
+    for pin in part.pins:
+        for _ in range(pin.width):
+            if pin.way == Way.INPUT and not clocks:
+                found += [
+                    Need(tail, head, tail_edge, edge, "LH" if edge == Edge.RISE else "HL")
+                    for tail_edge in Edge
+                    for edge in Edge
+                ]
+            tail += 1
+    return found

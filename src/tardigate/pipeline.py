@@ -1,0 +1,159 @@
+"""The whole tool as a list of passes. No printing, and no logic between the passes.
+
+Takes a request, gives the loaded design; from that the graph, times, trails and assumptions.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tardigate.analysis.assumptions import Assumption, find_assumptions
+from tardigate.analysis.audit import audit
+from tardigate.analysis.check import refuse_missing
+from tardigate.analysis.model import Grade, Times, Trail
+from tardigate.analysis.sweep import sweep
+from tardigate.analysis.trails import fastest, slowest
+from tardigate.graph.build import build as build_graph
+from tardigate.graph.model import Graph
+from tardigate.netlist.build import Undescribed, build
+from tardigate.netlist.check import check_structure
+from tardigate.netlist.flat import Flat
+from tardigate.netlist.names import Names
+from tardigate.parts.draft import UndescribedModule, draft_text
+from tardigate.parts.kind import Kind, Origin
+from tardigate.parts.library import Library
+from tardigate.source.collector import Collector
+from tardigate.source.diagnostic import Diagnostic
+from tardigate.source.files import read_file
+from tardigate.syntax.preprocess import Preprocessed, PreprocessOptions, preprocess
+from tardigate.syntax.verilog_reader import Unit, read_unit
+
+
+@dataclass(frozen=True, slots=True)
+class Request:
+    """What is asked for: files and how to read them.
+
+    `bulk` False sends every statement through the grammar: slow, and the same.
+    """
+
+    files: tuple[str, ...]
+    parts: tuple[str, ...] = ()
+    top: str | None = None
+    include_dirs: tuple[str, ...] = ()
+    defines: tuple[tuple[str, str], ...] = ()
+    condition: str | None = None
+    grade: Grade = "span"
+    bulk: bool = True
+
+
+@dataclass(frozen=True, slots=True)
+class Loaded:
+    """A design, read and checked for structure.
+
+    `missing` are the kinds in use that have no delay, `undescribed` the modules that nobody describes;
+    `units_assumed` counts delays in the source without a `timescale`.
+    """
+
+    request: Request
+    top: str
+    flat: Flat
+    names: Names
+    library: Library
+    modules: int
+    warnings: tuple[Diagnostic, ...]
+    missing: tuple[Kind, ...]
+    undescribed: tuple[Undescribed, ...]
+    units_assumed: int
+
+
+def load(request: Request) -> Loaded:
+    """Read files, parts, elaborate, check the structure. Raises InputRefusedError."""
+    collector = Collector()
+    library = Library.read([read_file(path) for path in request.parts], request.condition, collector)
+    units = _units(request, collector)
+    collector.refuse()
+    built = build(units, library, request.top, collector, bulk=request.bulk)
+    names = Names(built.flat)
+    check_structure(built.flat, names, collector, complete=not built.undescribed)
+    collector.refuse()
+    used = np.unique(built.flat.inst_kind)
+    missing = tuple(built.flat.kinds[k] for k in used if built.flat.kinds[k].origin == Origin.MISSING)
+    return Loaded(
+        request, built.top, built.flat, names, library, built.modules, collector.warnings(), missing,
+        built.undescribed, built.units_assumed,
+    )  # fmt: skip
+
+
+def graph_of(loaded: Loaded) -> Graph:
+    """Return the graph. Raises InputRefusedError for undescribed modules, missing delays and loops."""
+    collector = Collector()
+    for stranger in loaded.undescribed:
+        collector.tell("N301", stranger.place, name=stranger.name, count=stranger.count)
+    if loaded.missing:
+        kinds = ", ".join(f"`{kind.name}` ({kind.inputs} in)" for kind in loaded.missing)
+        collector.tell("N302", count=len(loaded.missing), kinds=kinds)
+    collector.refuse()
+    graph = build_graph(loaded.flat, collector)
+    collector.refuse()
+    refuse_missing(loaded.flat, graph, loaded.request.grade, collector)
+    return graph
+
+
+def times_of(graph: Graph, grade: Grade, sources: NDArray[np.integer] | None = None) -> Times:
+    """Return when each vertex settles and stirs."""
+    return sweep(graph, grade, sources)
+
+
+def trails_of(
+    loaded: Loaded,
+    graph: Graph,
+    grade: Grade,
+    count: int,
+    slow: bool = True,
+    sources: NDArray[np.integer] | None = None,
+    sinks: NDArray[np.integer] | None = None,
+    times: Times | None = None,
+) -> tuple[Trail, ...]:
+    """Return the slowest (or fastest) trails, each added up again by other means.
+
+    `times`: the sweep from the same sources, where it is at hand. Raises InternalFaultError when the two
+    ways differ.
+    """
+    times = sweep(graph, grade, sources) if times is None else times
+    found = (slowest if slow else fastest)(graph, grade, count, sources, sinks, times)
+    whole = sources is None and sinks is None
+    audit(loaded.flat, graph, found, grade, slow, times, whole)
+    return tuple(found)
+
+
+def assumptions_of(loaded: Loaded, graph: Graph, grade: Grade, times: Times) -> tuple[Assumption, ...]:
+    """Return what the figures rest on that nobody stated."""
+    found = find_assumptions(loaded.flat, graph, grade, times)
+    if loaded.units_assumed:
+        found = (*found, Assumption("units_assumed", loaded.units_assumed))
+    return found
+
+
+def draft_of(loaded: Loaded) -> str:
+    """Return a parts file skeleton for all that has no delay yet."""
+    strangers = [
+        UndescribedModule(s.name, tuple((pin, None) for pin in _bits(s))) for s in loaded.undescribed
+    ]
+    return draft_text(loaded.missing, strangers)
+
+
+def _bits(stranger: Undescribed) -> list[str]:
+    return [pin if width == 1 else f"{pin}[{width - 1}:0]" for pin, width in stranger.pins.items()]
+
+
+def _units(request: Request, collector: Collector) -> list[Unit]:
+    options = PreprocessOptions(request.include_dirs, dict(request.defines))
+    units: list[Unit] = []
+    before: Preprocessed | None = None
+    for path in request.files:
+        before = preprocess(read_file(path), options, collector, before)
+        units.append(read_unit(before, collector))
+    return units

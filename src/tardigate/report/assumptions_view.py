@@ -1,0 +1,60 @@
+"""The assumptions that end each report: what the figures rest on though nobody stated it.
+
+Takes keys of `analysis/assumptions.py` with counts, gives lines. Does not count.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from rich.text import Text
+
+from tardigate.report.looks import Look
+from tardigate.report.prose import title
+from tardigate.report.shorten import wrap
+
+WORDS = {
+    "inputs_at_zero": ("input bit taken as changing at 0", "input bits taken as changing at 0"),
+    "clock_pins_at_zero": (
+        "register clock pin taken as clocked at 0",
+        "register clock pins taken as clocked at 0, all together",
+    ),
+    "wires_at_zero": ("net taken as a wire of 0 ns", "nets taken as wires of 0 ns"),
+    "minima_at_zero": ("hop whose missing min is taken as 0", "hops whose missing min is taken as 0"),
+    "parts_with_minima_at_zero": ("part instance with such a hop", "part instances with such a hop"),
+    "on_family_default": (
+        "part instance with the family's default delay",
+        "part instances with the family's default delay",
+    ),
+    "assigned_wires": (
+        "assignment without operator taken as a wire",
+        "assignments without operator taken as wires",
+    ),
+    "never_changing_nets": (
+        "net that no source reaches: it never changes",
+        "nets that no source reaches: they never change",
+    ),
+    "units_assumed": (
+        "delay in the source without a `timescale, taken as ns",
+        "delays in the source without a `timescale, taken as ns",
+    ),
+}
+"""Key → what is assumed of one, what of several."""
+
+
+def assumption_words(key: str, count: int) -> str:
+    """Return what an assumption says, to stand after its count."""
+    one, several = WORDS.get(key, (key.replace("_", " "),) * 2)
+    return one if count == 1 else several
+
+
+def assumption_lines(assumptions: Sequence[tuple[str, int]], look: Look) -> list[Text]:
+    """Return the heading and one line for each assumption that was made."""
+    rows = [(str(count), assumption_words(key, count)) for key, count in assumptions if count]
+    if not rows:
+        return []
+    room = max(len(count) for count, _ in rows)
+    lines = title("assumptions")
+    for count, words in rows:
+        lines += wrap(Text(f"{count:>{room}}  {words}"), look.width, room + 2)
+    return lines

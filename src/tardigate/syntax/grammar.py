@@ -1,0 +1,135 @@
+"""The only file that opens a grammar.
+
+Takes a language's name and a transformer, gives its parser: LALR, one lexer for the whole text, the
+transformer called as each rule is reduced, so that no tree is walked. Does not know any language.
+"""
+
+from __future__ import annotations
+
+import hashlib
+import sys
+from importlib import resources
+from typing import TYPE_CHECKING, Any
+
+from tardigate.source.faults import InternalFaultError
+from tardigate.syntax import grammar_cache
+
+if TYPE_CHECKING:
+    from lark import Lark
+
+FORM = 1
+"""Raised whenever `_to_tables` writes something else for the same grammar."""
+
+
+class Reader:
+    """A language's grammar bound to a maker: `read` gives what the maker makes of the rule `start`.
+
+    Tables run without lark (importing it takes longer than reading a usual file); lark builds them when they
+    are not kept from a run before, and tells what is wrong with a text that they do not accept.
+    """
+
+    def __init__(self, name: str, maker: object) -> None:
+        from tardigate.syntax.lalr import Machine
+
+        self._text = resources.files("tardigate.grammars").joinpath(f"{name}.lark").read_text("utf-8")
+        self._lark: Lark | None = None
+        self._machine: Machine | None = None
+        key = _key(self._text)
+        kept = grammar_cache.fetch(name, key)
+        if kept is not None:
+            try:
+                self._machine = Machine(kept, maker)
+            except (KeyError, TypeError, ValueError, AttributeError):
+                kept = None  # damaged: made again
+        if self._machine is None:
+            from tardigate.syntax.grammar_tables import tables_of
+
+            tables = tables_of(self.lark)
+            grammar_cache.keep(name, key, tables)
+            self._machine = Machine(tables, maker)
+
+    @property
+    def lark(self) -> Lark:
+        """The same grammar in lark, without the maker."""
+        if self._lark is None:
+            from lark import Lark
+
+            self._lark = Lark(self._text, parser="lalr", lexer="basic", maybe_placeholders=True)
+        return self._lark
+
+    def read(self, text: str) -> Any:
+        """Return what the maker makes of a text. Raises lark's UnexpectedInput for one outside the grammar."""
+        from tardigate.syntax.lalr import NotInGrammarError
+
+        assert self._machine is not None
+        try:
+            return self._machine.run(text)
+        except NotInGrammarError:
+            pass
+        self.lark.parse(text)
+        raise InternalFaultError("lark accepts a text that the tables made from its parser do not")
+
+
+def parser(name: str, transformer: Any) -> Lark:
+    """Return the parser of `name`.lark; its `parse` gives what `transformer` makes of the rule `start`.
+
+    Building the tables takes some hundred ms: they are kept between runs (`grammar_cache`).
+    """
+    text = resources.files("tardigate.grammars").joinpath(f"{name}.lark").read_text("utf-8")
+    key = _key(text)
+    kept = grammar_cache.fetch(name, key)
+    if kept is not None:
+        loaded = _from_tables(kept, transformer)
+        if loaded is not None:
+            return loaded
+    from lark import Lark
+
+    built = Lark(text, parser="lalr", lexer="basic", maybe_placeholders=True, transformer=transformer)
+    grammar_cache.keep(name, key, _to_tables(built))
+    return built
+
+
+def _key(text: str) -> str:
+    parts = (text, _lark_version(), str(FORM), sys.version)
+    return hashlib.sha256("\0".join(parts).encode()).hexdigest()
+
+
+def _lark_version() -> str:
+    """Return lark's version without importing it: its source says it in its first lines."""
+    from importlib.util import find_spec
+
+    spec = find_spec("lark")
+    if spec is None or spec.origin is None:
+        return ""
+    with open(spec.origin, encoding="utf-8") as file:
+        return file.read(20000)
+
+
+def _to_tables(built: Lark) -> Any:
+    """Return the parser as plain data (lark's own serial form), without what belongs to this run."""
+    from lark.grammar import Rule
+    from lark.lark import _LOAD_ALLOWED_OPTIONS
+    from lark.lexer import TerminalDef
+
+    data, memo = built.memo_serialize([TerminalDef, Rule])
+    options = {key: value for key, value in data["options"].items() if key not in _LOAD_ALLOWED_OPTIONS}
+    return [{**data, "options": options}, memo]
+
+
+def _from_tables(tables: Any, transformer: Any) -> Lark | None:
+    """Return the parser that was kept, or None when the tables are damaged."""
+    from lark import Lark
+
+    try:
+        data, memo = tables
+        table = data["parser"]["parser"]
+        table["tokens"] = {int(number): name for number, name in table["tokens"].items()}
+        table["states"] = {
+            int(state): {int(token): action for token, action in row.items()}
+            for state, row in table["states"].items()
+        }
+        numbered = {int(number): entry for number, entry in memo.items()}
+        loaded: Lark = Lark._load_from_dict(data, numbered, transformer=transformer)
+    except (KeyError, ValueError, TypeError, AttributeError, AssertionError, IndexError):
+        return None
+    return loaded

@@ -1,0 +1,86 @@
+"""Parse tables kept between runs as JSON in the user's cache folder.
+
+Takes a key and gives the tables kept under it, or None; takes tables and keeps them. A file that somebody
+else could have written is not believed. Does not know what the tables mean.
+"""
+
+from __future__ import annotations
+
+import json
+import os
+import stat
+import sys
+from pathlib import Path
+from typing import Any
+
+SWITCH = "TARDIGATE_CACHE"
+"""Environment variable; `off` keeps tardigate from reading and writing kept tables."""
+
+
+def folder() -> Path | None:
+    """Return the folder of kept tables (XDG Base Directory specification), or None where there is to be none."""
+    if os.environ.get(SWITCH, "").lower() == "off":
+        return None
+    base = os.environ.get("XDG_CACHE_HOME", "")
+    if os.path.isabs(base):
+        return Path(base, "tardigate")
+    home = os.path.expanduser("~")
+    return Path(home, ".cache", "tardigate") if os.path.isabs(home) else None
+
+
+def fetch(name: str, key: str) -> Any | None:
+    """Return what was kept under `key`, or None when there is nothing that can be believed."""
+    place = folder()
+    if place is None:
+        return None
+    try:
+        if not _ours(os.lstat(place), stat.S_ISDIR):
+            return None
+        handle = os.open(place / _file(name, key), os.O_RDONLY | getattr(os, "O_NOFOLLOW", 0))
+        with os.fdopen(handle, "rb") as file:
+            if not _ours(os.fstat(handle), stat.S_ISREG):
+                return None
+            text = file.read()
+        kept = json.loads(text)
+    except (OSError, ValueError, RecursionError):
+        return None
+    return kept["tables"] if isinstance(kept, dict) and kept.get("key") == key else None
+
+
+def keep(name: str, key: str, tables: Any) -> None:
+    """Keep tables under `key`; say nothing where that is not possible."""
+    place = folder()
+    if place is None:
+        return
+    part = place / f"{_file(name, key)}.{os.getpid()}.part"
+    try:
+        place.mkdir(mode=0o700, parents=True, exist_ok=True)
+        if not _ours(os.lstat(place), stat.S_ISDIR):
+            return
+        text = json.dumps({"key": key, "tables": tables}, separators=(",", ":"))
+        handle = os.open(part, os.O_WRONLY | os.O_CREAT | os.O_EXCL, 0o600)
+        with os.fdopen(handle, "w", encoding="ascii") as file:
+            file.write(text)
+        os.replace(part, place / _file(name, key))
+        _forget_older(place, name, key)
+    except OSError:
+        part.unlink(missing_ok=True) if place.is_dir() else None
+
+
+def _file(name: str, key: str) -> str:
+    return f"{name}-{key[:32]}.json"
+
+
+def _forget_older(place: Path, name: str, key: str) -> None:
+    """Remove tables that another version of the grammar left, so that the folder does not grow for ever."""
+    for other in place.glob(f"{name}-*.json"):
+        if other.name != _file(name, key):
+            other.unlink(missing_ok=True)
+
+
+def _ours(status: os.stat_result, form: Any) -> bool:
+    if not form(status.st_mode):
+        return False
+    if sys.platform == "win32":  # no owner and mode bits to ask there
+        return True
+    return status.st_uid == os.geteuid() and not status.st_mode & (stat.S_IWGRP | stat.S_IWOTH)

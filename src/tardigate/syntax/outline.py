@@ -1,0 +1,111 @@
+"""The outline of a Verilog text: where its modules stand and which modules each one uses.
+
+Takes a scan, gives `ModuleText`s without reading what is in them, so that a design pays only for the modules
+it uses. Does not check the modules.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tardigate.source.collector import Collector
+from tardigate.source.placed import PlacedText
+from tardigate.syntax.plain import NAME
+from tardigate.syntax.scan import WORD, Scan
+
+_BLOCKS = {
+    "module": "endmodule", "macromodule": "endmodule", "primitive": "endprimitive", "config": "endconfig",
+}  # fmt: skip
+
+
+@dataclass(frozen=True, slots=True)
+class ModuleText:
+    """A module's stretch of the text.
+
+    `word` is `module` or, for what is not read, `primitive` or `config`; `first`, `stop` are marks, `start`,
+    `end` offsets of the whole stretch from its first word to after `endmodule`; `at` is the name's offset.
+    """
+
+    name: str
+    word: str
+    first: int
+    stop: int
+    start: int
+    end: int
+    at: int
+
+
+def outline(scan: Scan, marks: NDArray[np.uint8], text: PlacedText, collector: Collector) -> tuple[ModuleText, ...]:
+    """Find the modules of a text; tell what stands outside of them (V003) or is not closed (V002)."""
+    opening = {w: name for name in _BLOCKS if (w := scan.names.find(name)) >= 0}
+    closing = {w: name for name in set(_BLOCKS.values()) if (w := scan.names.find(name)) >= 0}
+    wanted = np.isin(scan.word, np.array([*opening, *closing], np.int32))
+    if scan.escaped is not None:
+        wanted &= ~scan.escaped
+    words_at = np.flatnonzero(scan.kind == WORD) if wanted.any() else np.zeros(0, np.int64)
+    found: list[ModuleText] = []
+    after = 0
+    open_word, open_mark = "", -1
+    for word in np.flatnonzero(wanted).tolist():
+        mark, name = int(words_at[word]), int(scan.word[word])
+        if name in opening and not open_word:
+            _outside(scan, after, mark, text, collector)
+            open_word, open_mark = opening[name], mark
+        elif name in closing and open_word and closing[name] == _BLOCKS[open_word]:
+            found.append(_module(scan, marks, open_word, open_mark, mark, word))
+            after, open_word = mark + 1, ""
+        elif name in opening:
+            collector.tell("V002", text.span(int(scan.at[open_mark]), int(scan.at[open_mark]) + len(open_word)),
+                           word=open_word, closing=_BLOCKS[open_word])  # fmt: skip
+            open_word, open_mark = opening[name], mark
+            after = mark
+        elif not open_word:
+            _outside(scan, after, mark + 1, text, collector)
+            after = mark + 1
+    if open_word:
+        start = int(scan.at[open_mark])
+        collector.tell("V002", text.span(start, start + len(open_word)), word=open_word, closing=_BLOCKS[open_word])
+    else:
+        _outside(scan, after, len(scan.kind), text, collector)
+    return tuple(found)
+
+
+def _module(scan: Scan, marks: NDArray[np.uint8], word: str, first: int, last: int, last_word: int) -> ModuleText:
+    named = first + 1 if marks[first + 1] == NAME else first
+    name_word = int(scan.word_of[named])
+    name = scan.names.text(int(scan.word[name_word])) if named > first else ""
+    return ModuleText(
+        name, "module" if word == "macromodule" else word, first, last + 1,
+        int(scan.at[first]), int(scan.word_stop[last_word]), int(scan.at[named]),
+    )  # fmt: skip
+
+
+def _outside(scan: Scan, first: int, stop: int, text: PlacedText, collector: Collector) -> None:
+    """Tell of the first thing that stands outside modules, attributes apart."""
+    place = first
+    data = scan.data
+    while place < stop:
+        at = int(scan.at[place])
+        if data[at : at + 2] != b"(*":
+            end = int(scan.word_stop[scan.word_of[place]]) if scan.kind[place] == WORD else at + 1
+            collector.tell("V003", text.span(at, end), found=data[at:end].decode("latin-1"))
+            return
+        close = data.find(b"*)", at + 2)
+        if close < 0:
+            collector.tell("V003", text.span(at, at + 2), found="(*")
+            return
+        place = int(np.searchsorted(scan.at, close + 2))
+
+
+def used_names(scan: Scan, marks: NDArray[np.uint8], module: ModuleText) -> list[str]:
+    """Return the names that may be modules which this one uses: names before a name or a `#`."""
+    window = marks[module.first : module.stop]
+    here = np.flatnonzero(window[:-1] == NAME)
+    following = window[here + 1]
+    after = np.frombuffer(scan.data, np.uint8)[scan.at[module.first + here + 1]]
+    first = here[(following == NAME) | (after == 0x23)]
+    words = scan.word[scan.word_of[module.first + first]]
+    return [scan.names.text(int(name)) for name in np.unique(words)]

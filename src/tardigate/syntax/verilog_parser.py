@@ -1,0 +1,45 @@
+"""One module's text through the grammar, with lark. Imported only when something is parsed."""
+
+from __future__ import annotations
+
+from functools import cache
+from typing import TYPE_CHECKING
+
+from tardigate.source.faults import InputRefusedError
+from tardigate.source.placed import PlacedText
+from tardigate.syntax.grammar import parser
+from tardigate.syntax.lark_errors import explain
+from tardigate.syntax.tree import Module, PlainPorts, Run
+from tardigate.syntax.verilog_tree_maker import TreeMaker
+
+if TYPE_CHECKING:
+    from lark import Lark
+
+    from tardigate.syntax.verilog_reader import Cuts
+
+FRIENDLY = {
+    "IDENT": "a name", "NUMBER": "a number", "STRING": "a text in quotes", "SYSTEM": "a system function",
+    "GATE": "a gate", "DIRECTION": "`input`, `output` or `inout`", "NET_TYPE": "a type of net",
+    "STRENGTH": "a strength", "UNARY": "an operator", "AND_OR": "an operator", "BINARY": "an operator",
+    "PLAIN_RUN": "an instance", "PLAIN_PORTS": "`(`", "$END": "the end of the module",
+}  # fmt: skip
+"""What the grammar's terminals are called in messages."""
+
+
+@cache
+def _parser() -> tuple[Lark, TreeMaker]:
+    maker = TreeMaker()
+    return parser("verilog", maker), maker
+
+
+def parse(
+    text: str, cuts: Cuts, runs: dict[int, Run], ports: dict[int, PlainPorts], placed: PlacedText
+) -> Module:
+    """Return the tree of a module. Raises InputRefusedError (V001) for what the grammar does not accept."""
+    lark, maker = _parser()
+    maker.begin(cuts.where, runs, ports)
+    try:
+        return lark.parse(text)  # type: ignore[return-value]
+    except Exception as error:  # explain raises again what is not about the text
+        diagnostic = explain(error, lark, placed, "V001", cuts.where, FRIENDLY)
+    raise InputRefusedError((diagnostic,))
