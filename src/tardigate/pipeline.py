@@ -27,7 +27,7 @@ from tardigate.parts.kind import Kind, Origin
 from tardigate.parts.library import Library
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Diagnostic
-from tardigate.source.files import read_file
+from tardigate.source.files import SourceFile, read_file
 from tardigate.syntax.preprocess import Preprocessed, PreprocessOptions, preprocess
 from tardigate.syntax.verilog_reader import Unit, read_unit
 
@@ -36,11 +36,11 @@ from tardigate.syntax.verilog_reader import Unit, read_unit
 class Request:
     """What is asked for: files and how to read them.
 
-    `bulk` False sends every statement through the grammar: slow, and the same.
+    Files are paths, or texts that are at hand. `bulk` False sends every statement through the grammar: slow, and the same.
     """
 
-    files: tuple[str, ...]
-    parts: tuple[str, ...] = ()
+    files: tuple[str | SourceFile, ...]
+    parts: tuple[str | SourceFile, ...] = ()
     top: str | None = None
     include_dirs: tuple[str, ...] = ()
     defines: tuple[tuple[str, str], ...] = ()
@@ -72,7 +72,7 @@ class Loaded:
 def load(request: Request) -> Loaded:
     """Read files, parts, elaborate, check the structure. Raises InputRefusedError."""
     collector = Collector()
-    library = Library.read([read_file(path) for path in request.parts], request.condition, collector)
+    library = Library.read([_file(file) for file in request.parts], request.condition, collector)
     units = _units(request, collector)
     collector.refuse()
     built = build(units, library, request.top, collector, bulk=request.bulk)
@@ -153,7 +153,11 @@ def _units(request: Request, collector: Collector) -> list[Unit]:
     options = PreprocessOptions(request.include_dirs, dict(request.defines))
     units: list[Unit] = []
     before: Preprocessed | None = None
-    for path in request.files:
-        before = preprocess(read_file(path), options, collector, before)
+    for file in request.files:
+        before = preprocess(_file(file), options, collector, before)
         units.append(read_unit(before, collector))
     return units
+
+
+def _file(file: str | SourceFile) -> SourceFile:
+    return read_file(file) if isinstance(file, str) else file

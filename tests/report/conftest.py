@@ -129,9 +129,10 @@ def make_survey(subject: Subject) -> Callable[..., SurveyRecord]:
             16,
             (ClockRecord(f"{prefix}CLK", 12), ClockRecord(f"{prefix}seq.slow", 4)),
             (
-                KindRecord(f"{prefix}MS00", "part", 2, 88, "parts file", "examples/moss.parts:12", False),
-                KindRecord(f"{prefix}MS74", "part", 4, 16, "parts file", "examples/moss.parts:40", True),
-                KindRecord("nand", "gate", 3, 9, "missing", "", False),
+                KindRecord(f"{prefix}MS00", "part", 2, "parts file", "examples/moss.parts:12", False, 88),
+                KindRecord(f"{prefix}MS74", "part", 4, "parts file", "examples/moss.parts:40", True, 16),
+                KindRecord("nor", "gate", 2, "family default", "moss.parts:7", False, 11),
+                KindRecord("nand", "gate", 3, "missing", "", False, 9),
             ),
             (
                 ScopeRecord("", f"{prefix}sequencer", 1, 13, 213, 2, ()),

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import json
 from collections.abc import Callable
-from dataclasses import replace
 from importlib import resources
 from typing import Any
 
@@ -110,7 +109,7 @@ def test_hops_are_told_with_edges_and_places(make_trails: Callable[..., TrailsRe
 def test_folded_hops_hold_to_the_schema(
     folded_trail: TrailRecord, make_trails: Callable[..., TrailsRecord], validator: Draft202012Validator
 ) -> None:
-    body = trail_json(replace(make_trails(), trails=(folded_trail,)))
+    body = trail_json(make_trails()._replace(trails=(folded_trail,)))
     validator.validate(json.loads(json_text("trail", body, (), "0.1.0")))
     assert [hop["folded_hops"] for hop in body["trails"][0]["hops"] if "folded_hops" in hop] == [3]
 

@@ -61,7 +61,7 @@ def test_outputs_are_recorded_slowest_first_with_what_never_changes_last(
 def test_what_is_not_shown_is_counted_with_the_time_it_has_settled(flat: Flat, records: Records) -> None:
     times = sweep(build(flat))
     outputs = records.outputs(times, 1)
-    assert ([sink.name for sink in outputs.shown], outputs.count, outputs.rest) == (["y"], 3, 10.0)
+    assert ([sink.name for sink in outputs.shown], outputs.total, outputs.rest) == (["y"], 3, 10.0)
     assert records.outputs(times, 2).rest is None
     assert records.outputs(times, 0).shown == ()
 
@@ -126,11 +126,11 @@ def test_a_folded_trail_keeps_its_sums(
         (31.0, 34.0, 3.0),
     ]
     assert [row.hops for row in record.hops if isinstance(row, FoldRecord)] == [4, 3]
-    assert (record.count, record.total) == (10, 34.0)
+    assert (record.length, record.total) == (10, 34.0)
 
 
 def test_a_survey_counts_kinds_clocks_and_ports(flat: Flat) -> None:
-    counted = [(kind.name, kind.count, kind.origin, kind.register) for kind in kind_records(flat)]
+    counted = [(kind.name, kind.instances, kind.origin, kind.register) for kind in kind_records(flat)]
     assert counted == [
         ("FF", 2, "parts file", True),
         ("not", 3, "parts file", False),

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import io
 from collections.abc import Callable
-from dataclasses import replace
 from pathlib import Path
 
 import pytest
@@ -101,8 +100,8 @@ def test_the_long_hop_stands_out_with_and_without_colour(make_trail: Callable[..
 
 def test_equally_long_hops_do_not_stand_out(make_trail: Callable[..., TrailRecord]) -> None:
     trail = make_trail()
-    alike = tuple(replace(hop, delay=5e6) for hop in trail.hops)
-    fall = waterfalls([replace(trail, hops=alike)], scale_of([1e6]), Look(80))[0]
+    alike = tuple(hop._replace(delay=5e6) for hop in trail.hops)
+    fall = waterfalls([trail._replace(hops=alike)], scale_of([1e6]), Look(80))[0]
     assert not any("█" in line.plain for line in fall)
 
 
@@ -122,8 +121,7 @@ def test_the_first_sentence_of_pace_answers_the_question(make_pace: Callable[...
 
 def test_pace_says_when_nothing_ever_changes(make_pace: Callable[..., PaceRecord]) -> None:
     nothing = SinksRecord((), 0, None)
-    record = replace(
-        make_pace(),
+    record = make_pace()._replace(
         outputs=nothing,
         register_pins=nothing,
         limiting=None,
@@ -137,11 +135,11 @@ def test_pace_says_when_nothing_ever_changes(make_pace: Callable[..., PaceRecord
 
 def test_a_trail_without_hops_and_no_trail_at_all_are_said(make_trails: Callable[..., TrailsRecord]) -> None:
     record = make_trails(count=1)
-    bare = replace(record.trails[0], total=0.0, count=0, hops=())
+    bare = record.trails[0]._replace(total=0.0, length=0, hops=())
     assert "no hop: the source is itself the sink" in _plain(
-        trail_view(replace(record, trails=(bare,)), Look(80))
+        trail_view(record._replace(trails=(bare,)), Look(80))
     )
-    none = trail_view(replace(record, trails=(), to_names=("x", "y")), Look(120))
+    none = trail_view(record._replace(trails=(), to_names=("x", "y")), Look(120))
     assert none[0].plain == "No trail leads from `START` to `x` or `y` in `sequencer`."
 
 

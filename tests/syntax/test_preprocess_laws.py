@@ -24,9 +24,13 @@ CODE = st.one_of(
     st.text("a`/*,(' ", max_size=6).map(lambda text: f'"{text}\\""'),
 )
 PARTS = st.lists(st.one_of(CODE.map(lambda t: (False, t)), COMMENT.map(lambda t: (True, t))), max_size=20)
-NASTY = ["`", '"', "\\", "//", "/*", "*/", "\n", "\\\n", " ", "(", ")", ",", "a", "M", "`M", "`define M", "`define M(x) ",
-         "`M(", "x", "`ifdef M", "`ifndef M", "`elsif M", "`else", "`endif", "`undef M", "`resetall", "`timescale ",
-         "1ns/1ps", "`include ", '"board.v"', "\x01", "0\x01", "\x00", "é", "\r\n", "`x", "[", "}"]  # fmt: skip
+NASTY = [
+    *(
+        '`|"|\\|//|/*|*/| |(|)|,|a|M|x|`M|`x|`M(|[|}|\x01|0\x01|\x00|é|1ns/1ps|"board.v"|`include |`timescale '
+    ).split("|"),
+    *"`define M|`define M(x) |`ifdef M|`ifndef M|`elsif M|`else|`endif|`undef M|`resetall".split("|"),
+    *("\n", "\\\n", "\r\n"),
+]
 
 
 def run(data: bytes) -> Preprocessed:
@@ -181,9 +185,13 @@ def folder(tmp_path_factory: pytest.TempPathFactory) -> Path:
     return folder
 
 
-@given(st.lists(st.sampled_from(
-    ["a ", "// c\n", "`include \"one.vh\"\n", "`include \"two.vh\" /* c */\n", "`long ", "`s ", "`f(b, c)", "`f(`s, 1)", '"//"',
-     "`ifdef none x `endif ", "`timescale 1ns/1ps\n"]), max_size=12))  # fmt: skip
+STRETCHES = [
+    *("a ", "// c\n", '"//"', "`long ", "`s ", "`f(b, c)", "`f(`s, 1)", "`ifdef none x `endif "),
+    *('`include "one.vh"\n', '`include "two.vh" /* c */\n', "`timescale 1ns/1ps\n"),
+]
+
+
+@given(st.lists(st.sampled_from(STRETCHES), max_size=12))
 def test_every_byte_stands_where_its_span_says(folder: Path, parts: list[str]) -> None:
     start = "`define long longer_than_its_use\n`define s 1\n`define f(x, y) y+x+y\n"
     file = SourceFile(str(folder / "board.v"), (start + "".join(parts)).encode())
@@ -195,7 +203,7 @@ def test_every_byte_stands_where_its_span_says(folder: Path, parts: list[str]) -
         span = text.span(at)
         there = files[span.path][span.start : span.stop]
         byte = text.data[at : at + 1]
-        assert byte in (there, b" ") or there[:1] == b"`" or byte == b"1"
+        assert byte in (there, b" ") or there[:1] == b"`"
 
 
 @given(st.lists(st.sampled_from(NASTY), max_size=40))

@@ -3,16 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
-from typing import Any
+from typing import Any, NamedTuple
 
 from rich.text import Text
 
 from tardigate.source.diagnostic import Diagnostic
 
 
-@dataclass(frozen=True, slots=True)
-class Answer:
+class Answer(NamedTuple):
     """Makes the lines of the view (or gives text to be printed as it is) and the body of the JSON object."""
 
     view: Callable[[], list[Text] | str]

@@ -20,8 +20,8 @@ MOST_INPUTS = 1 << 20
 KNOWN = {"gates": GATES, "operators": OPERATORS}
 
 
-def build_family(family: tree.Family, collector: Collector) -> Family:
-    """Return a family."""
+def build_family(family: tree.Family, collector: Collector, broken: set[str]) -> Family:
+    """Return a family; names of parts that something was told of are added to `broken`."""
     desk = Desk(family.file, collector)
     conditions: list[Condition] = []
     for item in family.items:
@@ -33,7 +33,9 @@ def build_family(family: tree.Family, collector: Collector) -> Family:
     parts: list[Part] = []
     for item in family.items:
         if isinstance(item, tree.Part):
+            before = desk.faults
             parts.append(build_part(desk, item, family.name.text, count))
+            broken.update({item.name.text} if desk.faults > before else ())
         elif isinstance(item, tree.KindTable):
             entries[item.form] += _kind_table(desk, item, count)
         elif isinstance(item, tree.Wires):
@@ -117,7 +119,9 @@ def _entry(desk: Desk, form: str, entry: tree.Entry) -> tuple[str, int, int, Pla
         return None
     low = high = 0
     if entry.low is not None and entry.high is not None:
-        low, high = (int(w.text) if w.text.isdigit() and len(w.text) < 9 else 0 for w in (entry.low, entry.high))
+        low, high = (
+            int(w.text) if w.text.isdigit() and len(w.text) < 9 else 0 for w in (entry.low, entry.high)
+        )
         fixed = 1 if name in BUFFERS or name in ("~", "copy") else 2 if name in THREE_STATE else 0
         if not 0 < low <= high <= MOST_INPUTS or (fixed and (low, high) != (fixed, fixed)):
             desk.tell("P023", entry.low, name=name)

@@ -115,7 +115,9 @@ def _stored(draft: _Draft, part: tree.Part) -> frozenset[int]:
             if signal is None or line.pin is None:
                 continue
             select = line.pin.select
-            bits.update(signal.bits if select is None else draft.scope.slice(signal, line.pin.name, select) or ())
+            bits.update(
+                signal.bits if select is None else draft.scope.slice(signal, line.pin.name, select) or ()
+            )
     return frozenset(bits)
 
 

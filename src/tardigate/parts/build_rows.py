@@ -142,9 +142,8 @@ def _parallel(
     for tail, tail_bits in tails:
         for head, head_bits in heads:
             if len(tail_bits) != len(head_bits):
-                words = {"left": len(tail_bits), "right": len(head_bits)}
                 what = f"`{tail.name}` and `{head.name}` on the two sides of `=>`"
-                scope.desk.tell("P007", row.arrow, what=what, **words)
+                scope.desk.tell("P007", row.arrow, what=what, left=len(tail_bits), right=len(head_bits))
                 return None
             pairs += zip(tail_bits, head_bits, strict=True)
     return pairs
@@ -161,5 +160,3 @@ def _full(
         scope.desk.tell("P027", row.arrow, name="*>", width=count, widest=MOST_PAIRS)
         return None
     return [(tail, head) for tail in tail_bits for head in head_bits]
-
-

@@ -32,9 +32,9 @@ def check_families(families: Sequence[Family], broken: frozenset[str], collector
     check_default([entry for family in families for entry in family.default], collector)
 
 
-def _twice(code: str, place: Place, first: Place, collector: Collector, **words: object) -> None:
+def _twice(place: Place, first: Place, collector: Collector, what: str, name: str) -> None:
     related = (Related(first.span(), "the first one"),)
-    collector.tell(code, place.span(), related=related, **words)
+    collector.tell("P008", place.span(), related=related, what=what, name=name)
 
 
 def check_names(families: Iterable[Family], collector: Collector) -> dict[str, Part]:
@@ -46,7 +46,7 @@ def check_names(families: Iterable[Family], collector: Collector) -> dict[str, P
         named += [(name, place) for name, (_, place) in family.aliases.items()]
         for name, place in sorted(named, key=lambda pair: pair[1].start):
             if name in places:
-                _twice("P008", place, places[name], collector, what="part or alias", name=name)
+                _twice(place, places[name], collector, "part or alias", name)
             places.setdefault(name, place)
         for part in family.parts:
             parts.setdefault(part.name, part)
@@ -116,7 +116,7 @@ def check_entries(entries: Iterable[Entry], collector: Collector) -> None:
             overlap = entry.high and other.high and entry.low <= other.high and other.low <= entry.high
             if both_any or overlap:
                 name = f"{entry.symbol} {entry.name}"
-                _twice("P008", entry.place, other.place, collector, what="entry", name=name)
+                _twice(entry.place, other.place, collector, "entry", name)
                 break
         others.append(entry)
 
@@ -126,7 +126,8 @@ def check_default(entries: Iterable[Entry], collector: Collector) -> None:
     seen: dict[str, Entry] = {}
     for entry in entries:
         if entry.transition in seen:
-            _twice("P028", entry.place, seen[entry.transition].place, collector, symbol=entry.symbol)
+            related = (Related(seen[entry.transition].place.span(), "the first one"),)
+            collector.tell("P028", entry.place.span(), related=related, symbol=entry.symbol)
         seen.setdefault(entry.transition, entry)
 
 
@@ -139,17 +140,14 @@ def choose_condition(
     """
     names = list(dict.fromkeys(c.name for family in families for c in family.conditions))
     if wanted is not None and wanted not in names:
-        hint = did_you_mean(wanted, names)
-        known = ", ".join(names) or "none"
-        collector.tell("P018", None, hint=hint, name=wanted, known=known)
+        known = f"Known conditions: {', '.join(names)}." if names else "The parts files name no conditions."
+        collector.tell("P018", None, hint=did_you_mean(wanted, names) or known, name=wanted)
         return [0] * len(families), None
     chosen = wanted if wanted is not None else names[0] if names else None
     columns = []
     for family in families:
         own = [condition.name for condition in family.conditions]
         if own and chosen not in own:
-            collector.tell("P019", family.place.span(), family=family.name, name=chosen, own=", ".join(own))
+            collector.tell("P019", family.place.span(), family=family.name, name=chosen)
         columns.append(own.index(chosen) if chosen in own else 0)
     return columns, chosen if wanted is None and len(names) > 1 else None
-
-

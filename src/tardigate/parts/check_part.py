@@ -20,18 +20,20 @@ MOVES = {Edge.RISE: "rise", Edge.FALL: "fall"}
 
 def check_part(part: Part, has_default: bool, collector: Collector) -> None:
     """Tell what is wrong with a part; with a family default, a change without a time is none of it."""
-    before = len(collector.all())
-    _twice(part, collector)
-    _checks_twice(part, collector)
-    _polarity(part, collector)
+    own = Collector()
+    _twice(part, own)
+    _checks_twice(part, own)
     for register in part.registers:
-        _complement(part, register, collector)
-    _never_stored(part, collector)
+        _complement(part, register, own)
+    _never_stored(part, own)
+    told = _polarity(part, own)
     matched = match(part, {})
-    _idle(part, matched, collector)
-    if not has_default and len(collector.all()) == before:
-        _missing(part, matched, collector)
-        _uncovered(part, matched, collector)
+    _idle(part, matched, told, own)
+    if not has_default and not own.all():
+        _missing(part, matched, own)
+        _uncovered(part, matched, own)
+    for diagnostic in own.all():
+        collector.add(diagnostic)
 
 
 def _beside(place: Place, label: str) -> tuple[Related, ...]:
@@ -69,8 +71,9 @@ def _checks_twice(part: Part, collector: Collector) -> None:
             seen[key] = check.place
 
 
-def _polarity(part: Part, collector: Collector) -> None:
-    """Tell explicit polarities that the function does not have (under the row's `when`)."""
+def _polarity(part: Part, collector: Collector) -> set[int]:
+    """Tell explicit polarities that the function does not have (under the row's `when`); return those rows."""
+    told: set[int] = set()
     for row in part.rows:
         for tail, head in row.pairs if row.polarity else ():
             root = function_of(part, head)
@@ -78,22 +81,26 @@ def _polarity(part: Part, collector: Collector) -> None:
                 continue
             polarity = part.network.polarities(root, {}, row.when).get(tail, 0)
             if polarity and polarity != (POSITIVE if row.polarity == "+" else NEGATIVE):
-                words = {"polarity": row.polarity, "tail": part.bit_names[tail], "head": part.bit_names[head]}
-                collector.tell("P012", row.place.span(), function=WORDS[polarity], **words)
+                collector.tell(
+                    "P012", row.place.span(), function=WORDS[polarity], polarity=row.polarity,
+                    tail=part.bit_names[tail], head=part.bit_names[head],
+                )  # fmt: skip
+                told.add(id(row))
                 break
+    return told
 
 
 def _complement(part: Part, register: Register, collector: Collector) -> None:
-    """Tell two stored bits of which one stores the inverse of the other, where clear or set would make both alike."""
+    """Tell a stored bit that stores the inverse of another, where clear or set would make both alike."""
     if register.clear < 0 and register.set < 0:
         return
-    roots = {bit: part.network.add("not", node) for bit, node in register.stores.items()}
+    first_of = {node: bit for bit, node in register.stores.items()}
     for bit, node in register.stores.items():
-        for other, inverse in roots.items():
-            if other > bit and node == inverse or part.network.nodes[register.stores[other]] == ("not", node, -1, -1):
-                names = {"first": part.bit_names[bit], "second": part.bit_names[other]}
-                collector.tell("P026", register.place.span(), **names)
-                return
+        form, inside, _, _ = part.network.nodes[node]
+        if form == "not" and inside in first_of:
+            names = part.bit_names[first_of[inside]], part.bit_names[bit]
+            collector.tell("P026", register.place.span(), first=names[0], second=names[1])
+            return
 
 
 def _never_stored(part: Part, collector: Collector) -> None:
@@ -106,14 +113,13 @@ def _never_stored(part: Part, collector: Collector) -> None:
         first += state.width
 
 
-def _idle(part: Part, matched: Matched, collector: Collector) -> None:
-    """Tell rows that time nothing for one of their pairs, once a row."""
-    told: set[int] = set()
+def _idle(part: Part, matched: Matched, told: set[int], collector: Collector) -> None:
+    """Tell rows that time nothing for one of their pairs, once a row and none of those in `told`."""
     for row, (tail, head) in matched.idle:
         if id(row) not in told:
             told.add(id(row))
-            names = {"tail": part.bit_names[tail], "head": part.bit_names[head]}
-            collector.tell("P013", row.place.span(), symbol=row.symbol, **names)
+            ends = part.bit_names[tail], part.bit_names[head]
+            collector.tell("P013", row.place.span(), symbol=row.symbol, tail=ends[0], head=ends[1])
 
 
 def _missing(part: Part, matched: Matched, collector: Collector) -> None:
@@ -126,10 +132,17 @@ def _missing(part: Part, matched: Matched, collector: Collector) -> None:
     for head in sorted(rowless):
         collector.tell("P015", part.place.span(), part=part.name, name=part.bit_names[head])
     for (tail, head), needs in pairs.items():
-        if head not in rowless:
-            symbols = " and ".join(sorted({SYMBOLS[need.transition] for need in needs}))
-            names = {"tail": part.bit_names[tail], "head": part.bit_names[head]}
-            collector.tell("P014", part.place.span(), part=part.name, symbols=symbols, **names)
+        if head in rowless:
+            continue
+        missing = {need.transition for need in needs}
+        symbols = " and ".join(symbol for transition, symbol in SYMBOLS.items() if transition in missing)
+        ends = part.bit_names[tail], part.bit_names[head]
+        partly = [row for row in part.rows if row.when >= 0 and (tail, head) in row.pairs]
+        if partly and missing.issubset(transition for row in partly for transition in row.transitions):
+            collector.tell("P033", partly[0].place.span(), symbols=symbols, tail=ends[0], head=ends[1])
+        else:
+            place = part.place.span()
+            collector.tell("P014", place, part=part.name, symbols=symbols, tail=ends[0], head=ends[1])
 
 
 def _uncovered(part: Part, matched: Matched, collector: Collector) -> None:
@@ -140,19 +153,24 @@ def _uncovered(part: Part, matched: Matched, collector: Collector) -> None:
     for need, rows in whens.items():
         if need.root == NOBODY or any(row.when < 0 for row in rows):
             continue
-        tables = part.network.tables([need.root, *(row.when for row in rows)], {})
-        if tables is None:
-            continue
-        follow, against = tables.changes(need.root, need.tail)
-        enabling = need.transition in ("ZH", "ZL")
-        rises = need.tail_edge == Edge.RISE
-        follows = need.tail_edge == need.head_edge if "Z" not in need.transition else rises == enabling
-        open_states = follow if follows else against
-        for row in rows:
-            states = tables.of[row.when]
-            open_states &= ~(states | states >> tables.step(need.tail))
-        if open_states:
-            names = {"tail": part.bit_names[need.tail], "head": part.bit_names[need.head]}
+        if _open_states(part, need, rows):
+            ends = part.bit_names[need.tail], part.bit_names[need.head]
             symbol = SYMBOLS[need.transition]
-            collector.tell("P033", rows[0].place.span(), symbol=symbol, **names)
+            collector.tell("P033", rows[0].place.span(), symbols=symbol, tail=ends[0], head=ends[1])
             return
+
+
+def _open_states(part: Part, need: Need, rows: list[Row]) -> int:
+    """Return the states in which a change passes and no row's `when` holds; none when there are too many."""
+    tables = part.network.tables([need.root, *(row.when for row in rows)], {})
+    if tables is None:
+        return 0
+    follow, against = tables.changes(need.root, need.tail)
+    follows = need.tail_edge == need.head_edge
+    if "Z" in need.transition:  # the root is what makes the output drive
+        follows = (need.tail_edge == Edge.RISE) == need.transition.startswith("Z")
+    states = follow if follows else against
+    for row in rows:
+        holds = tables.of[row.when]
+        states &= ~(holds | holds >> tables.step(need.tail))
+    return states

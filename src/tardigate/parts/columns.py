@@ -26,7 +26,8 @@ def unit_known(desk: Desk, unit: Word, units: Units, what: str) -> bool:
     """Say whether a unit is one of `units`; tell it if not."""
     if unit.text in units:
         return True
-    desk.tell("P002", unit, name=unit.text, known=units, what=what, units=", ".join(units))
+    hint = f"Known units of {what}: {', '.join(units)}."
+    desk.tell("P002", unit, name=unit.text, known=units, hint=hint, what=what)
     return False
 
 
@@ -78,8 +79,7 @@ def _in_order(desk: Desk, cell: Cell, triple: Triple) -> bool:
         if triple[first] > triple[second]:
             word = cell.numbers[second]
             assert word is not None  # NaN is not less
-            words = {"larger": ORDER[first], "smaller": ORDER[second]}
-            desk.tell("P010", word, **words)
+            desk.tell("P010", word, larger=ORDER[first], smaller=ORDER[second])
             return False
     return True
 

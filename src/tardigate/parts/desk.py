@@ -36,14 +36,16 @@ class Desk:
         code: str,
         at: Word | PinRef | Expr | Place,
         *,
+        hint: str | None = None,
         known: Iterable[str] | None = None,
         name: str = "",
         related: tuple[tuple[Place, str], ...] = (),
         **words: object,
     ) -> None:
-        """Tell a fault; `known` are the names among which the nearest to `name` is offered."""
+        """Tell a fault; `known` are the names among which the nearest to `name` is offered before `hint`."""
         self.faults += 1
         place = at if isinstance(at, Place) else self.place(at)
-        hint = did_you_mean(name, list(known)) if known is not None else None
+        if known is not None:
+            hint = did_you_mean(name, list(known)) or hint
         beside = tuple(Related(where.span(), label) for where, label in related)
         self.collector.tell(code, place.span(), hint=hint, related=beside, name=name, **words)

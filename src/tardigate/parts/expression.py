@@ -93,7 +93,9 @@ class _Compiler:
             self.same_width(node, *choices)
             return [self.network.add("mux", condition[0], a, b) for a, b in zip(*choices, strict=True)]
         self.same_width(node, *operands)
-        made = [self.network.add(BINARY[node.word.text], *sorted(pair)) for pair in zip(*operands, strict=True)]
+        made = [
+            self.network.add(BINARY[node.word.text], *sorted(pair)) for pair in zip(*operands, strict=True)
+        ]
         return made if node.word.text in "&|^" else self.inverted(made)
 
     def inverted(self, bits: Bits) -> Bits:
@@ -101,7 +103,9 @@ class _Compiler:
 
     def same_width(self, node: Expr, left: Bits, right: Bits) -> None:
         if len(left) != len(right):
-            what = f"the two sides of `{node.word.text}`" if node.form == "binary" else "the two choices of `?:`"
+            what = (
+                f"the two sides of `{node.word.text}`" if node.form == "binary" else "the two choices of `?:`"
+            )
             raise self.refuse("P007", node, left=len(left), right=len(right), what=what)
 
     def prefix(self, node: Expr, operand: Bits) -> Bits:

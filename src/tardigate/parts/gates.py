@@ -44,7 +44,12 @@ OPERATORS: Mapping[str, int] = {
 }  # fmt: skip
 """Operators and their polarity. Of `?:`, that of the condition: the two data inputs, last, do not invert."""
 
-ONE_INPUT: Mapping[str, int] = {"xor": POSITIVE, "xnor": NEGATIVE, "reduce ^": POSITIVE, "reduce ~^": NEGATIVE}
+ONE_INPUT: Mapping[str, int] = {
+    "xor": POSITIVE,
+    "xnor": NEGATIVE,
+    "reduce ^": POSITIVE,
+    "reduce ~^": NEGATIVE,
+}
 """Polarity of what is both ways for several inputs, with one."""
 
 OPPOSITE = {Edge.RISE: Edge.FALL, Edge.FALL: Edge.RISE}

@@ -54,11 +54,11 @@ class Library:
     @classmethod
     def read(cls, files: Sequence[SourceFile], condition: str | None, collector: Collector) -> Library:
         """Read parts files; no files make an empty library. Faults are told to the collector."""
-        families: list[Family] = []
-        for file in files:
-            families += [build_family(family, collector) for family in read_families(file, collector)]
-        if not any(d.severity == "error" for d in collector.all()):
-            check_families(families, frozenset(), collector)
+        trees = [read_families(file, collector) for file in files]
+        broken: set[str] = set()
+        families = [build_family(family, collector, broken) for some in trees for family in some or ()]
+        if None not in trees:  # or else names would be missed that stand in the faulty file
+            check_families(families, frozenset(broken), collector)
         columns, assumed = choose_condition(families, condition, collector)
         return cls(families, columns, assumed)
 
@@ -102,7 +102,9 @@ class Library:
         """
         key = ("gate", gate, inputs, outputs, _hashable(delay))
         if key not in self._kinds:
-            delay_of = gates.source_delays(delay) if delay else self._delay_of(self._choice.gates, gate, inputs)
+            delay_of = (
+                gates.source_delays(delay) if delay else self._delay_of(self._choice.gates, gate, inputs)
+            )
             self._kinds[key] = gates.gate(gate, inputs, outputs, delay_of)
         return self._kinds[key]
 

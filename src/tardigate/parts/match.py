@@ -15,7 +15,7 @@ from tardigate.parts.needs import DISABLING, ENABLING, NOBODY, Need, function_of
 
 
 class Matched(NamedTuple):
-    """`timed`: changes and the row of each; `missing`: changes without; `idle`: rows and the pair they time nothing of."""
+    """`timed`: changes, each with a row; `missing`: changes without; `idle`: rows, and a pair they do not time."""
 
     timed: list[tuple[Need, Row]]
     missing: list[Need]
@@ -84,7 +84,9 @@ def _unknown(part: Part, head: int, given: dict[int, list[Row]], values: Values,
                         timed[need] = None
                         matched.timed.append((need, row))
         matched.missing.extend([need for need in wanted if need not in timed])
-        matched.idle.extend([(row, (tail, head)) for row in rows if row.edge is not None and not _any(matched, row)])
+        matched.idle.extend(
+            [(row, (tail, head)) for row in rows if row.edge is not None and not _any(matched, row)]
+        )
     if not given:
         matched.missing.extend(_everything(part, head))
 

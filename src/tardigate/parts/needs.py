@@ -34,7 +34,8 @@ class Need(NamedTuple):
 
 def output_bits(part: Part) -> list[int]:
     """Return the bits that the part can drive."""
-    bits, first = [], 0
+    bits: list[int] = []
+    first = 0
     for pin in part.pins:
         if pin.way != Way.INPUT:
             bits += range(first, first + pin.width)
@@ -132,9 +133,7 @@ ENABLING = (("ZH", Edge.RISE), ("ZL", Edge.FALL))
 DISABLING = (("HZ", Edge.FALL), ("LZ", Edge.RISE))
 
 
-def _enable_needs(
-    bit: int, head: int, polarity: int, root: int, register: Register | None
-) -> Iterator[Need]:
+def _enable_needs(bit: int, head: int, polarity: int, root: int, register: Register | None) -> Iterator[Need]:
     for tail_edge, flag in ((Edge.RISE, POSITIVE), (Edge.FALL, NEGATIVE)):
         for edge, moves in ((tail_edge, ENABLING), (OPPOSITE[tail_edge], DISABLING)):
             for transition, head_edge in moves if polarity & flag else ():

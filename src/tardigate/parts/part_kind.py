@@ -63,5 +63,3 @@ def _default(choice: Choice, transition: str) -> Delay:
 def has_default(choice: Choice) -> bool:
     """Say whether there is a default for every plain transition."""
     return all(choice.default.find("", 0, transition) for transition in ("LH", "HL"))
-
-

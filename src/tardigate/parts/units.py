@@ -10,7 +10,14 @@ from __future__ import annotations
 from collections.abc import Mapping
 from fractions import Fraction
 
-FEMTOSECONDS: Mapping[str, int | Fraction] = {"s": 10**15, "ms": 10**12, "us": 10**9, "ns": 10**6, "ps": 10**3, "fs": 1}
+FEMTOSECONDS: Mapping[str, int | Fraction] = {
+    "s": 10**15,
+    "ms": 10**12,
+    "us": 10**9,
+    "ns": 10**6,
+    "ps": 10**3,
+    "fs": 1,
+}
 """Units of time in femtoseconds (SI prefixes)."""
 
 FEMTOFARADS: Mapping[str, int | Fraction] = {"uF": 10**9, "nF": 10**6, "pF": 10**3, "fF": 1}

@@ -6,8 +6,8 @@ Takes femtoseconds and a number of cells, gives bars, ticks and labels as text o
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 from itertools import pairwise
+from typing import NamedTuple
 
 from rich.text import Text
 
@@ -16,8 +16,7 @@ from tardigate.report.looks import STYLES, Look
 from tardigate.report.numbers import Scale
 
 
-@dataclass(frozen=True, slots=True)
-class Axis:
+class Axis(NamedTuple):
     """An axis of `cells` cells (1 or more) from time 0 to `last` (fs, 0 or more), written in `unit`."""
 
     last: float

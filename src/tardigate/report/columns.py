@@ -7,8 +7,7 @@ our own, because tables of rich shorten at the end rather than in the middle and
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
-from typing import Literal
+from typing import Literal, NamedTuple
 
 from rich.text import Text
 
@@ -21,8 +20,7 @@ Cell = str | tuple[str, str]
 GAP = 2
 
 
-@dataclass(frozen=True, slots=True)
-class Column:
+class Column(NamedTuple):
     """A column: its head, where its text stands, its style, and how narrow it may become (0: never)."""
 
     head: str

@@ -79,7 +79,7 @@ def survey_json(record: SurveyRecord) -> Object:
                 "name": kind.name,
                 "group": kind.group,
                 "inputs": kind.inputs,
-                "instances": kind.count,
+                "instances": kind.instances,
                 "delays_from": kind.origin,
                 "place": kind.words or None,
                 "register": kind.register,
@@ -150,7 +150,7 @@ def _trail(trail: TrailRecord) -> Object:
         "source": _end(trail.source),
         "sink": _end(trail.sink),
         "total_ns": trail.total / 1e6,
-        "hop_count": trail.count,
+        "hop_count": trail.length,
         "hops": [_hop(hop) for hop in trail.hops],
     }
 

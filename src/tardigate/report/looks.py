@@ -5,7 +5,7 @@ Takes names of looks, gives what the terminal can show. Does not know the termin
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from typing import NamedTuple
 
 STYLES = {
     "name": "bold",
@@ -55,8 +55,7 @@ WIDEST = 160
 """Columns; beyond that the eye no longer finds the end of a row."""
 
 
-@dataclass(frozen=True, slots=True)
-class Look:
+class Look(NamedTuple):
     """What a view lays out for: columns, and whether only ASCII can be shown (`plain`)."""
 
     width: int = 100

@@ -1,19 +1,19 @@
 """What a report shows, with names joined to the numbers: times in femtoseconds, names as text. Data only.
 
 A time of None belongs to what never changes. Assumptions are keys of `analysis/assumptions.py` with counts.
+Named tuples, as everywhere in this house: at start-up each costs a tenth of a frozen dataclass.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from typing import NamedTuple
 
 from tardigate.parts.kind import Edge
 from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.span import Span
 
 
-@dataclass(frozen=True, slots=True)
-class Subject:
+class Subject(NamedTuple):
     """What a report is about: the design's top and size, and which delays were taken.
 
     `condition_assumed`: nobody chose the condition, so it is the first of the parts file.
@@ -29,8 +29,7 @@ class Subject:
     parts: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class HopRecord:
+class HopRecord(NamedTuple):
     """A hop through a part instance to the net it drives; `begins` and `over` count from the source."""
 
     instance: str
@@ -46,8 +45,7 @@ class HopRecord:
     place: Span | None
 
 
-@dataclass(frozen=True, slots=True)
-class FoldRecord:
+class FoldRecord(NamedTuple):
     """A run of hops that are not told one by one."""
 
     hops: int
@@ -56,8 +54,7 @@ class FoldRecord:
     over: float
 
 
-@dataclass(frozen=True, slots=True)
-class EndRecord:
+class EndRecord(NamedTuple):
     """An end of a trail: `what` is `input port`, `clock pin`, `output port`, `register pin` or `net`."""
 
     name: str
@@ -65,19 +62,17 @@ class EndRecord:
     what: str
 
 
-@dataclass(frozen=True, slots=True)
-class TrailRecord:
-    """A trail of `count` hops, told by `hops` in order."""
+class TrailRecord(NamedTuple):
+    """A trail of `length` hops, told by `hops` in order."""
 
     source: EndRecord
     sink: EndRecord
     total: float
-    count: int
+    length: int
     hops: tuple[HopRecord | FoldRecord, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class SinkRecord:
+class SinkRecord(NamedTuple):
     """When an output port or a register pin settles and stirs, by edge (rise, fall)."""
 
     name: str
@@ -93,17 +88,15 @@ class SinkRecord:
         return (min(early), max(late)) if late and early else None
 
 
-@dataclass(frozen=True, slots=True)
-class SinksRecord:
+class SinksRecord(NamedTuple):
     """Sinks of one sort, slowest first: those shown, how many there are, and by when the rest has settled."""
 
     shown: tuple[SinkRecord, ...]
-    count: int
+    total: int
     rest: float | None
 
 
-@dataclass(frozen=True, slots=True)
-class PaceRecord:
+class PaceRecord(NamedTuple):
     """When a design settles. `between_registers` is its slowest trail from a clock pin to a register pin."""
 
     subject: Subject
@@ -115,8 +108,7 @@ class PaceRecord:
     warnings: tuple[Diagnostic, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class TrailsRecord:
+class TrailsRecord(NamedTuple):
     """The slowest or fastest trails, in order; `from_names`, `to_names` as asked for."""
 
     subject: Subject
@@ -128,21 +120,19 @@ class TrailsRecord:
     warnings: tuple[Diagnostic, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class KindRecord:
+class KindRecord(NamedTuple):
     """A kind in use: how many instances it has and where its delays come from; `words` names the place."""
 
     name: str
     group: str
     inputs: int
-    count: int
     origin: str
     words: str
     register: bool
+    instances: int
 
 
-@dataclass(frozen=True, slots=True)
-class ScopeRecord:
+class ScopeRecord(NamedTuple):
     """A group of like instances in the hierarchy, `alike` of them.
 
     Each holds `own` part instances, and `total` with all that is below it; `groups` is how many groups stand
@@ -159,16 +149,14 @@ class ScopeRecord:
     lasts: tuple[bool, ...]
 
 
-@dataclass(frozen=True, slots=True)
-class ClockRecord:
+class ClockRecord(NamedTuple):
     """A net that clocks registers."""
 
     net: str
     registers: int
 
 
-@dataclass(frozen=True, slots=True)
-class SurveyRecord:
+class SurveyRecord(NamedTuple):
     """What is in a design. `undescribed` names modules that nobody describes, with their instances."""
 
     subject: Subject

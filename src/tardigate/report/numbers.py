@@ -7,9 +7,8 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterable
-from dataclasses import dataclass
 from fractions import Fraction
-from typing import Literal
+from typing import Literal, NamedTuple
 
 from tardigate.parts.units import FEMTOSECONDS
 
@@ -23,8 +22,7 @@ _LIMITS = (("fs", 10**3), ("ps", 10**6), ("ns", 10**11), ("us", 10**14), ("ms", 
 _HERTZ = (("GHz", 10**9), ("MHz", 10**6), ("kHz", 10**3), ("Hz", 1))
 
 
-@dataclass(frozen=True, slots=True)
-class Scale:
+class Scale(NamedTuple):
     """The unit of a report and its number of decimals: every time of the report is written with both."""
 
     unit: str

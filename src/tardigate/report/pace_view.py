@@ -34,7 +34,7 @@ def pace_view(record: PaceRecord, look: Look) -> list[Text]:
     scale = scale_of(_times(record))
     lines = _lead(record, scale, look) + _between(record, scale, look) + subject_lines(record.subject, look)
     lines += _sinks(record, scale, look)
-    if record.limiting and record.limiting.count:
+    if record.limiting and record.limiting.length:
         lines += title("limiting trail")
         lines += [heading(record.limiting, scale, look), *waterfalls([record.limiting], scale, look)[0]]
     return lines + assumption_lines(record.assumptions, look) + caution_lines(look)
@@ -58,7 +58,7 @@ def _lead(record: PaceRecord, scale: Scale, look: Look) -> list[Text]:
         top,
         f" settles in {with_unit(trail.total, scale, look)}: the last to settle is ",
         end_text(trail.sink, look),
-        f", through {counted(trail.count, 'hop')} from ",
+        f", through {counted(trail.length, 'hop')} from ",
         end_text(trail.source, look),
         ".",
     )
@@ -81,7 +81,7 @@ def _between(record: PaceRecord, scale: Scale, look: Look) -> list[Text]:
 def _sinks(record: PaceRecord, scale: Scale, look: Look) -> list[Text]:
     """Return the table of sinks, each with a bar from when it stirs to when it has settled."""
     groups = [("output ports", record.outputs), ("register pins", record.register_pins)]
-    groups = [(name, sinks) for name, sinks in groups if sinks.count]
+    groups = [(name, sinks) for name, sinks in groups if sinks.total]
     if not groups:
         return []
     shown = [sink for _, sinks in groups for sink in sinks.shown]
@@ -98,7 +98,7 @@ def _sinks(record: PaceRecord, scale: Scale, look: Look) -> list[Text]:
     rule = Text(look.glyph("rule") * used, STYLES["quiet"]).append_text(axis.rule())
     table = [Text(), head.append(" " * GAP).append_text(axis.labels()), rule]
     for name, sinks in groups:
-        table.append(Text(f"{name}, {sinks.count}", STYLES["quiet"]))
+        table.append(Text(f"{name}, {sinks.total}", STYLES["quiet"]))
         table += lines[: len(sinks.shown)] + _more(sinks, scale, look)
         lines = lines[len(sinks.shown) :]
     return table
@@ -119,7 +119,7 @@ def _cells(sink: SinkRecord, scale: Scale) -> list[Cell]:
 
 
 def _more(sinks: SinksRecord, scale: Scale, look: Look) -> list[Text]:
-    more = sinks.count - len(sinks.shown)
+    more = sinks.total - len(sinks.shown)
     if not more:
         return []
     by = "that never change" if sinks.rest is None else f"settled by {with_unit(sinks.rest, scale, look)}"

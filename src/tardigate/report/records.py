@@ -48,9 +48,15 @@ class Records:
         )
         return SinksRecord(shown, count, rest)
 
+    def net(self, name: str, times: Times, net: int) -> SinkRecord:
+        """Record when a net settles, under a name."""
+        return _sink(name, "net", times, net)
+
     def register_nets(self) -> NDArray[np.int64]:
         """Return the nets on data and control pins of registers, each once."""
-        return np.unique(self._register_sinks[2])
+        on_pin = np.zeros(self._flat.nets, np.bool_)
+        on_pin[self._register_sinks[2]] = True
+        return np.flatnonzero(on_pin)
 
     def trail(self, trail: Trail, most: int | None, places: bool) -> TrailRecord:
         """Record a trail with at most `most` of its hops told one by one (all for None)."""

@@ -26,23 +26,18 @@ DEEPEST = 4
 
 
 def kind_records(flat: Flat) -> tuple[KindRecord, ...]:
-    """Record the kinds in use: parts, gates, operators, each sort by falling count."""
-    counts = np.bincount(flat.inst_kind, minlength=len(flat.kinds))
-    records = [
-        KindRecord(
-            kind.name,
-            kind.group,
-            int(np.count_nonzero(kind.ways == Way.INPUT)),
-            int(counts[number]),
-            ORIGINS[kind.origin],
-            kind.words,
-            kind.register,
-        )
-        for number, kind in enumerate(flat.kinds)
-        if counts[number]
-    ]
+    """Record the kinds in use: parts, gates, operators, each sort by falling count.
+
+    Kinds that differ only in their delays are one record.
+    """
+    counts = np.bincount(flat.inst_kind, minlength=len(flat.kinds)).tolist()
+    found: dict[tuple[str, str, int, str, str, bool], int] = {}
+    for kind, count in zip(flat.kinds, counts, strict=True):
+        key = (kind.name, kind.group, kind.inputs, ORIGINS[kind.origin], kind.words, kind.register)
+        found[key] = found.get(key, 0) + count
     groups = {"part": 0, "gate": 1, "operator": 2}
-    return tuple(sorted(records, key=lambda r: (groups.get(r.group, 3), -r.count, r.name, r.inputs)))
+    records = [KindRecord(*key, count) for key, count in found.items() if count]
+    return tuple(sorted(records, key=lambda r: (groups.get(r.group, 3), -r.instances, r.name, r.inputs)))
 
 
 def port_counts(flat: Flat) -> tuple[int, int, int]:

@@ -15,6 +15,9 @@ from tardigate.report.prose import counted, listed, named, sentence
 MOST_SCOPES = 24
 """Rows of the hierarchy that are shown."""
 
+MOST_KINDS = 40
+"""Kinds that are shown."""
+
 MOST_CLOCKS = 8
 """Clock nets that are shown."""
 
@@ -48,7 +51,7 @@ def _missing(record: SurveyRecord, look: Look) -> list[Text]:
     missing = [kind for kind in record.kinds if kind.origin == "missing"]
     lines = []
     if missing:
-        count = sum(kind.count for kind in missing)
+        count = sum(kind.instances for kind in missing)
         lines += sentence(
             look,
             Text(f"Without a delay: {counted(len(missing), 'kind')}", STYLES["missing"]),
@@ -94,10 +97,9 @@ def _branches(lasts: tuple[bool, ...], look: Look) -> str:
 
 def _kinds(kinds: tuple[KindRecord, ...], look: Look) -> list[Text]:
     rows: list[list[Cell]] = []
-    for kind in kinds:
+    for kind in kinds[:MOST_KINDS]:
         what = f"{kind.group}, register" if kind.register else kind.group
-        origin: Cell = ("missing", "missing") if kind.origin == "missing" else kind.words or kind.origin
-        rows.append([kind.name, (what, "quiet"), str(kind.inputs), str(kind.count), origin])
+        rows.append([kind.name, (what, "quiet"), str(kind.inputs), str(kind.instances), _origin(kind)])
     columns = [
         Column("kind", least=6),
         Column("", least=4),
@@ -105,7 +107,18 @@ def _kinds(kinds: tuple[KindRecord, ...], look: Look) -> list[Text]:
         Column("instances", "right"),
         Column("delays from", least=6),
     ]
-    return [Text(), *_ruled(lay_out(columns, rows, look.width, look), look)] if rows else []
+    lines = [Text(), *_ruled(lay_out(columns, rows, look.width, look), look)] if rows else []
+    if len(kinds) > MOST_KINDS:
+        lines.append(Text(f"{look.glyph('dot')} {len(kinds) - MOST_KINDS} more kinds", STYLES["quiet"]))
+    return lines
+
+
+def _origin(kind: KindRecord) -> Cell:
+    if kind.origin == "missing":
+        return "missing", "missing"
+    if kind.origin == "parts file":
+        return kind.words or kind.origin
+    return f"{kind.words} ({kind.origin})" if kind.origin == "family default" and kind.words else kind.origin
 
 
 def _clocks(record: SurveyRecord, look: Look) -> list[Text]:

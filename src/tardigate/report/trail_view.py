@@ -24,7 +24,7 @@ def trail_view(record: TrailsRecord, look: Look) -> list[Text]:
     falls = waterfalls(record.trails, scale, look)
     for number, (trail, fall) in enumerate(zip(record.trails, falls, strict=True), 1):
         lines += [Text(), heading(trail, scale, look, number if len(record.trails) > 1 else None)]
-        lines += fall if trail.count else [Text("no hop: the source is itself the sink", STYLES["quiet"])]
+        lines += fall if trail.length else [Text("no hop: the source is itself the sink", STYLES["quiet"])]
     return lines + assumption_lines(record.assumptions, look) + caution_lines(look)
 
 
@@ -37,7 +37,7 @@ def heading(trail: TrailRecord, scale: Scale, look: Look, number: int | None = N
     """Return the line above a trail's waterfall: its ends, its time, its hops."""
     first = f"{number}  " if number else ""
     to = f" {look.glyph('to')} "
-    last = f"  {with_unit(trail.total, scale, look)} in {counted(trail.count, 'hop')}"
+    last = f"  {with_unit(trail.total, scale, look)} in {counted(trail.length, 'hop')}"
     room = look.width - cells(first + to + last) - 4
     cut = look.glyph("cut")
     source, sink = look.safe(trail.source.name), look.safe(trail.sink.name)

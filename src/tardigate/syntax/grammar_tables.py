@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from lark import Lark
-    from lark.grammar import Rule
+    from lark.grammar import Rule, Symbol
 
 
 def tables_of(built: Lark) -> dict[str, Any]:
@@ -31,7 +31,7 @@ def tables_of(built: Lark) -> dict[str, Any]:
         symbol.name
         for rule in rules
         for symbol in rule.expansion
-        if symbol.is_term and (rule.options.keep_all_tokens or not symbol.filter_out)
+        if symbol.is_term and (rule.options.keep_all_tokens or not _filtered(symbol))
     }
     pattern, words = _lexer(built)
     names = [terminal.name for terminal in built.terminals]
@@ -88,7 +88,12 @@ def _takes(rule: Rule, placeholders: bool) -> list[int | None] | None:
         symbol = rule.expansion[place]
         if not symbol.is_term and symbol.name.startswith("_"):
             takes.append(-1 - place)
-        elif rule.options.keep_all_tokens or not (symbol.is_term and symbol.filter_out):
+        elif rule.options.keep_all_tokens or not _filtered(symbol):
             takes.append(place)
         place += 1
     return None if takes == list(range(len(rule.expansion))) else takes
+
+
+def _filtered(symbol: Symbol) -> bool:
+    """Say whether a symbol is a token that stands in the rule as a plain text, and so is not kept."""
+    return bool(symbol.is_term and getattr(symbol, "filter_out", False))

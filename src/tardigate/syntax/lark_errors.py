@@ -41,8 +41,8 @@ def explain(
 ) -> Diagnostic:
     """Make the diagnostic `code` (words: `found`, `wanted`) of an error that `parser.parse` raised.
 
-    `where` maps an offset in the parsed text to one in `text`; both count bytes. Raises `error` itself when it
-    is none of lark's complaints about its input.
+    `where` maps an offset in the parsed text to one in `text`; both count bytes. Raises `error` itself when
+    it is none of lark's complaints about its input.
     """
     from lark.exceptions import UnexpectedCharacters, UnexpectedEOF, UnexpectedToken
 
@@ -60,6 +60,8 @@ def explain(
     start = where(token.start_pos or 0)
     span = text.span(start, start + max(1, len(token)))
     hint = did_you_mean(str(token), _words(accepted, parser)) if re.match(r"\w", token) else None
+    if hint is None and _opens_line(text, start) and any(_fixed(name, parser) == ";" for name in accepted):
+        hint = "Perhaps a `;` is missing at the end of the line before."
     return Diagnostic.of(code, span, hint=hint, found=f"`{token}`", wanted=wanted)
 
 
@@ -69,6 +71,12 @@ def _accepted(error: UnexpectedInput) -> set[str]:
     if interactive is not None:
         return set(interactive.accepts())
     return set(getattr(error, "expected", None) or getattr(error, "allowed", None) or ())
+
+
+def _opens_line(text: PlacedText, start: int) -> bool:
+    """Say whether nothing but blanks stands before a token on its line, and a line before that."""
+    line = text.data.rfind(b"\n", 0, start)
+    return line >= 0 and not text.data[line:start].strip()
 
 
 def _character(text: PlacedText, start: int) -> str:
@@ -89,7 +97,7 @@ def _words(accepted: set[str], parser: Lark) -> list[str]:
 
 
 def _wanted(accepted: set[str], parser: Lark, friendly: Mapping[str, str]) -> str:
-    """Return what could stand there, as words; words that would serve as names go unmentioned beside "a name"."""
+    """Return what could stand there; words that would serve as names go unmentioned beside "a name"."""
     named = "NAME" in accepted
     signs, words, others = set(), set(), set()
     for name in accepted:

@@ -101,11 +101,15 @@ def _outside(scan: Scan, first: int, stop: int, text: PlacedText, collector: Col
 
 
 def used_names(scan: Scan, marks: NDArray[np.uint8], module: ModuleText) -> list[str]:
-    """Return the names that may be modules which this one uses: names before a name or a `#`."""
+    """Return the names that may be modules which this one uses: names before a name or a `#`.
+
+    Neither the module's own name in its header (`module m #(...)`) nor that of a delay (`buf #D g (...)`).
+    """
     window = marks[module.first : module.stop]
     here = np.flatnonzero(window[:-1] == NAME)
+    here = here[here > 1]
     following = window[here + 1]
-    after = np.frombuffer(scan.data, np.uint8)[scan.at[module.first + here + 1]]
-    first = here[(following == NAME) | (after == 0x23)]
+    byte = np.frombuffer(scan.data, np.uint8)[scan.at[module.first : module.stop]]
+    first = here[((following == NAME) | (byte[here + 1] == 0x23)) & (byte[here - 1] != 0x23)]
     words = scan.word[scan.word_of[module.first + first]]
     return [scan.names.text(int(name)) for name in np.unique(words)]

@@ -20,8 +20,8 @@ SYNTAX = "P001"
 """The code of text that the grammar does not know."""
 
 
-def read_families(file: SourceFile, collector: Collector) -> tuple[tree.Family, ...]:
-    """Return the families of a parts file; what the grammar does not know is told, and gives none."""
+def read_families(file: SourceFile, collector: Collector) -> tuple[tree.Family, ...] | None:
+    """Return the families of a parts file; what the grammar does not know is told, and gives None."""
     reader = _reader()
     text = file.data.decode("latin-1")  # a byte a character: offsets stay those of the file
     try:
@@ -30,7 +30,7 @@ def read_families(file: SourceFile, collector: Collector) -> tuple[tree.Family, 
         from tardigate.syntax.lark_errors import explain  # only on the way to a refusal
 
         collector.add(explain(error, reader.lark, PlacedText.whole(file), SYNTAX))
-        return ()
+        return None
     return tuple(family._replace(file=file) for family in families)
 
 
@@ -93,14 +93,17 @@ class _Maker:
         inside = str(token)[1:-1].encode("latin-1").decode("utf-8", "replace")
         return Word(inside, token.start_pos, token.end_pos)
 
-    name = delay = width = period = check_before = check_after = edge = level = polarity = arrow = each = when = staticmethod(_only)
+    name = delay = width = period = check_before = check_after = edge = staticmethod(_only)
+    level = polarity = arrow = each = when = staticmethod(_only)
     names = pins = staticmethod(_all)
 
     @staticmethod
     def no_polarity(children: list[Any]) -> None:
         """Nothing is written there."""
 
-    start = staticmethod(list)
+    @staticmethod
+    def start(children: list[Any]) -> list[tree.Family]:
+        return children
 
     @staticmethod
     def family(children: list[Any]) -> tree.Family:

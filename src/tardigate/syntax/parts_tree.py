@@ -1,7 +1,7 @@
 """The tree of a parts file: what is written, in order, nothing looked up. Data only.
 
 Every word keeps its place, so that whatever is refused later can be shown. Numbers are still text. Named
-tuples, here and in the model, because thirty frozen dataclasses would take longer to define than a file to read.
+tuples, here and in the model: thirty frozen dataclasses would take longer to define than a file to read.
 """
 
 from __future__ import annotations
@@ -60,8 +60,8 @@ class PinRef(NamedTuple):
 class Expr(NamedTuple):
     """A piece of a function.
 
-    `form`: `binary`, `prefix`, `choose` (condition, then, else), `concat`, `number`, `read`, `read_bit` (its one
-    argument is the index) or `read_bits`; `word`: the operator, number or name, its opening brace for none.
+    `form`: `binary`, `prefix`, `choose` (condition, then, else), `concat`, `number`, `read`, `read_bit` (its
+    one argument is the index) or `read_bits`; `word`: the operator, number or name, its opening brace for none.
     """
 
     form: str
@@ -165,7 +165,7 @@ class Checks(NamedTuple):
 
 
 class Load(NamedTuple):
-    """Rated load of outputs (all of them where `pins` is empty), and the delay of each unit of load beyond it."""
+    """Rated load of outputs (all where `pins` is empty), and the delay of each unit of load beyond it."""
 
     pins: tuple[PinRef, ...]
     rated: Quantity
