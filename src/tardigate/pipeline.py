@@ -48,6 +48,10 @@ class Request:
     grade: Grade = "span"
     bulk: bool = True
 
+    def paths(self, files: tuple[str | SourceFile, ...]) -> tuple[str, ...]:
+        """Return the paths of `files` or `parts`."""
+        return tuple(file if isinstance(file, str) else file.path for file in files)
+
 
 @dataclass(frozen=True, slots=True)
 class Loaded:

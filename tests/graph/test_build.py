@@ -101,8 +101,9 @@ def test_levels_do_not_depend_on_how_wide_they_are(width: int) -> None:
     rng = np.random.default_rng(width)
     depth = 7
     points = rng.permutation(width * depth).astype(np.int32).reshape(depth, width)
-    tail = np.concatenate([points[:-1], points[:-1]], axis=1).reshape(-1)
-    head = np.concatenate([points[1:], np.roll(points[1:], 1, axis=1)], axis=1).reshape(-1)
+    steps = [(points[i], points[j]) for i in range(depth) for j in range(i + 1, depth)]
+    steps += [(points[i], np.roll(points[i + 1], 1)) for i in range(depth - 1)]
+    tail, head = (np.concatenate(side) for side in zip(*steps, strict=True))
     level = find_levels(width * depth, tail, head)
     assert (level[points] == np.arange(depth)[:, None]).all()
 

@@ -68,9 +68,9 @@ def circuits(
             pins = [draw(outputs if way else inputs) for way in kind.ways]
             parts.append((f"u{layer}_{number}", kind, " ".join(pins)))
         known += [f"n{layer}_0", f"n{layer}_1"]
-    pins = st.sampled_from([*known, "0", "."])
+    any_net = st.sampled_from([*known, "0", "."])
     resets = st.sampled_from("ab0.")  # a reset from the register's own output would be a loop
-    parts += [(f"r_{q}", register, f"{draw(pins)} {draw(pins)} {draw(resets)} {q}") for q in held]
+    parts += [(f"r_{q}", register, f"{draw(any_net)} {draw(any_net)} {draw(resets)} {q}") for q in held]
     ends = draw(st.lists(st.sampled_from(known), max_size=4, unique=True))
     both = [name for name in ends[:1] if name not in "ab"]
     only_out = [name for name in ends if name not in both]

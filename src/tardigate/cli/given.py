@@ -31,6 +31,6 @@ def subject_of(loaded: Loaded) -> Subject:
         request.grade,
         request.condition or assumed,
         assumed is not None,
-        request.files,
-        request.parts,
+        request.paths(request.files),
+        request.paths(request.parts),
     )

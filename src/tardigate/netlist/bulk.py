@@ -30,7 +30,7 @@ class Rows(NamedTuple):
     """Connections of the statements: `net` int32 local nets (UNCLEAR for a closer look), by statement."""
 
     start: NDArray[np.int64]
-    count: NDArray[np.int64]
+    counts: NDArray[np.int64]
     row: NDArray[np.int64]
     net: NDArray[np.int32]
 
@@ -59,7 +59,8 @@ class Bulk:
         if not runs:
             return np.zeros(0, np.int64)
         every = np.concatenate([np.arange(run.first, run.last) for run in runs])
-        return every[~self.plain.is_declaration[every]]
+        found: NDArray[np.int64] = every[~self.plain.is_declaration[every]]
+        return found
 
     def names(self, statements: NDArray[np.int64]) -> tuple[NDArray[np.int32], NDArray[np.int64]]:
         """Return the names of nets that the statements use, each once, and where first, in order of place."""
@@ -136,15 +137,15 @@ class Bulk:
         heads = self.plain.head[statements]
         inner = np.ones(len(rows.row), bool)  # rows that are inputs
         inner[rows.start] = False
-        many = np.isin(heads, [gate_numbers[GATES.index(gate)] for gate in _ONE_INPUT]) & (rows.count > 2)
+        many = np.isin(heads, [gate_numbers[GATES.index(gate)] for gate in _ONE_INPUT]) & (rows.counts > 2)
         for statement in np.flatnonzero(many):
             begin = int(rows.start[statement])
-            inner[begin : begin + int(rows.count[statement]) - 1] = False
+            inner[begin : begin + int(rows.counts[statement]) - 1] = False
         unclear = (rows.net == UNCLEAR) | (~inner & (rows.net < CONSTANTS))
         clear = ~np.logical_or.reduceat(unclear, rows.start)
         kind = np.full(len(statements), -1, np.int32)
-        widest = int(rows.count.max()) + 1
-        pairs, back = np.unique(heads.astype(np.int64) * widest + rows.count, return_inverse=True)
+        widest = int(rows.counts.max()) + 1
+        pairs, back = np.unique(heads.astype(np.int64) * widest + rows.counts, return_inverse=True)
         for at, pair in enumerate(pairs.tolist()):
             gate, count = self.unit.scan.names.text(pair // widest), pair % widest
             legal = count == 3 if gate in _THREE_STATE else count >= 2
@@ -153,11 +154,11 @@ class Bulk:
         clear &= kind >= 0
         if not clear.all():
             left.append(statements[~clear])
-            keep = np.repeat(clear, rows.count)
+            keep = np.repeat(clear, rows.counts)
             statements, kind = statements[clear], kind[clear]
-            rows = Rows(rows.start, rows.count[clear], rows.row[keep], rows.net[keep])
+            rows = Rows(rows.start, rows.counts[clear], rows.row[keep], rows.net[keep])
         name, place = self._names_and_places(statements)
-        blocks.append(Block(kind, place, name, rows.count, rows.net))
+        blocks.append(Block(kind, place, name, rows.counts, rows.net))
 
     def _parts(
         self, statements: NDArray[np.int64], head: int, blocks: list[Block], left: list[NDArray[np.int64]]
@@ -168,7 +169,7 @@ class Bulk:
             return
         interface, kind = known
         rows = self._rows(statements)
-        owner = np.repeat(np.arange(len(statements)), rows.count)
+        owner = np.repeat(np.arange(len(statements)), rows.counts)
         pin = self._pins(rows, interface)
         wrong = (pin < 0) | (pin >= len(interface.pins)) | (rows.net == UNCLEAR)
         ways = np.array([int(p.way) for p in interface.pins])
@@ -190,7 +191,7 @@ class Bulk:
     def _pins(self, rows: Rows, interface: Interface) -> NDArray[np.int64]:
         """Return the number of the pin of each connection, -1 for one that is not there."""
         names = self.plain.pin[rows.row]
-        by_order = np.arange(len(rows.row)) - np.repeat(rows.start, rows.count)
+        by_order = np.arange(len(rows.row)) - np.repeat(rows.start, rows.counts)
         distinct, back = np.unique(names, return_inverse=True)
         found = np.array([interface.find(self.unit.scan.names.text(n)) if n >= 0 else -1 for n in distinct.tolist()])
         return np.where(names >= 0, found[back], by_order)
@@ -239,4 +240,5 @@ def gate_terminals(gate: str, count: int) -> tuple[int, int]:
 
 def _spread(start: NDArray[np.int64], count: NDArray[np.int64]) -> NDArray[np.int64]:
     """Return the numbers `start[i]` to `start[i] + count[i]` of all `i`, joined."""
-    return np.arange(count.sum()) + np.repeat(start - (np.cumsum(count) - count), count)
+    spread: NDArray[np.int64] = np.arange(count.sum()) + np.repeat(start - (np.cumsum(count) - count), count)
+    return spread

@@ -92,11 +92,13 @@ class Connector:
             return [nets[::-1]] * copies
         if copies > 1 and len(nets) == copies * pin.width:
             return [nets[i * pin.width : (i + 1) * pin.width][::-1] for i in range(copies - 1, -1, -1)]
-        words = {"pin": pin.name or "terminal", "width": pin.width, "given": len(nets)}
-        if copies > 1 or scalar:
-            self.wiring.collector.tell("N166", self.wiring.span(net.at), **words)
+        refused = copies > 1 or scalar
+        self.wiring.collector.tell(
+            "N166" if refused else "N164", self.wiring.span(net.at),
+            pin=pin.name or "terminal", width=pin.width, given=len(nets),
+        )  # fmt: skip
+        if refused:
             return None
-        self.wiring.collector.tell("N164", self.wiring.span(net.at), **words)
         fill = 0 if pin.way == Way.INPUT else OPEN
         nets = nets[: pin.width] + [fill] * (pin.width - len(nets))
         return [nets[::-1]] * copies

@@ -39,10 +39,10 @@ def _divide(a: int, b: int) -> int:
 
 def _power(a: int, b: int) -> int:
     if b < 0:
-        return 0 if abs(a) != 1 else a**-b
+        return 0 if abs(a) != 1 else a if b % 2 else 1
     if abs(a) > 1 and b * max(1, abs(a).bit_length()) > LARGEST:
         raise OverflowError
-    return a**b
+    return int(a**b)
 
 
 def _shift_left(a: int, b: int) -> int:
@@ -96,7 +96,7 @@ def _children(node: tree.Expression) -> tuple[tree.Expression, ...]:
     if isinstance(node, tree.Concatenation):
         return node.parts
     if isinstance(node, tree.Replication):
-        return (node.count, *node.parts)
+        return (node.times, *node.parts)
     return ()
 
 

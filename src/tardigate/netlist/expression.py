@@ -152,7 +152,7 @@ class Expressions:
         times = 1
         if isinstance(node, tree.Replication):
             try:
-                times = evaluate(node.count, self.wiring.values).value
+                times = evaluate(node.times, self.wiring.values).value
             except NotConstantError as error:
                 self.wiring.collector.tell("N120", self.wiring.span(error.at), reason=error.reason)
                 return False

@@ -8,6 +8,7 @@ from __future__ import annotations
 import numpy as np
 
 from tardigate.netlist.flat import CONSTANTS, Flat
+from tardigate.netlist.template import Template
 from tardigate.source.span import Span
 
 CONSTANT_NAMES = ("1'b0", "1'b1", "1'bx", "1'bz")
@@ -39,8 +40,8 @@ class Names:
             return CONSTANT_NAMES[net]
         raw = int(self._flat.net_raw[net])
         scope = int(np.searchsorted(self._flat.scope_net, raw, "right")) - 1
-        template = self._flat.templates[self._flat.scope_template[scope]]
-        return self.scope(scope) + template.net_names[raw - int(self._flat.scope_net[scope])]
+        template = self._template(scope)
+        return f"{self.scope(scope)}{template.net_names[raw - int(self._flat.scope_net[scope])]}"
 
     def net_place(self, net: int) -> Span | None:
         """Return where a net is declared; None for a constant."""
@@ -48,8 +49,11 @@ class Names:
             return None
         raw = int(self._flat.net_raw[net])
         scope = int(np.searchsorted(self._flat.scope_net, raw, "right")) - 1
-        template = self._flat.templates[self._flat.scope_template[scope]]
+        template = self._template(scope)
         return template.text.span(int(template.net_place[raw - int(self._flat.scope_net[scope])]))
+
+    def _template(self, scope: int) -> Template:
+        return self._flat.templates[int(self._flat.scope_template[scope])]
 
     def _inst(self, inst: int) -> tuple[int, int]:
         scope = int(np.searchsorted(self._flat.scope_inst, inst, "right")) - 1
@@ -58,7 +62,7 @@ class Names:
     def instance(self, inst: int) -> str:
         """Return a part instance's name; one without a name is called by its kind and line, `and:12`."""
         scope, local = self._inst(inst)
-        template = self._flat.templates[self._flat.scope_template[scope]]
+        template = self._template(scope)
         name = template.inst_names[local]
         if not name:
             kind = self._flat.kinds[self._flat.inst_kind[inst]].name.replace(" ", ":")
@@ -68,5 +72,5 @@ class Names:
     def place(self, inst: int) -> Span:
         """Return where a part instance is written."""
         scope, local = self._inst(inst)
-        template = self._flat.templates[self._flat.scope_template[scope]]
+        template = self._template(scope)
         return template.text.span(int(template.inst_place[local]))

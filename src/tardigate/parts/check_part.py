@@ -1,6 +1,7 @@
 """Whether a part's tables and functions agree: all that may refuse a part whose words are known.
 
-Takes a part, tells rows that stand twice, contradict the function or time nothing, and changes without a time.
+Takes a part, tells rows that stand twice, contradict the function or time nothing, and changes that no row
+times. Does not build anything.
 """
 
 from __future__ import annotations
@@ -72,7 +73,7 @@ def _checks_twice(part: Part, collector: Collector) -> None:
 
 
 def _polarity(part: Part, collector: Collector) -> set[int]:
-    """Tell explicit polarities that the function does not have (under the row's `when`); return those rows."""
+    """Tell polarities that the function does not have (under the row's `when`); return those rows."""
     told: set[int] = set()
     for row in part.rows:
         for tail, head in row.pairs if row.polarity else ():

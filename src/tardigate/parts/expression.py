@@ -1,7 +1,7 @@
 """Expressions over pins to nodes, one for each bit.
 
-Takes a tree and the names of its part, gives nodes, most significant bit first; tells what may not be read and
-widths that differ. Iterative: an expression may be as deep as it likes.
+Takes a tree and the names of its part, gives nodes, most significant bit first; tells what may not be read
+and widths that differ. Iterative: an expression may be as deep as it likes.
 """
 
 from __future__ import annotations

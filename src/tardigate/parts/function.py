@@ -69,7 +69,7 @@ class Network:
         return Tables(self, roots, inputs, values) if len(inputs) <= EXACT else None
 
     def polarities(self, root: int, values: Values, when: int = -1) -> dict[int, int]:
-        """Return the polarity of each input bit that can change `root`, in the states in which `when` holds."""
+        """Return the polarity of each input bit that can change `root`, in states in which `when` holds."""
         tables = self.tables([root] if when < 0 else [root, when], values)
         if tables is None:
             return self._structural(root, values)
@@ -103,7 +103,10 @@ class Network:
 
 
 class Tables:
-    """Truth tables of some nodes as integers: bit `s` is the value in state `s`, where input `i` is bit `i` of `s`."""
+    """Truth tables of some nodes as integers.
+
+    Bit `s` of a table is the value in state `s`; bit `i` of `s` is the value of input `i` of `inputs`.
+    """
 
     def __init__(self, network: Network, roots: list[int], inputs: list[int], values: Values) -> None:
         self.inputs = inputs

@@ -1,7 +1,7 @@
 """Gate primitives (IEEE 1364-2005 clause 7) and operators of assignments (clause 5.1) as kinds.
 
-Takes a name, numbers of inputs and outputs, and what gives a delay for each transition of the output. Does not
-look delays up.
+Takes a name, numbers of inputs and outputs, and what gives a delay for each transition of the output. Does
+not look delays up.
 """
 
 from __future__ import annotations
@@ -70,7 +70,7 @@ def hops_between(tail: int, head: int, polarity: int, delay_of: DelayOf) -> list
 def control_hops(tail: int, head: int, enables: Edge, delay_of: DelayOf) -> list[KindHop]:
     """Return the hops from a control pin to a three-state output, which `enables` lets drive.
 
-    The output leaves its high level with tPHZ and its low level with tPLZ, towards wherever its net is pulled.
+    The output leaves its high level with tPHZ and its low level with tPLZ, to wherever its net is pulled.
     """
     disables = OPPOSITE[enables]
     return [

@@ -71,7 +71,7 @@ class Library:
         return sorted(self._parts)
 
     def pins(self, module: str) -> tuple[Pin, ...]:
-        """Return the pins of a part in the order of their declaration. Raises KeyError for an unknown part."""
+        """Return the pins of a part in declared order. Raises KeyError for an unknown part."""
         return self._parts[module].pins
 
     def parameters(self, module: str) -> Mapping[str, int | None]:

@@ -1,7 +1,7 @@
 """Rows of times against what a part's functions can do.
 
-Takes a part, gives for each change that can pass the rows that time it, the changes that no row times, and the
-rows that time nothing. Tells nothing: `check_part` and `part_kind` do with it what they must.
+Takes a part, gives for each change that can pass the rows that time it, the changes that no row times, and
+the rows that time nothing. Tells nothing: `check_part` and `part_kind` do with it what they must.
 """
 
 from __future__ import annotations
@@ -15,7 +15,7 @@ from tardigate.parts.needs import DISABLING, ENABLING, NOBODY, Need, function_of
 
 
 class Matched(NamedTuple):
-    """`timed`: changes, each with a row; `missing`: changes without; `idle`: rows, and a pair they do not time."""
+    """`timed`: changes, each with a row; `missing`: those without; `idle`: rows, and a pair they do not time."""
 
     timed: list[tuple[Need, Row]]
     missing: list[Need]
@@ -35,7 +35,7 @@ def match(part: Part, values: Values) -> Matched:
             needs = needs_of(part, head, values)
             _known(part, head, needs, given, values, matched)
         else:
-            _unknown(part, head, given, values, matched)
+            _unknown(part, head, given, matched)
     return matched
 
 
@@ -69,7 +69,7 @@ def _fits(part: Part, need: Need, row: Row, values: Values) -> bool:
     return bool(polarity & (POSITIVE if (need.tail_edge == Edge.RISE) == enabling else NEGATIVE))
 
 
-def _unknown(part: Part, head: int, given: dict[int, list[Row]], values: Values, matched: Matched) -> None:
+def _unknown(part: Part, head: int, given: dict[int, list[Row]], matched: Matched) -> None:
     """Take rows at their word where no function speaks; an edge of the output that none gives is missing."""
     for tail, rows in given.items():
         clocks = [register for register in part.registers if register.clock == tail]

@@ -19,8 +19,8 @@ NOBODY = -1
 class Need(NamedTuple):
     """A change that can pass from bit `tail` to output bit `head`.
 
-    `transition` is the output's (`LH HL ZH ZL HZ LZ`); `launches`: begins at a clock edge; `root`: the node whose
-    dependence on `tail` it is, for a closer look under a condition, or NOBODY.
+    `transition` is the output's (`LH HL ZH ZL HZ LZ`); `launches`: begins at a clock edge; `root`: the node
+    whose dependence on `tail` it is, for a closer look under a condition, or NOBODY.
     """
 
     tail: int
@@ -59,7 +59,7 @@ def needs_of(part: Part, head: int, values: Values) -> dict[int, list[Need]]:
     network = part.network
     root = function_of(part, head)
     for bit, polarity in network.polarities(root, values).items() if root >= 0 else ():
-        if bit < 0 or bit == head and bit not in stored:  # a parameter, or an inout that reads itself
+        if bit < 0 or (bit == head and bit not in stored):  # a parameter, or an inout that reads itself
             continue
         if bit in stored:
             some = _stored_needs(part, head, bit, polarity, stored[bit], values)
@@ -93,7 +93,7 @@ def _launches(register: Register, head: int) -> Iterator[Need]:
 def _stored_needs(
     part: Part, head: int, state: int, polarity: int, register: Register, values: Values
 ) -> Iterator[Need]:
-    """Give what a stored bit passes on: the clock's edge, clear and set, and a latch's data while it is open."""
+    """Give what a stored bit passes on: the clock's edge, clear and set, a latch's data while it is open."""
     yield from _launches(register, head)
     stored = {bit for each in part.registers for bit in each.stores}
     if register.latch:
@@ -113,7 +113,7 @@ def composed(first: int, second: int) -> int:
 
 
 def _forced(tail: int, head: int, active: int, polarity: int, level: Edge, latch: bool) -> Iterator[Need]:
-    """Give what clear or set does: its beginning forces the stored bit to `level`; an open latch moves at its end."""
+    """Give what clear or set does: it forces the stored bit to `level`; at its end an open latch moves back."""
     for tail_edge, flag in ((Edge.RISE, POSITIVE), (Edge.FALL, NEGATIVE)):
         moves = [(tail_edge, level)] if active & flag else []
         if latch and moves:

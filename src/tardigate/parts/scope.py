@@ -28,7 +28,7 @@ class Signal(NamedTuple):
     place: Place
 
     def picked(self, msb: int, lsb: int) -> tuple[int, ...] | None:
-        """Return the bits from index `msb` to `lsb`, or None where one is not there or the order is reversed."""
+        """Return the bits from index `msb` to `lsb`, None where one is not there or the order is reversed."""
         step = 1 if self.lsb >= self.msb else -1
         first, last = (msb - self.msb) * step, (lsb - self.msb) * step
         if not (self.vector and 0 <= first <= last < len(self.bits)):
@@ -100,7 +100,7 @@ class Scope:
 
 
 def bounds(written: Range | None) -> tuple[int, int]:
-    """Return msb and lsb of a range as numbers; (0, 0) without one. Digits beyond nine count as the largest."""
+    """Return msb and lsb of a range as numbers; (0, 0) without one. Over nine digits count as the largest."""
     if written is None:
         return 0, 0
     msb = _index(written.msb)

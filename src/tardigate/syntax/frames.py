@@ -18,6 +18,8 @@ from tardigate.syntax.placing import Sink, Use
 LARGEST_EXPANSION = 64 << 20
 """Bytes of text that macros may give, and that files may give that are included again; 16 more a byte of the
 file, so that a large file may use a macro for each gate."""
+MOST_FAULTS = 100_000
+"""Faults of one code after which the rest is not read: the text is something else than Verilog."""
 MOST_USES = 250_000
 """Uses inside macros, and brackets and commas read for them; one more for each 16 bytes of the file."""
 
@@ -70,7 +72,10 @@ class Call:
 
 
 class Voice:
-    """Tells faults; beyond the number that is kept of a code it only counts, so that no file is slow."""
+    """Tells faults; beyond the number that is kept of a code it only counts, so that no file is slow.
+
+    `tell` raises InputRefusedError at `MOST_FAULTS` of a code.
+    """
 
     def __init__(self, collector: Collector) -> None:
         self.collector = collector
@@ -100,6 +105,8 @@ class Voice:
                 related = (Related(begun.span(), "begins here"), *related)
             self._last[code] = Diagnostic.of(code, use.span(), hint=hint, related=related, **words)
         self.collector.add(self._last[code])
+        if told >= MOST_FAULTS:
+            self.collector.refuse()
 
     def tires_of(self, code: str) -> bool:
         """Return whether more of a code are only counted."""

@@ -57,8 +57,14 @@ class Reader:
             self._lark = Lark(self._text, parser="lalr", lexer="basic", maybe_placeholders=True)
         return self._lark
 
+    @property
+    def words(self) -> frozenset[str]:
+        """The fixed words of the language, signs left out."""
+        assert self._machine is not None
+        return self._machine.words
+
     def read(self, text: str) -> Any:
-        """Return what the maker makes of a text. Raises lark's UnexpectedInput for one outside the grammar."""
+        """Return what the maker makes of a text. Raises lark's UnexpectedInput when it is refused."""
         from tardigate.syntax.lalr import NotInGrammarError
 
         assert self._machine is not None

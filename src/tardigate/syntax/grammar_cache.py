@@ -10,15 +10,19 @@ import json
 import os
 import stat
 import sys
+from contextlib import suppress
 from pathlib import Path
 from typing import Any
 
 SWITCH = "TARDIGATE_CACHE"
 """Environment variable; `off` keeps tardigate from reading and writing kept tables."""
 
+VERSIONS = 4
+"""Versions of a grammar whose tables are kept side by side."""
+
 
 def folder() -> Path | None:
-    """Return the folder of kept tables (XDG Base Directory specification), or None where there is to be none."""
+    """Return the folder of kept tables (XDG Base Directory specification), None where none is wanted."""
     if os.environ.get(SWITCH, "").lower() == "off":
         return None
     base = os.environ.get("XDG_CACHE_HOME", "")
@@ -62,20 +66,21 @@ def keep(name: str, key: str, tables: Any) -> None:
         with os.fdopen(handle, "w", encoding="ascii") as file:
             file.write(text)
         os.replace(part, place / _file(name, key))
-        _forget_older(place, name, key)
+        _forget_oldest(place, name)
     except OSError:
-        part.unlink(missing_ok=True) if place.is_dir() else None
+        with suppress(OSError):
+            part.unlink(missing_ok=True)
 
 
 def _file(name: str, key: str) -> str:
     return f"{name}-{key[:32]}.json"
 
 
-def _forget_older(place: Path, name: str, key: str) -> None:
-    """Remove tables that another version of the grammar left, so that the folder does not grow for ever."""
-    for other in place.glob(f"{name}-*.json"):
-        if other.name != _file(name, key):
-            other.unlink(missing_ok=True)
+def _forget_oldest(place: Path, name: str) -> None:
+    """Remove the oldest tables of other versions, so that the folder does not grow for ever."""
+    files = sorted(place.glob(f"{name}-*.json"), key=lambda file: file.stat().st_mtime)
+    for old in files[:-VERSIONS]:
+        old.unlink(missing_ok=True)
 
 
 def _ours(status: os.stat_result, form: Any) -> bool:

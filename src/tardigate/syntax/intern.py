@@ -57,8 +57,8 @@ class Interned:
         for at in np.flatnonzero(self.hashes[near] == keys):
             if self.data[self.start[near[at]] : self.stop[near[at]]] == words[at]:
                 found[at] = near[at]
-        for at, word in enumerate(words if self.spill else ()):
-            found[at] = self.spill.get(word, found[at])
+        for number, word in enumerate(words if self.spill else ()):
+            found[number] = self.spill.get(word, int(found[number]))
         return found
 
 
@@ -67,7 +67,7 @@ def _keys(data: bytes, start: NDArray[np.integer], stop: NDArray[np.integer]) ->
     padded = data + bytes(16)
     pieces = np.ndarray((len(data) + 8,), dtype="<u8", buffer=padded, strides=(1,))
     length = stop - start
-    keys = pieces[start] & _MASKS[np.minimum(length, 8)]
+    keys: NDArray[np.uint64] = pieces[start] & _MASKS[np.minimum(length, 8)]
     rest = np.flatnonzero(length > 8)
     offset = 8
     with np.errstate(over="ignore"):

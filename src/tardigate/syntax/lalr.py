@@ -1,7 +1,7 @@
 """Runs a grammar's tables over a text: a plain LALR(1) machine (Aho, Sethi, Ullman 1986, section 4.7).
 
-Takes tables as `grammar_tables` makes them and an object with a method for each rule, gives what its method for
-the start rule returns. It knows the grammar from the tables alone and says of a faulty text only that it is
+Takes tables as `grammar_tables` makes them and an object with a method for each rule, gives what its method
+for the start rule returns. It knows the grammar from the tables alone and says of a faulty text only that it is
 faulty: lark, on the same grammar, tells why.
 """
 
@@ -31,8 +31,8 @@ class Machine:
     """A grammar's tables with the methods of a maker bound to its rules.
 
     A rule's method gets the list of its children, a terminal's method (named like it, in capitals) its token.
-    A rule whose name begins with `_` gives its children to the rule around it; one that has no method is given
-    as a list with its name before its children.
+    A rule whose name begins with `_` gives its children to the rule around it; one that has no method is
+    given as a list with its name before its children.
     """
 
     def __init__(self, tables: dict[str, Any], maker: object) -> None:
@@ -40,6 +40,7 @@ class Machine:
         self._start, self._end = tables["start"], tables["end"]
         self._scan = re.compile(tables["pattern"])
         self._words: dict[str, dict[str, str]] = tables["words"]
+        self.words = frozenset(word for some in self._words.values() for word in some)
         self._ignored = frozenset(tables["ignored"])
         self._unseen = frozenset(tables["unseen"])
         self._shifted = {name: getattr(maker, name, None) for name in tables["terminals"]}

@@ -1,7 +1,7 @@
 """The only file that knows lark's errors.
 
-Takes an error of the parser and the text it read, gives a diagnostic in the user's words: what stands there and
-what could stand there. Does not decide whether the text is refused.
+Takes an error of the parser and the text it read, gives a diagnostic in the user's words: what stands there
+and what could stand there. Does not decide whether the text is refused.
 """
 
 from __future__ import annotations

@@ -34,6 +34,11 @@ def read_families(file: SourceFile, collector: Collector) -> tuple[tree.Family, 
     return tuple(family._replace(file=file) for family in families)
 
 
+def reserved_words() -> frozenset[str]:
+    """Return the words of the language; as a name, each is best written escaped."""
+    return _reader().words
+
+
 @cache
 def _reader() -> Reader:
     return Reader("parts", _Maker())

@@ -61,7 +61,7 @@ class Expr(NamedTuple):
     """A piece of a function.
 
     `form`: `binary`, `prefix`, `choose` (condition, then, else), `concat`, `number`, `read`, `read_bit` (its
-    one argument is the index) or `read_bits`; `word`: the operator, number or name, its opening brace for none.
+    one argument is the index) or `read_bits`; `word`: the operator, number or name.
     """
 
     form: str

@@ -169,7 +169,8 @@ def _fits(marks: NDArray[np.uint8], depth: NDArray[np.int8]) -> NDArray[np.bool_
     for by in (2, 1, 0):
         key *= _KINDS
         key += _shift(marks, by) if by else marks
-    return _ALLOWED[0][key]
+    fits: NDArray[np.bool_] = _ALLOWED[0][key]
+    return fits
 
 
 def _whole(

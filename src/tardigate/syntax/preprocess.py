@@ -56,7 +56,7 @@ def preprocess(
 
     Comments and directives become spaces, line ends are kept; without any, the text is the file's very bytes.
     Faults go to the collector (V101 to V144, U101, U102). Raises InputRefusedError only when the expansion
-    grows past its limits (V105).
+    grows past its limits (V105) or faults of one code pass 100,000.
     """
     macros = dict(after.macros) if after else _given(options, collector)
     settings = _settings(after)

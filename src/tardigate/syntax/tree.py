@@ -61,9 +61,9 @@ class Concatenation(NamedTuple):
 
 
 class Replication(NamedTuple):
-    """`{count{a, b}}`."""
+    """`{times{a, b}}`."""
 
-    count: Expression
+    times: Expression
     parts: tuple[Expression, ...]
     at: int
 

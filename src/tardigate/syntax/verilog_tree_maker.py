@@ -84,12 +84,13 @@ class TreeMaker(Transformer[Token, tree.Module]):
         return _Type(net, _signed(children), _of(children, tree.Range))
 
     def declared_port(self, children: list[Any]) -> tree.HeaderPort:
-        direction, kind = children[0], _of(children, _Type) or _PLAIN
+        direction = children[0]
+        kind: _Type = _of(children, _Type) or _PLAIN
         name = next(c for c in children[1:] if isinstance(c, Token))
         at = self._at(name)
         value = children[-1] if children[-1] is not name else None
         named = (tree.Named(_word(name), value, at),)
-        declaration = tree.Declaration(str(direction), *kind, None, named, at)
+        declaration = tree.Declaration(str(direction), kind.net, kind.signed, kind.range, None, named, at)
         return tree.HeaderPort(_word(name), tree.Reference((_word(name),), (), at), declaration, at)
 
     def named_port(self, children: list[Any]) -> tree.HeaderPort:
@@ -114,12 +115,14 @@ class TreeMaker(Transformer[Token, tree.Module]):
         return self._runs[self._at(children[0])]
 
     def port_declaration(self, children: list[Any]) -> tree.Declaration:
-        kind = _of(children, _Type) or _PLAIN
-        return tree.Declaration(str(children[0]), *kind, None, children[-1], self._at(children[0]))
+        kind: _Type = _of(children, _Type) or _PLAIN
+        at = self._at(children[0])
+        return tree.Declaration(str(children[0]), kind.net, kind.signed, kind.range, None, children[-1], at)
 
     def net_declaration(self, children: list[Any]) -> tree.Declaration:
-        kind = (str(children[0]), _signed(children), _of(children, tree.Range))
-        return tree.Declaration("", *kind, _of(children, tree.Delay), children[-1], self._at(children[0]))
+        word, bounds, delay = str(children[0]), _of(children, tree.Range), _of(children, tree.Delay)
+        at = self._at(children[0])
+        return tree.Declaration("", word, _signed(children), bounds, delay, children[-1], at)
 
     def parameter(self, children: list[Any]) -> tree.Parameter:
         return tree.Parameter(False, _of(children, tree.Range), children[-1], children[-1][0].at)
@@ -209,7 +212,7 @@ class TreeMaker(Transformer[Token, tree.Module]):
         return tree.Delay(tuple(children), children[0].at)
 
     def triple(self, children: list[Any]) -> tree.Expression:
-        return children[0] if len(children) == 1 else tree.Triplet(*children, at=children[0].at)
+        return children[0] if len(children) == 1 else self.grouped_triple(children)  # type: ignore[no-any-return]
 
     # Expressions
 
@@ -248,7 +251,8 @@ class TreeMaker(Transformer[Token, tree.Module]):
         return children[0]  # type: ignore[no-any-return]
 
     def grouped_triple(self, children: list[Any]) -> tree.Triplet:
-        return tree.Triplet(*children, at=children[0].at)
+        low, middle, high = children
+        return tree.Triplet(low, middle, high, low.at)
 
     def reference(self, children: list[Any]) -> tree.Reference:
         path = tuple(_word(c) for c in children if isinstance(c, Token))
