@@ -14,7 +14,7 @@ import pytest
 from jsonschema import Draft202012Validator
 
 from tardigate.cli import main
-from tardigate.cli.options import COMMANDS
+from tardigate.cli.options import COMMANDS, HELP, VERSION
 from tardigate.report.explain_view import sample_words
 from tardigate.source.code_table import every_code, look_up
 from tardigate.source.faults import InternalFaultError
@@ -34,12 +34,10 @@ def _break(monkeypatch: pytest.MonkeyPatch, fault: BaseException) -> None:
 def test_pace_answers_on_standard_output_alone(tardigate: Tardigate) -> None:
     status, out, err = tardigate("pace", "board.v", "--width", "80")
     assert (status, err) == (0, "")
-    assert (
-        out.startswith(
-            "`board` settles in 19 ns: the last to settle is `co` (rise), through 5 hops from `a[0]`"
-        )
-        or "settles in 19 ns" in out
+    sentence = (
+        "`board` settles in 19 ns: the last to settle is `co` (rise), through 5 hops from `a[0]` (rise)."
     )
+    assert " ".join(out.split()).startswith(sentence)
     assert max(map(len, out.splitlines())) <= 80
 
 
@@ -55,7 +53,7 @@ def test_trail_tells_as_many_as_asked_between_the_names_asked(tardigate: Tardiga
 def test_survey_counts(tardigate: Tardigate) -> None:
     status, out, _ = tardigate("survey", "board.v")
     assert status == 0
-    assert "`board` holds 10 part instances on 16 nets, in 3 instances of 2 modules" in out
+    assert "`board` holds 10 part instances on 15 nets, in 3 instances of 2 modules" in out
     assert "low … high" in out
 
 
@@ -108,8 +106,8 @@ def test_json_tells_the_same_times_as_the_view(tardigate: Tardigate) -> None:
 
 
 def test_words_before_any_command(tardigate: Tardigate) -> None:
-    assert tardigate("--version") == (0, f"tardigate {main.VERSION}\n", "")
-    assert tardigate("--help")[:2] == (0, main.HELP)
+    assert tardigate("--version") == (0, f"tardigate {VERSION}\n", "")
+    assert tardigate("--help")[:2] == (0, HELP)
     status, out, err = tardigate()
     assert (status, out) == (2, "")
     assert "usage: tardigate COMMAND" in err
@@ -215,11 +213,11 @@ def test_an_output_that_is_not_utf_8_gets_ascii(tardigate: Tardigate, tmp_path: 
     command = [sys.executable, "-m", "tardigate", "trail", "board.v"]
     ended = subprocess.run(command, capture_output=True, cwd=tmp_path, env=environment, check=True)
     assert ended.stdout.isascii()
-    assert b"a/ -> out/" in ended.stdout.replace(b"in1", b"a") or b"->" in ended.stdout
+    assert b"in1/ -> out/" in ended.stdout
 
 
 def test_explain_starts_without_numpy(tmp_path: Path) -> None:
-    script = "import sys; from tardigate.cli.main import run; run(['explain', 'U103']); print('numpy' in sys.modules)"
+    script = "import sys, tardigate.cli.main as m; m.run(['explain', 'U103']); print('numpy' in sys.modules)"
     ended = subprocess.run(
         [sys.executable, "-c", script], capture_output=True, text=True, cwd=tmp_path, check=True
     )

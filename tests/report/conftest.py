@@ -131,7 +131,7 @@ def make_survey(subject: Subject) -> Callable[..., SurveyRecord]:
             (
                 KindRecord(f"{prefix}MS00", "part", 2, "parts file", "examples/moss.parts:12", False, 88),
                 KindRecord(f"{prefix}MS74", "part", 4, "parts file", "examples/moss.parts:40", True, 16),
-                KindRecord("nor", "gate", 2, "family default", "moss.parts:7", False, 11),
+                KindRecord("nor", "gate", 2, "family default", "default of moss.parts:7", False, 11),
                 KindRecord("nand", "gate", 3, "missing", "", False, 9),
             ),
             (

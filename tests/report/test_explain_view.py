@@ -6,7 +6,7 @@ import pytest
 
 from tardigate.report.explain_view import codes_view, explain_view, headline, sample_words
 from tardigate.report.looks import Look
-from tardigate.source.code_table import Entry, look_up
+from tardigate.source.code_table import Entry, every_code, look_up
 
 ENTRY = Entry(
     "V123",
@@ -65,3 +65,10 @@ def test_open_places_of_a_headline_are_marked() -> None:
 )
 def test_samples_become_words_of_the_command_line(sample: dict[str, str], words: list[str]) -> None:
     assert sample_words(sample) == words
+
+
+@pytest.mark.parametrize("width", [80, 120])
+def test_every_code_of_the_table_can_be_told_without_wrapping(width: int) -> None:
+    for code in every_code():
+        for line in explain_view(look_up(code), Look(width)):
+            assert len(line.plain) <= width, code

@@ -27,7 +27,7 @@ class Node(NamedTuple):
 
 
 def insert(heap: Node | None, sidetracks: Sequence[Sidetrack]) -> Node:
-    """Return the heap with one vertex's sidetracks more; of equal ones the newer go on top (few steps where all tie)."""
+    """Return the heap with one vertex's sidetracks more; of equal ones the newer go on top."""
     loss = sidetracks[0][0]
     spine = []
     while heap is not None and heap.loss < loss:

@@ -16,7 +16,7 @@ from tardigate.graph.model import Graph
 
 Floats = NDArray[np.float64]
 
-WIDE = 48
+WIDE = 32
 """Hops of a level from which on an array step is quicker than steps hop by hop."""
 
 COLUMNS: dict[Grade, tuple[int, int]] = {"span": (2, 0), "min": (0, 0), "typ": (1, 1), "max": (2, 2)}
@@ -88,17 +88,10 @@ def _wide(graph: Graph, delays: Floats, time: Floats, first: int, last: int) -> 
 
 
 def _narrow(graph: Graph, delays: Floats, time: Floats, first: int, last: int) -> None:
-    start = graph.head_start[first : last + 1].tolist()
-    hops = slice(start[0], start[-1])
-    ahead = zip(graph.tail[hops].tolist(), delays[graph.delay_row[hops]].tolist(), strict=True)
+    hops = slice(graph.head_start[first], graph.head_start[last])
+    steps = graph.tail[hops], graph.head[hops], delays[graph.delay_row[hops]]
     at = time.data
-    hop = start[0]
-    for head, stop in zip(graph.heads[first:last].tolist(), start[1:], strict=True):
-        best = at[head]
-        while hop < stop:
-            tail, delay = next(ahead)
-            through = at[tail] + delay
-            if through > best:
-                best = through
-            hop += 1
-        at[head] = best
+    for tail, head, delay in zip(*(column.tolist() for column in steps), strict=True):
+        through = at[tail] + delay
+        if through > at[head]:
+            at[head] = through

@@ -11,7 +11,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from heapq import heappop, heappush
 from itertools import islice
-from typing import NamedTuple, Optional
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -65,11 +65,19 @@ def _mirrored(trail: Trail) -> Trail:
 
 
 class _Found(NamedTuple):
-    """A trail as its sink and its sidetracks, last one first: `last` was added to the trail `before`."""
+    """A trail as its hops from the sink back, int32."""
 
     sink: int
-    before: Optional[_Found]  # noqa: UP045 - the tuple's own name is not known yet to `|`
-    last: int
+    back: NDArray[np.int32]
+    source: int
+
+
+class _Piece(NamedTuple):
+    """A stretch of the tree: hops from a vertex back, then the vertex where a known piece goes on, or -1."""
+
+    back: NDArray[np.int32]
+    onward: int
+    source: int
 
 
 class _Search:
@@ -94,8 +102,9 @@ class _Search:
         self.tail, self.head = graph.tail.data, graph.head.data
         self.row, self.start = graph.delay_row.data, graph.head_start.data
         self.delay: list[float] = delays.tolist()
-        self.best: dict[int, int] = {}
         self.heaps: dict[int, Node | None] = {}
+        self.place_in: dict[int, tuple[_Piece, int]] = {}
+        self.depth: dict[int, int] = {}
         self.queue: list[tuple[float, int, _Found | None, Node | None, int]] = []
         self.pushed = 0
 
@@ -106,14 +115,15 @@ class _Search:
             minus, _, before, node, number = heappop(self.queue)
             if node is None or before is None:
                 self._push_end(number + 1)
-                found = _Found(self.ends[number], None, 0)
-                vertex = found.sink
+                vertex = self.ends[number]
+                heap = self._heap(vertex)
+                found = self._found(vertex, [], vertex)
             else:
                 loss, hop = node.sidetracks[number]
                 self._push_beside(minus - loss, before, node, number)
-                found = _Found(before.sink, before, hop)
                 vertex = self.tail[hop] if hop >= 0 else -1
-            heap = self._heap(vertex) if vertex >= 0 else None
+                heap = self._heap(vertex) if vertex >= 0 else None
+                found = self._turned(before, hop, vertex)
             if heap is not None:
                 self._push(minus + heap.loss, found, heap, 0)
             yield self._trail(found)
@@ -136,22 +146,27 @@ class _Search:
                     self._push(minus + below.loss, before, below, 0)
 
     def _heap(self, vertex: int) -> Node | None:
-        """Return the heap of all sidetracks on the best way to a vertex."""
+        """Return the heap of all sidetracks on the best way to a vertex, and keep that way as a piece."""
         chain: list[tuple[int, list[Sidetrack]]] = []
-        heap: Node | None = None
+        back: list[int] = []
         while vertex not in self.heaps:
             ways = self._ways(vertex)
-            best = self.best[vertex] = ways[0][1]
             chain.append((vertex, ways[1:]))
-            if best < 0:
+            if ways[0][1] < 0:
+                piece, heap = _Piece(np.array(back, np.int32), -1, vertex), None
                 break
-            vertex = self.tail[best]
+            back.append(ways[0][1])
+            vertex = self.tail[back[-1]]
         else:
-            heap = self.heaps[vertex]
-        for vertex, sidetracks in reversed(chain):
+            piece, heap = _Piece(np.array(back, np.int32), vertex, -1), self.heaps[vertex]
+        beyond = len(back) + self.depth.get(piece.onward, 0)
+        for number in range(len(chain) - 1, -1, -1):
+            vertex, sidetracks = chain[number]
             if sidetracks:
                 heap = insert(heap, sidetracks)
             self.heaps[vertex] = heap
+            self.place_in[vertex] = piece, number
+            self.depth[vertex] = beyond - number
         return heap
 
     def _ways(self, vertex: int) -> list[Sidetrack]:
@@ -169,29 +184,27 @@ class _Search:
             ways.sort()
         return ways
 
+    def _found(self, sink: int, back: list[NDArray[np.int32]], vertex: int) -> _Found:
+        """Return the trail that comes the best way to a vertex and on through the hops `back` to its sink."""
+        while True:
+            piece, at = self.place_in[vertex]
+            back.append(piece.back[at:])
+            if piece.onward < 0:
+                return _Found(sink, np.concatenate(back), piece.source)
+            vertex = piece.onward
+
+    def _turned(self, before: _Found, hop: int, vertex: int) -> _Found:
+        """Return a trail with its last stretch, on the tree, left for a sidetrack from `vertex`."""
+        leaves = self.head[hop] if hop >= 0 else -1 - hop
+        kept = before.back[: len(before.back) - self.depth[leaves]]
+        if hop < 0:
+            return _Found(before.sink, kept, leaves)
+        return self._found(before.sink, [kept, np.array([hop], np.int32)], vertex)
+
     def _trail(self, found: _Found) -> Trail:
-        """Walk a trail from its sink to its source."""
-        best, tail = self.best, self.tail
-        sidetracks, back = [], found
-        while back.before is not None:
-            sidetracks.append(back.last)
-            back = back.before
-        vertex, hops = found.sink, []
-        for sidetrack in reversed(sidetracks):
-            leave = self.head[sidetrack] if sidetrack >= 0 else -1 - sidetrack
-            while vertex != leave:
-                hops.append(best[vertex])
-                vertex = tail[best[vertex]]
-            if sidetrack >= 0:
-                hops.append(sidetrack)
-                vertex = tail[sidetrack]
-        if not sidetracks or sidetracks[0] >= 0:
-            while best[vertex] >= 0:
-                hops.append(best[vertex])
-                vertex = tail[best[vertex]]
-        forward = np.array(hops[::-1], np.int64)
-        delays = self.delays[self.graph.delay_row[forward]]
-        return Trail(vertex, found.sink, forward, delays, float(delays.sum()))
+        hops = found.back[::-1].astype(np.int64)
+        delays = self.delays[self.graph.delay_row[hops]]
+        return Trail(found.source, found.sink, hops, delays, float(delays.sum()))
 
 
 def _ends(graph: Graph, time: Floats, sinks: Vertices | None, count: int) -> list[int]:

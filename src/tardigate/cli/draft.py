@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 from tardigate.cli.answer import Answer
 from tardigate.cli.given import request_of
 from tardigate.cli.options import Options
@@ -13,13 +15,11 @@ from tardigate.source.faults import InputRefusedError
 
 def draft(options: Options, look: Look) -> Answer:  # noqa: ARG001 - its text is the same for every look
     """Write a parts file to fill in. Raises InputRefusedError (U106: the file cannot be written)."""
-    from tardigate.report.json_form import draft_json
-
     text = draft_of(load(request_of(options)))
     if options.output_file is not None:
         _save(text, options.output_file)
     shown = text if options.output_file is None else f"wrote {options.output_file}\n"
-    return Answer(lambda: shown, lambda: draft_json(text, options.output_file))
+    return Answer(lambda: shown, lambda: _body(text, options.output_file))
 
 
 def _save(text: str, path: str) -> None:
@@ -29,3 +29,9 @@ def _save(text: str, path: str) -> None:
     except (OSError, ValueError) as error:
         reason = getattr(error, "strerror", None) or str(error)
         raise InputRefusedError((Diagnostic.of("U106", path=path, reason=reason),)) from None
+
+
+def _body(text: str, file: str | None) -> dict[str, Any]:
+    from tardigate.report.json_form import draft_json  # for those who ask for it
+
+    return draft_json(text, file)

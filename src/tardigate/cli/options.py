@@ -29,13 +29,16 @@ COMMANDS = {
 
 HELP = f"""usage: tardigate COMMAND ...
 
-When does every net of a gate-level design settle, and which chain of gates sets the limit?
+When does every net of a gate-level design settle, and which chain of gates
+sets the limit?
 
 commands:
 {chr(10).join(f"  {name:<8} {words}" for name, words in COMMANDS.items())}
 
-`tardigate COMMAND --help` tells the options of a command, `tardigate --version` the version.
-Exit status: 0 it holds, 2 the input is wrong or incomplete, 3 a fault of tardigate itself.
+`tardigate COMMAND --help` tells the options of a command.
+`tardigate --version` tells the version.
+Exit status: 0 it holds, 2 the input is wrong or incomplete, 3 a fault of
+tardigate itself.
 """
 
 

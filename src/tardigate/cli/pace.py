@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 import numpy as np
 
 from tardigate.cli.answer import Answer
@@ -21,8 +23,6 @@ MOST_HOPS = 12
 
 def pace(options: Options, look: Look) -> Answer:
     """Tell when a design settles. Raises InputRefusedError."""
-    from tardigate.report.json_form import pace_json
-
     loaded = load(request_of(options))
     graph = graph_of(loaded)
     times = times_of(graph, options.grade)
@@ -40,7 +40,7 @@ def pace(options: Options, look: Look) -> Answer:
         tuple((found.key, found.count) for found in assumptions_of(loaded, graph, options.grade, times)),
         loaded.warnings,
     )
-    return Answer(lambda: pace_view(record, look), lambda: pace_json(record), loaded.warnings)
+    return Answer(lambda: pace_view(record, look), lambda: _body(record), loaded.warnings)
 
 
 def _between_registers(
@@ -53,3 +53,9 @@ def _between_registers(
     sinks = np.concatenate([2 * nets, 2 * nets + 1])
     trails = trails_of(loaded, graph, options.grade, 1, sources=sources, sinks=sinks)
     return records.trail(trails[0], hops, options.json) if trails else None
+
+
+def _body(record: PaceRecord) -> dict[str, Any]:
+    from tardigate.report.json_form import pace_json  # for those who ask for it
+
+    return pace_json(record)

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 from tardigate.cli.answer import Answer
 from tardigate.cli.given import request_of, subject_of
 from tardigate.cli.options import Options
@@ -14,8 +16,6 @@ from tardigate.report.survey_view import survey_view
 
 def survey(options: Options, look: Look) -> Answer:
     """Tell what is in a design. Raises InputRefusedError."""
-    from tardigate.report.json_form import survey_json
-
     loaded = load(request_of(options))
     registers, clocks = clock_records(loaded.flat, loaded.names)
     record = SurveyRecord(
@@ -30,4 +30,10 @@ def survey(options: Options, look: Look) -> Answer:
         tuple((stranger.name, stranger.count) for stranger in loaded.undescribed),
         loaded.warnings,
     )
-    return Answer(lambda: survey_view(record, look), lambda: survey_json(record), loaded.warnings)
+    return Answer(lambda: survey_view(record, look), lambda: _body(record), loaded.warnings)
+
+
+def _body(record: SurveyRecord) -> dict[str, Any]:
+    from tardigate.report.json_form import survey_json  # for those who ask for it
+
+    return survey_json(record)

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 from tardigate.cli.answer import Answer
 from tardigate.cli.given import request_of, subject_of
 from tardigate.cli.options import Options
@@ -19,8 +21,6 @@ MOST_HOPS = 200
 
 def trail(options: Options, look: Look) -> Answer:
     """Tell the slowest or the fastest trails. Raises InputRefusedError."""
-    from tardigate.report.json_form import trail_json
-
     loaded = load(request_of(options))
     graph = graph_of(loaded)
     picker = Picker(loaded.flat, loaded.names, graph)
@@ -39,4 +39,10 @@ def trail(options: Options, look: Look) -> Answer:
         tuple((assumption.key, assumption.count) for assumption in assumptions),
         loaded.warnings,
     )
-    return Answer(lambda: trail_view(record, look), lambda: trail_json(record), loaded.warnings)
+    return Answer(lambda: trail_view(record, look), lambda: _body(record), loaded.warnings)
+
+
+def _body(record: TrailsRecord) -> dict[str, Any]:
+    from tardigate.report.json_form import trail_json  # for those who ask for it
+
+    return trail_json(record)

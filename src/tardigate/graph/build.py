@@ -10,7 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tardigate.graph.check import refuse_loops
-from tardigate.graph.expand import ClockPins, Hops, batches, expand_arcs, expand_hops, find_clock_pins
+from tardigate.graph.expand import Batch, ClockPins, Hops, batches, expand_arcs, expand_hops, find_clock_pins
 from tardigate.graph.levels import IN_LOOP, find_levels
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS, Flat
@@ -23,9 +23,10 @@ def build(flat: Flat, collector: Collector | None = None) -> Graph:
 
     Raises InputRefusedError (G101) when there are combinational loops; `collector` is told of each.
     """
-    clock_pins = find_clock_pins(flat)
-    level = _levels(flat, clock_pins, Collector() if collector is None else collector)
-    hops = expand_hops(flat, clock_pins)
+    groups = batches(flat)
+    clock_pins = find_clock_pins(groups)
+    level = _levels(flat, groups, clock_pins, Collector() if collector is None else collector)
+    hops = expand_hops(groups, flat.nets, clock_pins)
     order = _order(hops, level)
     head = hops.head[order]
     begin = np.flatnonzero(np.diff(head, prepend=-1))
@@ -45,14 +46,16 @@ def build(flat: Flat, collector: Collector | None = None) -> Graph:
         head_start=np.append(begin, len(head)).astype(np.int64),
         level_start=np.searchsorted(level[heads >> 1], np.arange(1, deepest + 2)).astype(np.int64),
         sources=_sources(flat, clock_pins),
-        sinks=_sinks(flat),
+        sinks=_sinks(flat, groups),
         clock_pin_instance=clock_pins.instance,
         clock_pin_pin=clock_pins.pin,
     )
 
 
-def _levels(flat: Flat, clock_pins: ClockPins, collector: Collector) -> NDArray[np.int32]:
-    arcs = expand_arcs(flat, clock_pins)
+def _levels(
+    flat: Flat, groups: list[Batch], clock_pins: ClockPins, collector: Collector
+) -> NDArray[np.int32]:
+    arcs = expand_arcs(groups, flat.nets, clock_pins)
     level = find_levels(flat.nets + len(clock_pins.instance), arcs.tail, arcs.head)
     if (level == IN_LOOP).any():
         refuse_loops(flat, arcs, level == IN_LOOP, collector)
@@ -101,10 +104,10 @@ def _sources(flat: Flat, clock_pins: ClockPins) -> NDArray[np.int32]:
     return np.concatenate([np.stack([2 * nets, 2 * nets + 1], axis=1).reshape(-1), launches]).astype(np.int32)
 
 
-def _sinks(flat: Flat) -> NDArray[np.int32]:
+def _sinks(flat: Flat, groups: list[Batch]) -> NDArray[np.int32]:
     """Return the nets of output port bits and of the pins where trails end, ascending, each once."""
     ports = [port.net for port in flat.ports if port.way != Way.INPUT]
     found = [np.array(ports, np.int32)]
-    found += [batch.nets[batch.kind.sinks].reshape(-1) for batch in batches(flat) if len(batch.kind.sinks)]
+    found += [batch.nets[batch.kind.sinks].reshape(-1) for batch in groups if len(batch.kind.sinks)]
     nets = np.unique(np.concatenate(found))
     return nets[nets >= CONSTANTS].astype(np.int32)

@@ -6,7 +6,7 @@ open pin or a constant net are left out. Does not check anything.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -51,48 +51,46 @@ class Arcs:
 class Batch:
     """The part instances of one kind, the first row of its delays, and `nets` int32[pins, members]."""
 
-    number: int
     kind: Kind
     first_row: int
     members: Ints
     nets: Ints
 
 
-def batches(flat: Flat) -> Iterator[Batch]:
-    """Yield the part instances kind by kind, in order of kind, in order of instance within."""
+def batches(flat: Flat) -> list[Batch]:
+    """Return the part instances kind by kind, in order of kind, in order of instance within."""
     narrow = np.uint16 if len(flat.kinds) <= 1 << 16 else np.int32  # 16 bits are sorted by digits
     order = np.argsort(flat.inst_kind.astype(narrow), kind="stable").astype(np.int32)
     start = np.concatenate(([0], np.cumsum(np.bincount(flat.inst_kind, minlength=len(flat.kinds)))))
-    row = 0
+    row, found = 0, []
     for number, kind in enumerate(flat.kinds):
         members = order[start[number] : start[number + 1]]
         if len(members):
             pins = flat.pin_start[members] + np.arange(len(kind.pins))[:, None]
-            yield Batch(number, kind, row, members, flat.pin_net[pins])
+            found.append(Batch(kind, row, members, flat.pin_net[pins]))
         row += kind.hops
+    return found
 
 
-def find_clock_pins(flat: Flat) -> ClockPins:
+def find_clock_pins(groups: Sequence[Batch]) -> ClockPins:
     """Return the register clock pins that launch a hop onto a net, in order of instance and pin."""
-    found = [np.empty((0, 2), np.int64)]
-    for batch in batches(flat):
+    found = [np.empty(0, np.int64)]
+    for batch in groups:
         kind = batch.kind
-        for pin in np.unique(kind.hop_from[kind.launches]):
+        for pin in np.unique(kind.hop_from[kind.launches]).tolist():
             heads = kind.hop_to[kind.launches & (kind.hop_from == pin)]
             live = (batch.nets[pin] >= CONSTANTS) & (batch.nets[heads] >= CONSTANTS).any(axis=0)
-            members = batch.members[live]
-            found.append(np.stack([members, np.full(len(members), pin)], axis=1))
-    pairs = np.concatenate(found)
-    pairs = pairs[np.lexsort((pairs[:, 1], pairs[:, 0]))].astype(np.int32)
-    return ClockPins(np.ascontiguousarray(pairs[:, 0]), np.ascontiguousarray(pairs[:, 1]))
+            found.append(_pack(batch.members[live], pin))
+    keys = np.sort(np.concatenate(found))
+    return ClockPins((keys >> 32).astype(np.int32), (keys & 0xFFFFFFFF).astype(np.int32))
 
 
-def expand_hops(flat: Flat, clock_pins: ClockPins) -> Hops:
+def expand_hops(groups: Sequence[Batch], nets: int, clock_pins: ClockPins) -> Hops:
     """Return every hop of every part instance."""
     found: list[tuple[Ints, ...]] = []
-    for batch in batches(flat):
+    for batch in groups:
         kind = batch.kind
-        tail, head, live = _ends(batch, kind.hop_from, kind.hop_to, kind.launches, flat, clock_pins)
+        tail, head, live = _ends(batch, kind.hop_from, kind.hop_to, kind.launches, nets, clock_pins)
         tail = 2 * tail + kind.from_edge[:, None]
         head = 2 * head + kind.to_edge[:, None]
         row = np.broadcast_to(np.arange(kind.hops, dtype=np.int32)[:, None] + batch.first_row, tail.shape)
@@ -100,14 +98,14 @@ def expand_hops(flat: Flat, clock_pins: ClockPins) -> Hops:
     return Hops(*_joined(found, 4))
 
 
-def expand_arcs(flat: Flat, clock_pins: ClockPins) -> Arcs:
+def expand_arcs(groups: Sequence[Batch], nets: int, clock_pins: ClockPins) -> Arcs:
     """Return an arc for each pair of pins of each part instance that hops join."""
     found: list[tuple[Ints, ...]] = []
-    for batch in batches(flat):
+    for batch in groups:
         kind = batch.kind
         ways = np.unique(np.stack([kind.hop_from, kind.hop_to, kind.launches], axis=1), axis=0)
         pin_in, pin_out, launches = ways[:, 0], ways[:, 1], ways[:, 2].astype(bool)
-        tail, head, live = _ends(batch, pin_in, pin_out, launches, flat, clock_pins)
+        tail, head, live = _ends(batch, pin_in, pin_out, launches, nets, clock_pins)
         members = np.broadcast_to(batch.members, tail.shape)
         pins = (np.broadcast_to(pin.astype(np.int32)[:, None], tail.shape) for pin in (pin_in, pin_out))
         found.append(_picked(live, tail, head, members, *pins))
@@ -119,21 +117,25 @@ def _ends(
     pin_in: NDArray[np.integer],
     pin_out: NDArray[np.integer],
     launches: NDArray[np.bool_],
-    flat: Flat,
+    nets: int,
     clock_pins: ClockPins,
 ) -> tuple[Ints, Ints, NDArray[np.bool_]]:
     """Return the points at both ends, int32[ways, members], and which of them are both on a net."""
     tail, head = batch.nets[pin_in], batch.nets[pin_out]
     live = (tail >= CONSTANTS) & (head >= CONSTANTS)
     for way in np.flatnonzero(launches):
-        tail[way] = flat.nets + _clock_point(clock_pins, batch.members, int(pin_in[way]))
+        tail[way] = nets + _clock_point(clock_pins, batch.members, int(pin_in[way]))
     return tail, head, live
 
 
 def _clock_point(clock_pins: ClockPins, members: Ints, pin: int) -> Ints:
     """Return the number of each member's clock pin, or any number where it has none."""
     keys = clock_pins.instance.astype(np.int64) << 32 | clock_pins.pin
-    return np.searchsorted(keys, members.astype(np.int64) << 32 | pin).astype(np.int32)
+    return np.searchsorted(keys, _pack(members, pin)).astype(np.int32)
+
+
+def _pack(members: Ints, pin: int) -> NDArray[np.int64]:
+    return members.astype(np.int64) << 32 | pin
 
 
 def _picked(live: NDArray[np.bool_], *columns: Ints) -> tuple[Ints, ...]:

@@ -27,9 +27,10 @@ class _Kahn:
 
     def __init__(self, points: int, tail: NDArray[np.int32], head: NDArray[np.int32]) -> None:
         packed = np.sort(tail.astype(np.int64) << 32 | head)
-        self.out = (packed & 0xFFFFFFFF).astype(np.int32)
-        self.start = np.zeros(points + 1, np.int64)
-        np.cumsum(np.bincount(tail, minlength=points), out=self.start[1:])
+        self.out = packed & 0xFFFFFFFF
+        self.count = np.bincount(tail, minlength=points)
+        self.start = np.concatenate([[0], self.count.cumsum()])
+        self.numbers = np.arange(len(tail))
         self.waiting = np.bincount(head, minlength=points)
         self.level = np.full(points, IN_LOOP, np.int32)
 
@@ -46,16 +47,22 @@ class _Kahn:
 
     def _wide(self, front: NDArray[np.int64], level: int) -> NDArray[np.int64]:
         """Take one level as arrays; return the next."""
-        begin = self.start[front]
-        count = self.start[front + 1] - begin
-        before = np.cumsum(count) - count
-        arcs = np.repeat(begin - before, count) + np.arange(int(count.sum()))
-        reached = np.sort(self.out[arcs])
-        first = np.flatnonzero(np.diff(reached, prepend=-1))
-        point = reached[first]
-        left = self.waiting[point] - np.diff(first, append=len(reached))
+        count = self.count.take(front, mode="clip")
+        end = count.cumsum()
+        total = int(end[-1])
+        arcs = (self.start.take(front, mode="clip") - end + count).repeat(count)
+        arcs += self.numbers[:total]
+        reached = self.out.take(arcs, mode="clip")
+        reached.sort()
+        last = np.ones(total, np.bool_)  # of the arcs that reach the same point
+        np.not_equal(reached[1:], reached[:-1], out=last[:-1])
+        at = last.nonzero()[0]
+        point = reached.take(at, mode="clip")
+        arrived = at + 1
+        arrived[1:] -= at[:-1] + 1
+        left = self.waiting.take(point, mode="clip") - arrived
         self.waiting[point] = left
-        front = point[left == 0].astype(np.int64)
+        front = point[left == 0]
         self.level[front] = level
         return front
 

@@ -16,7 +16,7 @@ from tardigate.parts.kind import Way
 from tardigate.source.diagnostic import Related
 from tardigate.syntax import tree
 
-MOST_INSTANCES = 1 << 20
+MOST_INSTANCES = 1 << 16
 """Instances that one array may have."""
 
 

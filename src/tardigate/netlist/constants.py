@@ -11,8 +11,8 @@ from typing import NamedTuple
 
 from tardigate.syntax import tree
 
-LARGEST = 1 << 16
-"""Bits of the largest value that a constant expression may reach."""
+LARGEST = 1 << 13
+"""Bits of the largest value that a constant expression may reach; its digits can still be told."""
 
 
 class NotConstantError(Exception):
@@ -104,6 +104,8 @@ def _leaf(node: tree.Expression, parameters: Mapping[str, Value]) -> Value:
     if isinstance(node, tree.Number):
         if node.unknown or node.floating:
             raise NotConstantError("x and z have no value", node.at)
+        if node.value.bit_length() > LARGEST:
+            raise NotConstantError("the value is too large", node.at)
         return Value(node.value, node.width, node.signed)
     if isinstance(node, tree.Reference):
         name = node.path[0]

@@ -156,7 +156,8 @@ class Declarer:
         way = np.full(len(head), NO_DIRECTION, np.uint8)
         way[variable[directed]] = numbers[directed, 2]
         flags = np.zeros(len(head), np.int64)
-        np.bitwise_or.at(flags, variable, numbers[:, 3])
+        flagged = np.flatnonzero(numbers[:, 3])
+        np.bitwise_or.at(flags, variable[flagged], numbers[flagged, 3])
         for name in np.flatnonzero(np.isin(names[head], self.lookup.find_all(values))):
             self._tell("N110", int(places[head[name]]), self.unit.scan.names.text(int(names[head[name]])))
         msb, lsb = numbers[head, 0].astype(np.int32), numbers[head, 1].astype(np.int32)
@@ -187,7 +188,7 @@ class Declarer:
             name = self.unit.scan.names.text(int(names[entries[0]]))
             self._tell("N110", int(places[entries[1]]), name, int(places[entries[0]]))
         both = np.flatnonzero((seen[::2] > 0) & (seen[1::2] > 0)) if count else np.zeros(0, np.int64)
-        if not len(both):
+        if not len(both) or not numbers[:, :2].any():
             return
         low, high = np.full((count, 2), np.iinfo(np.int64).max), np.full((count, 2), np.iinfo(np.int64).min)
         np.minimum.at(low, variable, numbers[:, :2])

@@ -69,9 +69,11 @@ class Delays:
 
     def _time(self, value: tree.Expression) -> float | None:
         try:
-            number = Fraction(value.text) if isinstance(value, tree.Decimal) else Fraction(
-                evaluate(value, self.values).value
-            )  # fmt: skip
+            number = (
+                _fraction(value.text)
+                if isinstance(value, tree.Decimal)
+                else Fraction(evaluate(value, self.values).value)
+            )
         except NotConstantError as error:
             self.collector.tell("N120", self.text.span(error.at), reason=error.reason)
             return None
@@ -90,3 +92,11 @@ class Delays:
             step = Fraction(self.precision)
             time = (time / step + Fraction(1, 2)).__floor__() * step
         return float(time)
+
+
+def _fraction(text: str) -> Fraction:
+    """Return a decimal number exactly. Raises ValueError for one that no delay could be."""
+    mantissa, _, exponent = text.lower().partition("e")
+    if len(exponent) > 4 or len(text) > 4000:  # exact powers of ten beyond would fill the memory
+        raise ValueError(text[:40])
+    return Fraction(f"{mantissa}e{exponent or 0}")

@@ -10,7 +10,6 @@ from collections.abc import Callable, Sequence
 
 from tardigate.netlist.constants import NotConstantError, evaluate
 from tardigate.netlist.declare import WIDEST
-from tardigate.netlist.flat import CONSTANTS
 from tardigate.netlist.wiring import Wiring
 from tardigate.syntax import tree
 
@@ -23,7 +22,8 @@ _EQUAL = {"==": "==", "===": "==", "!=": "!=", "!==": "!="}
 _SHIFTS = ("<<", ">>", "<<<", ">>>")
 _REDUCE = {op: f"reduce {op}" for op in ("&", "|", "^", "~&", "~|", "~^")} | {"^~": "reduce ~^"}
 _ARITHMETIC = ("+", "-", "*", "/", "%", "**", "<", "<=", ">", ">=")
-MOST_RESULTS = 1 << 24
+MOST_RESULTS = 1 << 21
+"""Gates that the operators of one module may become."""
 
 
 class _Flat:
@@ -64,7 +64,13 @@ class Expressions:
     """Turns the expressions of one module into nets."""
 
     def __init__(self, wiring: Wiring, emit: Emit) -> None:
-        self.wiring, self.emit = wiring, emit
+        self.wiring, self._emit = wiring, emit
+        self._made = 0
+
+    def emit(self, operator: str, inputs: Sequence[int], at: int, target: int | None, last: bool) -> int:
+        """Make one gate of an operator; see `Emit`."""
+        self._made += 1
+        return self._emit(operator, inputs, at, target, last)
 
     def nets(self, root: tree.Expression, width: int | None = None, target: list[int] | None = None) -> list[int]:
         """Return the nets of an expression, least significant bit first; empty after telling of a fault.
@@ -213,10 +219,12 @@ class Expressions:
             if root and target is not None and len(made) < len(target):
                 self._copy(flat.bits[at][len(made) :], target[len(made) :], node.at)
             return True
+        if not bits:
+            return False
         flat.bits[at] = self._extended(flat, at, bits)
         if target is not None:
             self._copy(flat.bits[at], target, node.at)
-        return len(bits) > 0
+        return True
 
     def _copy(self, bits: list[int], target: list[int], at: int) -> None:
         for bit, net in zip(bits, target, strict=False):
@@ -232,11 +240,8 @@ class Expressions:
 
     def _constant(self, flat: _Flat, at: int) -> list[int]:
         node = flat.nodes[at]
-        if isinstance(node, tree.Number) and (node.unknown or node.floating):
-            return [
-                2 if node.unknown >> i & 1 else 3 if node.floating >> i & 1 else node.value >> i & 1
-                for i in range(min(flat.want[at], flat.width[at]))
-            ]
+        if isinstance(node, tree.Number):
+            return _number_bits(node, flat.want[at])
         try:
             value = evaluate(node, self.wiring.values)
         except NotConstantError as error:
@@ -268,7 +273,7 @@ class Expressions:
     ) -> list[int] | None:
         node = flat.nodes[at]
         last = target is not None
-        if flat.want[at] * len(flat.nodes) > MOST_RESULTS or self.wiring.variables.nets > MOST_RESULTS:
+        if self._made + flat.want[at] > MOST_RESULTS:
             self.wiring.collector.tell("N122", self.wiring.span(node.at), most=MOST_RESULTS)
             return None
 
@@ -284,16 +289,16 @@ class Expressions:
             if node.operator == "~":
                 return each("~", [[bit] for bit in operands[0]])
             if node.operator == "!":
-                return each("!", [operands[0]])
+                return each("!", [_truth(operands[0])])
             if node.operator in _REDUCE:
                 return each(_REDUCE[node.operator], [operands[0]])
         elif isinstance(node, tree.Binary):
             if node.operator in _BITWISE:
                 return each(_BITWISE[node.operator], list(zip(*operands, strict=True)))
             if node.operator in _EQUAL:
-                return each(_EQUAL[node.operator], [operands[0] + operands[1]])
+                return each(_EQUAL[node.operator], [_compared(*operands)])
             if node.operator in ("&&", "||"):
-                return each(node.operator, [operands[0] + operands[1]])
+                return each(node.operator, [_truth(operands[0]) + _truth(operands[1])])
         elif isinstance(node, tree.Conditional):
             return each("?:", [[*operands[0], *pair] for pair in zip(*operands[1:], strict=True)])
         word = node.name if isinstance(node, tree.Call) else getattr(node, "operator", "")
@@ -301,6 +306,22 @@ class Expressions:
         return None
 
 
-def is_constant_net(net: int) -> bool:
-    """Tell whether a local net is one of the constants."""
-    return 0 <= net < CONSTANTS
+def _number_bits(node: tree.Number, want: int) -> list[int]:
+    """Return the bits of a number, an unsized one as wide as wanted, its leading x or z spread (clause 3.5.1)."""
+    top = 31 if node.width is None and (node.unknown | node.floating) >> 31 else want
+    return [
+        2 if node.unknown >> i & 1 else 3 if node.floating >> i & 1 else node.value >> i & 1
+        for i in (min(bit, top) for bit in range(want if node.width is None else min(want, node.width)))
+    ]
+
+
+def _truth(bits: list[int]) -> list[int]:
+    """Return the bits of a logical operand without those that are 0 anyhow."""
+    return [bit for bit in bits if bit != 0] or [0]
+
+
+def _compared(left: list[int], right: list[int]) -> list[int]:
+    """Return the bits that an equality compares, each pair once and none of equal constants: fill adds nothing."""
+    both = zip(left, right, strict=True)
+    pairs = list(dict.fromkeys((a, b) for a, b in both if a != b or a > 1)) or [(0, 0)]
+    return [a for a, _ in pairs] + [b for _, b in pairs]

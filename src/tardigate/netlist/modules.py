@@ -25,6 +25,7 @@ class Modules:
     bulk: bool = True
     _texts: dict[str, tuple[Unit, ModuleText]] = field(default_factory=dict)
     _trees: dict[str, Module] = field(default_factory=dict)
+    _uses: dict[str, list[str]] = field(default_factory=dict)
 
     def __contains__(self, name: str) -> bool:
         return name in self._texts
@@ -57,8 +58,11 @@ class Modules:
 
     def uses(self, name: str) -> list[str]:
         """Return the modules, none of them a described part, that a module uses."""
-        unit, text = self._texts[name]
-        return [used for used in unit.uses(text) if used in self._texts and not self.described(used)]
+        if name not in self._uses:
+            unit, text = self._texts[name]
+            used = (below for below in unit.uses(text) if below in self._texts and not self.described(below))
+            self._uses[name] = list(used)
+        return self._uses[name]
 
 
 def collect(units: Iterable[Unit], described: Callable[[str], bool], collector: Collector, bulk: bool) -> Modules:

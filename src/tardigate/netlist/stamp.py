@@ -155,8 +155,5 @@ def _marked(
 
 def _ports(top: Template, number: NDArray[np.int32]) -> tuple[Port, ...]:
     """Return the top's port bits, most significant first."""
-    return tuple(
-        Port(name, port.way, net)
-        for port in top.ports
-        for name, net in zip(port.bits, number[list(port.nets)].tolist(), strict=True)
-    )
+    nets = iter(number[[net for port in top.ports for net in port.nets]].tolist() if top.ports else ())
+    return tuple(Port(name, port.way, next(nets)) for port in top.ports for name in port.bits)

@@ -1,6 +1,6 @@
 """A parts file skeleton for what has no delays yet.
 
-Takes kinds without delays and modules that nothing describes, gives text that the parts language accepts, with a
+Takes kinds without delays and modules that nothing describes, gives text that the parts language accepts, a
 `-` for each number that is to be filled in. What is not known (functions, registers) it leaves to the reader.
 """
 
@@ -37,7 +37,7 @@ class UndescribedModule(NamedTuple):
 
 
 def spelled(name: str) -> str:
-    """Return a name as a parts file writes it: one that is no plain word is escaped (IEEE 1364-2005 3.7.1)."""
+    """Return a name as a parts file writes it, escaped when it is no plain word (IEEE 1364-2005 3.7.1)."""
     if re.fullmatch(r"[A-Za-z_][A-Za-z0-9_$]*", name) and name not in reserved_words():
         return name
     return f"\\{name} "
@@ -71,10 +71,10 @@ def _operator_entry(kind: Kind) -> tuple[str, int, bool]:
 
 
 def _table(entries: Sequence[tuple[str, int, bool]]) -> list[str]:
-    rows = []
+    rows: list[str] = []
     for entry, _, lets_go in sorted(entries, key=lambda e: (e[0].partition("(")[0], e[1])):
-        for symbol in PLAIN + LETTING_GO if lets_go else PLAIN:
-            rows.append(f"    {symbol}  {entry:<18}  {EMPTY};")
+        symbols = PLAIN + LETTING_GO if lets_go else PLAIN
+        rows += [f"    {symbol}  {entry:<18}  {EMPTY};" for symbol in symbols]
     return rows
 
 

@@ -45,11 +45,9 @@ OPERATORS: Mapping[str, int] = {
 """Operators and their polarity. Of `?:`, that of the condition: the two data inputs, last, do not invert."""
 
 ONE_INPUT: Mapping[str, int] = {
-    "xor": POSITIVE,
-    "xnor": NEGATIVE,
-    "reduce ^": POSITIVE,
-    "reduce ~^": NEGATIVE,
-}
+    "xor": POSITIVE, "xnor": NEGATIVE, "^": POSITIVE, "~^": NEGATIVE,
+    "reduce ^": POSITIVE, "reduce ~^": NEGATIVE,
+}  # fmt: skip
 """Polarity of what is both ways for several inputs, with one."""
 
 OPPOSITE = {Edge.RISE: Edge.FALL, Edge.FALL: Edge.RISE}

@@ -88,8 +88,9 @@ class Library:
         Parameters that the part does not have make no difference. Raises KeyError for an unknown part.
         """
         part = self._parts[module]
-        chosen = {p.name: parameters[p.name] for p in part.parameters if p.name in parameters}
-        key = ("part", part.name, *sorted(chosen.items()))
+        values = {p: parameters.get(p.name, p.default) for p in part.parameters}
+        chosen = {p.name: value & (1 << p.width) - 1 for p, value in values.items() if value is not None}
+        key = ("part", part.name, *chosen.items())
         if key not in self._kinds:
             self._kinds[key] = part_kind(part, self._column[part.name], chosen, self._choice)
         return self._kinds[key]

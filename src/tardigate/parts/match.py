@@ -15,7 +15,7 @@ from tardigate.parts.needs import DISABLING, ENABLING, NOBODY, Need, function_of
 
 
 class Matched(NamedTuple):
-    """`timed`: changes, each with a row; `missing`: those without; `idle`: rows, and a pair they do not time."""
+    """`timed`: changes, each with a row; `missing`: those without; `idle`: rows and a pair they time not."""
 
     timed: list[tuple[Need, Row]]
     missing: list[Need]

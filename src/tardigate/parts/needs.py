@@ -113,7 +113,7 @@ def composed(first: int, second: int) -> int:
 
 
 def _forced(tail: int, head: int, active: int, polarity: int, level: Edge, latch: bool) -> Iterator[Need]:
-    """Give what clear or set does: it forces the stored bit to `level`; at its end an open latch moves back."""
+    """Give what clear or set does: it forces the stored bit to `level`; at its end an open latch moves."""
     for tail_edge, flag in ((Edge.RISE, POSITIVE), (Edge.FALL, NEGATIVE)):
         moves = [(tail_edge, level)] if active & flag else []
         if latch and moves:

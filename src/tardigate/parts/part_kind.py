@@ -18,11 +18,11 @@ from tardigate.parts.needs import sink_bits
 
 
 def parameter_values(part: Part, chosen: Mapping[str, int]) -> Values:
-    """Return the values of parameter bits: of those chosen and those with a default (cut to their width)."""
+    """Return the values of the bits of the parameters that are chosen; the others may be anything."""
     values: dict[int, int] = {}
     first = -1
     for parameter in part.parameters:
-        value = chosen.get(parameter.name, parameter.default)
+        value = chosen.get(parameter.name)
         for i in range(parameter.width):
             if value is not None:
                 values[first - i] = value >> (parameter.width - 1 - i) & 1

@@ -33,10 +33,13 @@ Object = dict[str, Any]
 
 
 def json_text(command: str | None, body: Object, diagnostics: Sequence[Diagnostic], version: str) -> str:
-    """Return the whole object as text: `body` is what the command found; an unknown command is None."""
+    """Return the whole object in one line of ASCII: `body` is what the command found.
+
+    An unknown command is None. One line, because `json` indents ten times slower than it writes.
+    """
     whole = {"tardigate": version, "schema": SCHEMA, "command": command, **body}
     whole["diagnostics"] = [_diagnostic(diagnostic) for diagnostic in diagnostics]
-    return json.dumps(whole, indent=2, allow_nan=False) + "\n"
+    return json.dumps(whole, allow_nan=False) + "\n"
 
 
 def pace_json(record: PaceRecord) -> Object:

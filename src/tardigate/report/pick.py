@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable, Iterator
+from itertools import islice
 
 import numpy as np
 
@@ -20,6 +21,9 @@ from tardigate.source.diagnostic import Diagnostic, did_you_mean
 from tardigate.source.faults import InputRefusedError
 
 Fits = Callable[[str], object]
+
+MOST_NEIGHBOURS = 20_000
+"""Names among which the nearest to a mistyped one is looked for."""
 
 
 class Picker:
@@ -49,14 +53,15 @@ class Picker:
     ) -> Ints | None:
         if not names:
             return None
-        found = [np.empty(0, np.int64)]
+        found = [both_edges([])]
         faults = []
         for name in names:
-            fits = _fits(name)
-            of_name = [both_edges([port.net]) for port in self._flat.ports if fits(port.name)]
-            of_name += [both_edges([net]) for net in self._nets(name)]
-            for instance, pin in self._pins(name):
-                of_name.append(of_instance(instance) if pin is None else of_pin(instance, pin))
+            of_name = self._of_ports(name)
+            if "*" in name or not of_name:
+                for instance, pin in self._pins(name):
+                    of_name.append(of_instance(instance) if pin is None else of_pin(instance, pin))
+            if "*" in name or not of_name:  # a name is one thing only (IEEE 1364-2005 clause 4.11)
+                of_name += [both_edges([net]) for net in self._nets(name)]
             if not of_name:
                 faults.append(self._unknown(name))
             found += of_name
@@ -64,6 +69,10 @@ class Picker:
             raise InputRefusedError(tuple(faults))
         vertices = np.unique(np.concatenate(found))
         return vertices[vertices >= 2 * CONSTANTS]
+
+    def _of_ports(self, name: str) -> list[Ints]:
+        fits = _fits(name)
+        return [both_edges([port.net]) for port in self._flat.ports if fits(port.name)]
 
     def _scopes(self, name: str) -> Iterator[tuple[int, str]]:
         """Yield the scopes whose path may begin the name, with their path."""
@@ -154,11 +163,18 @@ class Picker:
         return both_edges([net] if net >= CONSTANTS else [])
 
     def _unknown(self, name: str) -> Diagnostic:
-        known = [port.name for port in self._flat.ports]
+        if any(path == f"{name}." for _, path in self._scopes(f"{name}.")):
+            hint: str | None = f"`{name}` is an instance of a module: `{name}.*` means all that is in it."
+        else:
+            hint = did_you_mean(name, list(islice(self._known(name), MOST_NEIGHBOURS)))
+        return Diagnostic.of("U104", name=name, hint=hint)
+
+    def _known(self, name: str) -> Iterator[str]:
+        yield from (port.name for port in self._flat.ports)
         for scope, path in self._scopes(name):
             template = self._flat.templates[self._flat.scope_template[scope]]
-            known += [path + below for below in (*template.inst_names, *template.net_names) if below]
-        return Diagnostic.of("U104", name=name, hint=did_you_mean(name, known))
+            yield from (path + below for below in template.inst_names if below)
+            yield from (path + below for below in template.net_names)
 
 
 def _fits(name: str) -> Fits:

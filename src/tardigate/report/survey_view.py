@@ -116,9 +116,7 @@ def _kinds(kinds: tuple[KindRecord, ...], look: Look) -> list[Text]:
 def _origin(kind: KindRecord) -> Cell:
     if kind.origin == "missing":
         return "missing", "missing"
-    if kind.origin == "parts file":
-        return kind.words or kind.origin
-    return f"{kind.words} ({kind.origin})" if kind.origin == "family default" and kind.words else kind.origin
+    return kind.words if kind.words and kind.origin in ("parts file", "family default") else kind.origin
 
 
 def _clocks(record: SurveyRecord, look: Look) -> list[Text]:

@@ -77,7 +77,7 @@ def _columns(look: Look) -> tuple[list[Column], list[int]]:
 def _cells(row: Row, pins: str, scale: Scale, look: Look) -> list[Cell]:
     delay, over = scale.text(row.delay), scale.text(row.over)
     if isinstance(row, FoldRecord):
-        told = f"{look.glyph('dot')} {counted(row.hops, 'shorter hop')}"
+        told = f"{look.glyph('dot')} {counted(row.hops, 'other hop')}"
         return [(told, "quiet"), "", "", (delay, "quiet"), (over, "quiet"), "", ""]
     place = f"{row.place.path}:{row.place.line}" if row.place else ""
     return [row.instance, row.kind, pins, delay, over, row.net, place]

@@ -6,14 +6,12 @@ its comments and strings and not otherwise read. A condition ends in the text in
 
 from __future__ import annotations
 
-import re
-
 from tardigate.syntax.expansion import Handler, Run
 from tardigate.syntax.frames import Condition, Frame
-from tardigate.syntax.marks import NAME, comment_end, line_end, plain_name
+from tardigate.syntax.marks import NAME, comment_end, late, line_end, plain_name
 
-_BEHIND = re.compile(rb"[ \t]*(" + NAME.pattern + rb")")
-_WORD = re.compile(rb"`(ifdef|ifndef|elsif|else|endif)(?![\w$])")
+_BEHIND = late(rb"[ \t]*(" + NAME.pattern + rb")")
+_WORD = late(rb"`(ifdef|ifndef|elsif|else|endif)(?![\w$])")
 
 
 def condition_handlers(run: Run) -> dict[bytes, Handler]:
@@ -84,7 +82,7 @@ class _Conditions:
 
     def _name(self, frame: Frame, mark: int, end: int) -> tuple[bytes | None, int]:
         """Return the macro name behind a directive and where it ends."""
-        found = _BEHIND.match(frame.data, end)
+        found = _BEHIND().match(frame.data, end)
         if found:
             return plain_name(found[1]), found.end()
         self._run.tell("V134", frame, mark, end, word=frame.data[mark + 1 : end].decode("ascii", "replace"))
@@ -95,7 +93,7 @@ class _Conditions:
         data, marks, depth = frame.data, frame.marks, 0
         pos = start
         while (mark := marks.next(pos)) < len(data):
-            word = _WORD.match(data, mark)
+            word = _WORD().match(data, mark)
             if word and word[1] in (b"ifdef", b"ifndef"):
                 depth += 1
             elif word and not depth:

@@ -8,13 +8,13 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable
-from dataclasses import dataclass
+from typing import NamedTuple
 
 from tardigate.syntax.expansion import Handler, Run
 from tardigate.syntax.frames import Frame, as_text
 from tardigate.syntax.inclusion import Inclusion
 from tardigate.syntax.macros import read_definition
-from tardigate.syntax.marks import NAME, line_end, plain_name
+from tardigate.syntax.marks import NAME, late, line_end, plain_name
 from tardigate.syntax.placing import States, Use
 
 Timescale = tuple[float | None, float | None]
@@ -26,26 +26,35 @@ NETTYPES = ("wire", "tri", "tri0", "tri1", "wand", "triand", "wor", "trior", "tr
 _UNIT_FS = {b"s": 1e15, b"ms": 1e12, b"us": 1e9, b"ns": 1e6, b"ps": 1e3, b"fs": 1.0}
 _NUMBERS = (b"1", b"10", b"100")
 _TIME = rb"([\d.]+)\s*([A-Za-z]+)"
-_BEHIND = re.compile(rb"[ \t]*(" + NAME.pattern + rb")")
+_BEHIND = late(rb"[ \t]*(" + NAME.pattern + rb")")
 
 
-@dataclass(frozen=True, slots=True)
-class _Argument:
+_INCLUDE = late(rb'[ \t]*"([^"\n]+)"')
+_TIMESCALE = late(rb"\s*" + _TIME + rb"\s*/\s*" + _TIME)
+_NETTYPE = late(rb"\s*(\w+)")
+_PULL = late(rb"\s*(pull[01])\b")
+_LINE = late(rb'[ \t]*[1-9]\d*[ \t]+"[^"\n]*"[ \t]+[012]\b')
+_STANDARD = late(rb'\s*"[^"\n]+"')
+
+
+class _Argument(NamedTuple):
     """What must stand behind a directive, the code of its absence, and what takes it."""
 
-    pattern: re.Pattern[bytes]
+    pattern: Callable[[], re.Pattern[bytes]]
     code: str
     take: Callable[[Frame, re.Match[bytes], Use], None]
 
 
-@dataclass(slots=True)
 class Settings:
     """The states along the text: time scale, default net type, cell or not, pull of unconnected inputs."""
 
-    timescales: States[Timescale]
-    nettypes: States[str]
-    cells: States[bool]
-    drives: States[str]
+    __slots__ = ("cells", "drives", "nettypes", "timescales")
+
+    def __init__(self, timescale: Timescale, nettype: str, cell: bool, drive: str) -> None:
+        self.timescales = States(timescale)
+        self.nettypes = States(nettype)
+        self.cells = States(cell)
+        self.drives = States(drive)
 
     def reset(self, offset: int) -> None:
         """Go back to what holds before any directive (19.6)."""
@@ -63,16 +72,12 @@ class Directives:
         self._settings = settings
         self._inclusion = inclusion
         self._arguments = {
-            b"include": _Argument(re.compile(rb'[ \t]*"([^"\n]+)"'), "V124", self._include),
-            b"timescale": _Argument(
-                re.compile(rb"\s*" + _TIME + rb"\s*/\s*" + _TIME), "V141", self._timescale
-            ),
-            b"default_nettype": _Argument(re.compile(rb"\s*(\w+)"), "V143", self._default_nettype),
-            b"unconnected_drive": _Argument(re.compile(rb"\s*(pull[01])\b"), "V144", self._unconnected_drive),
-            b"line": _Argument(
-                re.compile(rb'[ \t]*[1-9]\d*[ \t]+"[^"\n]*"[ \t]+[012]\b'), "V144", self._accept
-            ),
-            b"begin_keywords": _Argument(re.compile(rb'\s*"[^"\n]+"'), "V144", self._accept),
+            b"include": _Argument(_INCLUDE, "V124", self._include),
+            b"timescale": _Argument(_TIMESCALE, "V141", self._timescale),
+            b"default_nettype": _Argument(_NETTYPE, "V143", self._default_nettype),
+            b"unconnected_drive": _Argument(_PULL, "V144", self._unconnected_drive),
+            b"line": _Argument(_LINE, "V144", self._accept),
+            b"begin_keywords": _Argument(_STANDARD, "V144", self._accept),
         }
 
     def handlers(self) -> dict[bytes, Handler]:
@@ -100,7 +105,7 @@ class Directives:
         """Return a handler that reads what stands behind; where macros give it, when they are expanded."""
 
         def handle(frame: Frame, mark: int, end: int) -> int:
-            found = argument.pattern.match(frame.data, end)
+            found = argument.pattern().match(frame.data, end)
             if found:
                 argument.take(frame, found, frame.place(mark, found.end()))
                 return found.end()
@@ -120,7 +125,7 @@ class Directives:
         return handle
 
     def _expanded(self, argument: _Argument, frame: Frame, use: Use, word: str, text: bytes) -> None:
-        found = argument.pattern.fullmatch(text.strip())
+        found = argument.pattern().fullmatch(text.strip())
         if found:
             argument.take(frame, found, use)
         else:
@@ -141,7 +146,7 @@ class Directives:
         return definition.end
 
     def _undef(self, frame: Frame, mark: int, end: int) -> int:
-        name = _BEHIND.match(frame.data, end)
+        name = _BEHIND().match(frame.data, end)
         if not name:
             self._run.tell("V134", frame, mark, end, word="undef")
             return end

@@ -6,7 +6,6 @@ Takes text, gives expanded text to a sink (IEEE 1364-2005, 19.3). What a directi
 
 from __future__ import annotations
 
-import re
 from collections.abc import Callable, Mapping
 from typing import Any
 
@@ -14,12 +13,12 @@ from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import did_you_mean
 from tardigate.syntax.frames import Budget, Call, Frame, Voice, as_text
 from tardigate.syntax.macros import ARGUMENT, Macro, arguments_begin, read_arguments, trim
-from tardigate.syntax.marks import NAME, blank_line_comments, comment_end, line_end, plain_name
+from tardigate.syntax.marks import NAME, blank_line_comments, comment_end, late, line_end, plain_name
 from tardigate.syntax.placing import PlacingSink, Sink, Use
 
 _QUOTE, _SLASH = 0x22, 0x2F
 _AFTER_PADDING = b" \t\r\n),;"
-_SAME_USES = re.compile(rb"""(`[A-Za-z_][\w$]*+)(?=[ \t\r\n),;])(?:[^"\\/`]*+\1(?=[ \t\r\n),;]))*+""")
+_SAME_USES = late(rb"""(`[A-Za-z_][\w$]*+)(?=[ \t\r\n),;])(?:[^"\\/`]*+\1(?=[ \t\r\n),;]))*+""")
 """A use of a macro, to the last use of the same one that only plain text parts from it."""
 
 Handler = Callable[[Frame, int, int], int]
@@ -162,7 +161,7 @@ class Run:
         frame.pos = end
         fits = len(body) <= end - mark and frame.data[end : end + 1] in _AFTER_PADDING and b"\n" not in body
         if frame.file is not None and fits:
-            same = _SAME_USES.match(frame.data, mark)
+            same = _SAME_USES().match(frame.data, mark)
             stretch = same[0] if same else frame.data[mark:end]
             padded = stretch.replace(frame.data[mark:end], body.ljust(end - mark))
             frame.sink.stand_in(frame.file, mark, padded)

@@ -6,7 +6,6 @@ Data and small counters; the reading is in `expansion.py`.
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass, field
 
 from tardigate.source.collector import MOST, Collector
 from tardigate.source.diagnostic import Diagnostic, Related
@@ -24,16 +23,17 @@ MOST_USES = 250_000
 """Uses inside macros, and brackets and commas read for them; one more for each 16 bytes of the file."""
 
 
-@dataclass(slots=True)
 class Condition:
     """An `ifdef` that waits for its `endif`; `done` when one of its branches was taken."""
 
-    use: Use
-    done: bool
-    past_else: bool = False
+    __slots__ = ("done", "past_else", "use")
+
+    def __init__(self, use: Use, done: bool) -> None:
+        self.use = use
+        self.done = done
+        self.past_else = False
 
 
-@dataclass(slots=True)
 class Frame:
     """A text that is being read up to `pos`. `file` is None in the text of a macro or of an argument.
 
@@ -41,34 +41,37 @@ class Frame:
     markers of a macro's body; `ended` takes the text of an argument.
     """
 
-    data: bytes
-    sink: Sink
-    file: SourceFile | None
-    use: Use
-    macro: Macro | None = None
-    args: list[bytes] = field(default_factory=list)
-    ended: Callable[[bytes], None] | None = None
-    pos: int = 0
-    conditions: list[Condition] = field(default_factory=list)
-    marks: Marks = field(init=False)
+    __slots__ = ("args", "conditions", "data", "ended", "file", "macro", "marks", "pos", "sink", "use")
 
-    def __post_init__(self) -> None:
-        self.marks = Marks(self.data)
+    def __init__(
+        self,
+        data: bytes,
+        sink: Sink,
+        file: SourceFile | None,
+        use: Use,
+        macro: Macro | None = None,
+        args: list[bytes] | None = None,
+        ended: Callable[[bytes], None] | None = None,
+    ) -> None:
+        self.data, self.sink, self.file, self.use = data, sink, file, use
+        self.macro, self.args, self.ended = macro, args or [], ended
+        self.pos = 0
+        self.conditions: list[Condition] = []
+        self.marks = Marks(data)
 
     def place(self, start: int, stop: int) -> Use:
         """Return where bytes of this text stand in a file."""
         return self.use if self.file is None else Use(self.file, start, stop)
 
 
-@dataclass(slots=True)
 class Call:
     """A use of a macro whose arguments are expanded one after the other."""
 
-    macro: Macro
-    raw: tuple[bytes, ...]
-    caller: Frame
-    use: Use
-    args: list[bytes] = field(default_factory=list)
+    __slots__ = ("args", "caller", "macro", "raw", "use")
+
+    def __init__(self, macro: Macro, raw: tuple[bytes, ...], caller: Frame, use: Use) -> None:
+        self.macro, self.raw, self.caller, self.use = macro, raw, caller, use
+        self.args: list[bytes] = []
 
 
 class Voice:

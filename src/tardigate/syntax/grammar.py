@@ -6,9 +6,9 @@ transformer called as each rule is reduced, so that no tree is walked. Does not 
 
 from __future__ import annotations
 
-import hashlib
+import os
 import sys
-from importlib import resources
+from importlib.util import find_spec
 from typing import TYPE_CHECKING, Any
 
 from tardigate.source.faults import InternalFaultError
@@ -31,7 +31,7 @@ class Reader:
     def __init__(self, name: str, maker: object) -> None:
         from tardigate.syntax.lalr import Machine
 
-        self._text = resources.files("tardigate.grammars").joinpath(f"{name}.lark").read_text("utf-8")
+        self._text = _package_file("tardigate.grammars", f"{name}.lark")
         self._lark: Lark | None = None
         self._machine: Machine | None = None
         key = _key(self._text)
@@ -81,7 +81,7 @@ def parser(name: str, transformer: Any) -> Lark:
 
     Building the tables takes some hundred ms: they are kept between runs (`grammar_cache`).
     """
-    text = resources.files("tardigate.grammars").joinpath(f"{name}.lark").read_text("utf-8")
+    text = _package_file("tardigate.grammars", f"{name}.lark")
     key = _key(text)
     kept = grammar_cache.fetch(name, key)
     if kept is not None:
@@ -96,19 +96,18 @@ def parser(name: str, transformer: Any) -> Lark:
 
 
 def _key(text: str) -> str:
-    parts = (text, _lark_version(), str(FORM), sys.version)
-    return hashlib.sha256("\0".join(parts).encode()).hexdigest()
+    """Return what the tables of a grammar depend on; lark's version stands in its first module."""
+    return "\n".join((str(FORM), sys.version, _package_file("lark", "__init__.py"), text))
 
 
-def _lark_version() -> str:
-    """Return lark's version without importing it: its source says it in its first lines."""
-    from importlib.util import find_spec
-
-    spec = find_spec("lark")
-    if spec is None or spec.origin is None:
-        return ""
-    with open(spec.origin, encoding="utf-8") as file:
-        return file.read(20000)
+def _package_file(package: str, name: str) -> str:
+    """Return the text of a file in a package that is not imported for that (importlib.resources would be)."""
+    spec = find_spec(package)
+    places = (spec.submodule_search_locations if spec else None) or ()
+    for place in places:
+        data: bytes = spec.loader.get_data(os.path.join(place, name))  # type: ignore[union-attr]
+        return data.decode("utf-8")
+    raise InternalFaultError(f"the package {package} is not installed")
 
 
 def _to_tables(built: Lark) -> Any:
@@ -135,7 +134,7 @@ def _from_tables(tables: Any, transformer: Any) -> Lark | None:
             for state, row in table["states"].items()
         }
         numbered = {int(number): entry for number, entry in memo.items()}
-        loaded: Lark = Lark._load_from_dict(data, numbered, transformer=transformer)
+        loaded: Lark = Lark._load_from_dict(data, numbered, transformer=transformer)  # type: ignore[no-untyped-call]
     except (KeyError, ValueError, TypeError, AttributeError, AssertionError, IndexError):
         return None
     return loaded

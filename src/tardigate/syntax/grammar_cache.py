@@ -13,6 +13,7 @@ import sys
 from contextlib import suppress
 from pathlib import Path
 from typing import Any
+from zlib import crc32
 
 SWITCH = "TARDIGATE_CACHE"
 """Environment variable; `off` keeps tardigate from reading and writing kept tables."""
@@ -73,7 +74,7 @@ def keep(name: str, key: str, tables: Any) -> None:
 
 
 def _file(name: str, key: str) -> str:
-    return f"{name}-{key[:32]}.json"
+    return f"{name}-{crc32(key.encode()):08x}.json"  # the key itself is compared, in the file
 
 
 def _forget_oldest(place: Path, name: str) -> None:

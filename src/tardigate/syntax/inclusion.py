@@ -6,12 +6,12 @@ Takes the name in an `include` and puts the file on the run's stack. Does not re
 from __future__ import annotations
 
 import os
-import re
 
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.files import SourceFile, read_file
 from tardigate.syntax.expansion import Run
 from tardigate.syntax.frames import Frame
+from tardigate.syntax.marks import late
 from tardigate.syntax.placing import Use
 
 DEEPEST = 100
@@ -19,7 +19,7 @@ DEEPEST = 100
 USES_OF_INCLUDE = 100
 """How many uses of a macro one more inclusion of the same file counts for."""
 
-_REST = re.compile(rb"[ \t\r]*(?:\n|//|/\*|\Z)")
+_REST = late(rb"[ \t\r]*(?:\n|//|/\*|\Z)")
 
 
 class Inclusion:
@@ -32,7 +32,7 @@ class Inclusion:
 
     def include(self, frame: Frame, name: str, use: Use) -> None:
         """Put a file on the stack: its own folder's first, then of the include folders in order."""
-        if frame.file is not None and not _REST.match(frame.data, use.stop):
+        if frame.file is not None and not _REST().match(frame.data, use.stop):
             self._run.voice.tell("V124", frame, use)
             return
         open_files = [one.file for one in self._run.stack if one.file is not None]

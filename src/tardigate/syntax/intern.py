@@ -52,7 +52,7 @@ class Interned:
         words = [text.encode("utf-8", "surrogateescape") for text in texts]
         stop = np.cumsum([len(word) for word in words])
         start = np.concatenate(([0], stop[:-1]))
-        keys = _keys(b"".join(words), start, stop)
+        keys = _keys(b"".join(words) + bytes(PAD), start, stop)
         near = np.minimum(np.searchsorted(self.hashes, keys), len(self.hashes) - 1)
         for at in np.flatnonzero(self.hashes[near] == keys):
             if self.data[self.start[near[at]] : self.stop[near[at]]] == words[at]:
@@ -63,9 +63,8 @@ class Interned:
 
 
 def _keys(data: bytes, start: NDArray[np.integer], stop: NDArray[np.integer]) -> NDArray[np.uint64]:
-    """Return a 64-bit key of each word, made of the word's 8-byte pieces."""
-    padded = data + bytes(16)
-    pieces = np.ndarray((len(data) + 8,), dtype="<u8", buffer=padded, strides=(1,))
+    """Return a 64-bit key of each word, made of the word's 8-byte pieces; `data` is padded."""
+    pieces = np.ndarray((len(data) - 7,), dtype="<u8", buffer=data, strides=(1,))
     length = stop - start
     keys: NDArray[np.uint64] = pieces[start] & _MASKS[np.minimum(length, 8)]
     rest = np.flatnonzero(length > 8)
@@ -82,8 +81,12 @@ def _keys(data: bytes, start: NDArray[np.integer], stop: NDArray[np.integer]) ->
     return keys
 
 
+PAD = 16
+"""Bytes that must follow the words in what `intern` gets, so that pieces can be read past the last one."""
+
+
 def intern(data: bytes, start: NDArray[np.int32], stop: NDArray[np.int32]) -> Interned:
-    """Number the words `data[start:stop]`.
+    """Number the words `data[start:stop]`; `data` ends with PAD bytes beyond them.
 
     Words are put together by a 64-bit key; then every word is compared with the first of its key, byte for
     byte, and the words of which that fails (none, but for an attack) get numbers of their own.
@@ -142,8 +145,7 @@ def _differing(
     other_stop: NDArray[np.int32],
 ) -> NDArray[np.int64]:
     """Return the numbers of the words that differ from the words they are compared with."""
-    padded = data + bytes(16)
-    pieces = np.ndarray((len(data) + 8,), dtype="<u8", buffer=padded, strides=(1,))
+    pieces = np.ndarray((len(data) - 7,), dtype="<u8", buffer=data, strides=(1,))
     length = stop - start
     differs = length != other_stop - other_start
     rest = np.flatnonzero(length > 8)

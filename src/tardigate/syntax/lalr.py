@@ -1,8 +1,8 @@
 """Runs a grammar's tables over a text: a plain LALR(1) machine (Aho, Sethi, Ullman 1986, section 4.7).
 
 Takes tables as `grammar_tables` makes them and an object with a method for each rule, gives what its method
-for the start rule returns. It knows the grammar from the tables alone and says of a faulty text only that it is
-faulty: lark, on the same grammar, tells why.
+for the start rule returns. It knows the grammar from the tables alone and says of a faulty text only that it
+is faulty: lark, on the same grammar, tells why.
 """
 
 from __future__ import annotations

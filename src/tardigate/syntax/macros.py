@@ -6,9 +6,9 @@ Takes text after `` `define `` or after a macro's name, gives a macro or raw arg
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
+from typing import NamedTuple
 
-from tardigate.syntax.marks import NAME, STRING, comment_end, plain_name
+from tardigate.syntax.marks import NAME, STRING, comment_end, late, plain_name
 from tardigate.syntax.placing import Use
 
 ARGUMENT = re.compile(rb"\x01(\d+)\x01")
@@ -16,24 +16,23 @@ ARGUMENT = re.compile(rb"\x01(\d+)\x01")
 
 _GAP = rb"(?:[ \t\f]|\\\r?\n)*+"
 _FORMAL = rb"(?:[A-Za-z_][A-Za-z0-9_$]*)"
-_FORMALS = re.compile(
+_FORMALS = late(
     rb"\(" + _GAP + rb"(?:(" + _FORMAL + rb"(?:" + _GAP + rb"," + _GAP + _FORMAL + rb")*)" + _GAP + rb")?\)"
 )
 _ESCAPED = rb"\\(?:[^\s\\]|\\(?!\r?\n))++"
 _COMMENT = rb"//(?:[^\\\n]++|\\(?!\r?\n))*+|/\*(?:[^*]++|\*(?!/))*+\*/"
-_BODY = re.compile(
+_BODY = late(
     rb'(?:[^\\"/\n]++|\\\r?\n|' + _ESCAPED + rb"|\\|" + STRING + rb"|" + _COMMENT + rb"|/(?![/*]))*+"
 )
-_TOKEN = re.compile(
+_TOKEN = late(
     rb"(?P<keep>" + STRING + rb"|" + _ESCAPED + rb"|\d[\w$]*|'[sS]?[bodhBODH]\s*[\w?]+|\$[\w$]+)"
     rb"|(?P<comment>" + _COMMENT + rb")|(?P<joint>\\\r?\n)|(?P<name>[A-Za-z_][\w$]*)"
 )
-_CONTROL = re.compile(rb"[\x00-\x08\x0b\x0e-\x1f\x7f]")
-_CALM = re.compile(rb'(?:[^"\\/()\[\]{},]++|' + STRING + rb"|\\[^\s]*+|/(?![/*]))*+")
+_CONTROL = late(rb"[\x00-\x08\x0b\x0e-\x1f\x7f]")
+_CALM = late(rb'(?:[^"\\/()\[\]{},]++|' + STRING + rb"|\\[^\s]*+|/(?![/*]))*+")
 
 
-@dataclass(frozen=True, slots=True)
-class Macro:
+class Macro(NamedTuple):
     """A macro: `formals` is None when it takes no arguments; `body` is free of comments and joined lines.
 
     `calm` says that nothing in the body is left to expand. `defined` is where its name was defined.
@@ -46,8 +45,7 @@ class Macro:
     defined: Use
 
 
-@dataclass(frozen=True, slots=True)
-class Definition:
+class Definition(NamedTuple):
     """What stands after `` `define ``: the macro or the reason why there is none; where its text ends."""
 
     macro: Macro | None
@@ -55,8 +53,7 @@ class Definition:
     end: int
 
 
-@dataclass(frozen=True, slots=True)
-class Arguments:
+class Arguments(NamedTuple):
     """The raw arguments of a use, comments blanked; `steps` counts the brackets and commas passed."""
 
     raw: tuple[bytes, ...]
@@ -72,21 +69,21 @@ def read_definition(data: bytes, pos: int, place: Use) -> Definition:
     while data[pos : pos + 1] in (b" ", b"\t"):
         pos += 1
     name = NAME.match(data, pos)
-    body = _BODY.match(data, name.end() if name else pos)
+    body = _BODY().match(data, name.end() if name else pos)
     assert body is not None
     if not name:
         return Definition(None, "a name must follow", body.end())
     formals: tuple[bytes, ...] | None = None
     start = name.end()
     if data[start : start + 1] == b"(":
-        listed = _FORMALS.match(data, start)
+        listed = _FORMALS().match(data, start)
         if not listed:
             return Definition(None, "the list of arguments is not names between commas", body.end())
         formals = tuple(re.findall(_FORMAL, listed[1] or b""))
         start = listed.end()
         if len(set(formals)) < len(formals):
             return Definition(None, "an argument is named twice", body.end())
-        body = _BODY.match(data, start)
+        body = _BODY().match(data, start)
         assert body is not None
     if _holds_control(body[0]):
         return Definition(None, "a control character stands in its text", body.end())
@@ -107,15 +104,15 @@ def _template(text: bytes, formals: tuple[bytes, ...]) -> bytes:
             return token[0]
         return b" " if token.lastgroup == "comment" else b"\n"
 
-    return trim(_TOKEN.sub(replace, text))
+    return trim(_TOKEN().sub(replace, text))
 
 
 def _holds_control(text: bytes) -> bool:
     """Return whether a control character stands outside comments; 0x01 would be taken for a marker."""
-    if not _CONTROL.search(text):
+    if not _CONTROL().search(text):
         return False
-    bare = _TOKEN.sub(lambda token: b" " if token["comment"] else token[0], text)
-    return bool(_CONTROL.search(bare))
+    bare = _TOKEN().sub(lambda token: b" " if token["comment"] else token[0], text)
+    return bool(_CONTROL().search(bare))
 
 
 def trim(text: bytes) -> bytes:
@@ -140,7 +137,7 @@ def read_arguments(data: bytes, pos: int) -> Arguments | None:
     chunks: list[bytes] = []
     round_, other, steps = 0, 0, 0
     while True:
-        calm = _CALM.match(data, pos)
+        calm = _CALM().match(data, pos)
         assert calm is not None
         chunks.append(calm[0])
         pos = calm.end()

@@ -7,6 +7,14 @@ Everything else is left unread.
 from __future__ import annotations
 
 import re
+from collections.abc import Callable
+from functools import cache
+
+
+def late(pattern: bytes) -> Callable[[], re.Pattern[bytes]]:
+    """Return a pattern that is compiled when it is first called for; most texts need few of them."""
+    return cache(lambda: re.compile(pattern))
+
 
 NAME = re.compile(rb"[A-Za-z_][A-Za-z0-9_$]*|\\[^\s]+")
 """An identifier, plain or escaped (3.7)."""
@@ -15,11 +23,11 @@ STRING = rb'"(?:[^"\\\n]++|\\[^\n])*+"'
 """A string on one line (3.6), as a piece of a pattern."""
 
 _BLANK = bytes(c if c in b"\r\n" else 0x20 for c in range(256))
-_STRINGS = re.compile(rb"(?:" + STRING + rb'(?:[^"\\/`]{1,255}+|\\[^\s]*+|/(?![/*])){0,64}+)++')
-_BLACK = re.compile(rb"[^\s]*")
+_STRINGS = late(rb"(?:" + STRING + rb'(?:[^"\\/`]{1,255}+|\\[^\s]*+|/(?![/*])){0,64}+)++')
+_BLACK = late(rb"[^\s]*")
 _COMMENT = re.compile(rb"/[/*]")
-_LINE_COMMENT = re.compile(rb"//[^\n]*")
-_LINE_COMMENTS = re.compile(rb'(?:[^"\\/`]*+//[^\n]*+)++')
+_LINE_COMMENT = late(rb"//[^\n]*")
+_LINE_COMMENTS = late(rb'(?:[^"\\/`]*+//[^\n]*+)++')
 
 
 def blank(text: bytes) -> bytes:
@@ -46,9 +54,9 @@ def blank_line_comments(data: bytes, start: int) -> bytes:
 
     Files with a comment at each gate are then no slower to pass than others.
     """
-    stretch = _LINE_COMMENTS.match(data, start)
+    stretch = _LINE_COMMENTS().match(data, start)
     assert stretch is not None
-    return _LINE_COMMENT.sub(lambda comment: b" " * len(comment[0]), stretch[0])
+    return _LINE_COMMENT().sub(lambda comment: b" " * len(comment[0]), stretch[0])
 
 
 def plain_name(name: bytes) -> bytes:
@@ -75,11 +83,11 @@ class Marks:
         while True:
             mark = self._candidate(pos)
             backslash = -1 if mark == length else data.rfind(b"\\", pos, mark)
-            escaped = _BLACK.match(data, backslash + 1) if backslash >= 0 else None
+            escaped = _BLACK().match(data, backslash + 1) if backslash >= 0 else None
             if escaped and escaped.end() > mark:
                 pos = escaped.end()
                 continue
-            strings = _STRINGS.match(data, mark) if mark == self._quote < length else None
+            strings = _STRINGS().match(data, mark) if mark == self._quote < length else None
             if not strings:
                 return mark
             pos = strings.end()

@@ -6,8 +6,7 @@ Takes stretches of files and expansions of macros, gives one `PlacedText`. Does 
 from __future__ import annotations
 
 from bisect import bisect_right
-from dataclasses import dataclass
-from typing import Generic, TypeVar
+from typing import Generic, NamedTuple, TypeVar
 
 from tardigate.source.files import SourceFile
 from tardigate.source.placed import Piece, PlacedText
@@ -17,8 +16,7 @@ from tardigate.syntax.marks import blank
 T = TypeVar("T")
 
 
-@dataclass(frozen=True, slots=True)
-class Use:
+class Use(NamedTuple):
     """A stretch of a file that may have to be shown: bytes `start` to before `stop`."""
 
     file: SourceFile

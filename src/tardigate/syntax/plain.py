@@ -197,47 +197,69 @@ def _read(
     depth: NDArray[np.int8],
 ) -> Plain:
     """Read the plain statements that begin and end at the given marks."""
-    length = stop - first
-    if len(first) and length.sum() == stop[-1] - first[0]:
-        inside = np.arange(first[0], stop[-1])  # one unbroken run: the usual netlist
-    else:
-        inside = np.arange(length.sum()) + np.repeat(first - (np.cumsum(length) - length), length)
-    name_of = np.full(len(marks) + 1, -1, np.int32)
-    name_of[:-1][scan.kind == WORD] = scan.word
     is_declaration = marks[first] == DECLARATION
-    has_name = (marks[np.minimum(first + 1, max(len(marks) - 1, 0))] == NAME) & ~is_declaration
-    name = np.where(has_name, name_of[first + 1], -1).astype(np.int32)
-    kind, level = marks[inside], depth[inside]
-    before = marks[inside - 1]
-    term = (level >= 1) & ((kind == NAME) | (kind == CONSTANT)) & ((before == OPEN) | (before == COMMA))
-    term |= (level == 2) & (kind == CLOSE) & (before == OPEN)
-    if is_declaration.any():
-        term |= (level == 0) & (kind == NAME) & ((before == DECLARATION) | (before == COMMA))
-    terms = inside[term]
+    second = np.minimum(first + 1, max(len(marks) - 1, 0))
+    has_name = (marks[second] == NAME) & ~is_declaration
+    name = np.full(len(first), -1, np.int32)
+    name[has_name] = _names_at(scan, second[has_name])
+    terms = _terms(marks, first, stop, depth, bool(is_declaration.any()))
     of_statement = np.searchsorted(terms, np.append(first, stop[-1] if len(stop) else 0))
-    net = _nets(scan, marks, terms, name_of)
-    pin = np.where(depth[terms] == 2, name_of[terms - 2], -1).astype(np.int32)
+    net = _nets(scan, marks, terms)
+    pin = np.full(len(terms), -1, np.int32)
+    by_name = np.flatnonzero(depth[terms] == 2)
+    pin[by_name] = _names_at(scan, terms[by_name] - 2)
     bit = np.full(len(terms), -1, np.int32)
     selected = np.flatnonzero((marks[np.minimum(terms + 1, len(marks) - 1)] == LEFT) & (net >= 0))
     if len(selected):
-        bit[selected] = _numbers(scan, name_of[terms[selected] + 2])
+        bit[selected] = _numbers(scan, _names_at(scan, terms[selected] + 2))
     return Plain(
-        first.astype(np.int32), stop.astype(np.int32), name_of[first], is_declaration, name,
+        first.astype(np.int32), stop.astype(np.int32), _names_at(scan, first), is_declaration, name,
         of_statement.astype(np.int64), pin, net, bit, scan.at[terms],
     )  # fmt: skip
 
 
-def _nets(
-    scan: Scan, marks: NDArray[np.uint8], terms: NDArray[np.int64], name_of: NDArray[np.int32]
-) -> NDArray[np.int32]:
+def _names_at(scan: Scan, marks: NDArray[np.int64]) -> NDArray[np.int32]:
+    """Return the numbers of the names of marks that are words."""
+    names: NDArray[np.int32] = scan.word[scan.word_of[marks]]
+    return names
+
+
+def _terms(
+    marks: NDArray[np.uint8],
+    first: NDArray[np.int64],
+    stop: NDArray[np.int64],
+    depth: NDArray[np.int8],
+    declarations: bool,
+) -> NDArray[np.int64]:
+    """Return the marks that are connections of plain statements: a net, a constant, or the `)` of an open pin."""
+    if not len(first):
+        return np.zeros(0, np.int64)
+    low, high = int(first[0]), int(stop[-1])
+    kind, level, before = marks[low:high], depth[low:high], _shift(marks[low:high], 1)
+    apart = (before == OPEN) | (before == COMMA)
+    term = (level >= 1) & ((kind == NAME) | (kind == CONSTANT)) & apart
+    term |= (level == 2) & (kind == CLOSE) & (before == OPEN)
+    if declarations:
+        term |= (level == 0) & (kind == NAME) & ((before == DECLARATION) | (before == COMMA))
+    length = stop - first
+    if int(length.sum()) < high - low:  # statements between that are not plain
+        inside = np.zeros(high - low + 1, np.int8)
+        inside[first - low] += 1
+        inside[stop - low] -= 1
+        term &= np.cumsum(inside[:-1], dtype=np.int8).view(bool)
+    return np.flatnonzero(term) + low
+
+
+def _nets(scan: Scan, marks: NDArray[np.uint8], terms: NDArray[np.int64]) -> NDArray[np.int32]:
     """Return what each connection is on: a name's number, -1 open, -2 to -5 a constant."""
-    net = name_of[terms]
+    net = np.full(len(terms), -1, np.int32)
+    named = marks[terms] != CLOSE
+    net[named] = _names_at(scan, terms[named])
     constants = np.flatnonzero(marks[terms] == CONSTANT)
     if len(constants):
         distinct, back = np.unique(net[constants], return_inverse=True)
         values = np.array([-2 - _ONE_BIT[scan.names.text(int(name))] for name in distinct], np.int32)
         net[constants] = values[back]
-    net[marks[terms] == CLOSE] = -1
     return net
 
 

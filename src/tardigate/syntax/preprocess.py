@@ -19,7 +19,7 @@ from tardigate.syntax.frames import Frame
 from tardigate.syntax.illegal import check_bytes
 from tardigate.syntax.inclusion import Inclusion
 from tardigate.syntax.macros import Macro
-from tardigate.syntax.placing import States, Use
+from tardigate.syntax.placing import Use
 
 _BYTE_ORDER_MARK = b"\xef\xbb\xbf"
 
@@ -102,10 +102,6 @@ def _given(options: PreprocessOptions, collector: Collector) -> dict[bytes, Macr
 
 def _settings(after: Preprocessed | None) -> Settings:
     if not after:
-        return Settings(States((None, None)), States("wire"), States(False), States("none"))
-    return Settings(
-        States(after.timescales[-1][1:]),
-        States(after.default_nettypes[-1][1]),
-        States(after.cells[-1][1]),
-        States(after.drives[-1][1]),
-    )
+        return Settings((None, None), "wire", False, "none")
+    timescale = after.timescales[-1][1:]
+    return Settings(timescale, after.default_nettypes[-1][1], after.cells[-1][1], after.drives[-1][1])

@@ -12,7 +12,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from tardigate.syntax.intern import Interned, intern
+from tardigate.syntax.intern import PAD, Interned, intern
 
 SPACE, WORD, OPEN, CLOSE, COMMA, SEMICOLON, DOT, LEFT, RIGHT, OTHER = range(10)
 """Classes of bytes, and of marks: white space, word, ( ) , ; . [ ], anything else."""
@@ -54,35 +54,36 @@ def scan(data: bytes) -> Scan:
     """Split a text into words and marks.
 
     A word is a run of identifier characters and `'`, so that `1'b0` is one, or an escaped identifier
-    (IEEE 1364-2005 clause 2.7.1), whose name is without the backslash. Each byte of a string is a mark of
+    (IEEE 1364-2005 clause 3.7.1), whose name is without the backslash. Each byte of a string is a mark of
     class OTHER.
     """
+    padded = data + bytes(PAD)
     classes = np.frombuffer(data.translate(_TABLE), np.uint8)
-    backslashes = b"\\" in data
-    if backslashes or b'"' in data:
+    escapes = b"\\" in data
+    if escapes or b'"' in data:
         classes = _protect(data, classes.copy())
-    is_word = classes == WORD
-    begins = is_word.copy()
-    begins[1:] &= ~is_word[:-1]
-    if backslashes:
-        # `\a\b ` is one word, but `a\b ` is two: an escape always begins a word.
-        begins |= is_word & (np.frombuffer(data, np.uint8) == 0x5C) & _outside_escapes(data, classes)
-    ends = is_word.copy()
-    ends[:-1] &= ~is_word[1:]
-    if backslashes:
-        ends[:-1] |= is_word[:-1] & begins[1:]
-    at = np.flatnonzero(begins | (classes >= OPEN)).astype(np.int32)
+    # A new mark wherever the class changes, and at each sign; a change to white space ends a word.
+    fresh = classes[1:] != classes[:-1]
+    fresh |= classes[1:] >= OPEN
+    if escapes:
+        fresh |= _escapes(data, classes)[1:]  # `a\b ` is two words
+    at = np.empty(0, np.int32)
+    if len(data):
+        at = np.concatenate((np.zeros(1, np.int32), np.flatnonzero(fresh).astype(np.int32) + np.int32(1)))
     kind = classes[at]
-    words = np.flatnonzero(kind == WORD)
+    is_word = kind == WORD
+    words = np.flatnonzero(is_word)
     start = at[words]
-    stop = (np.flatnonzero(ends) + 1).astype(np.int32)
+    stop = np.append(at, np.int32(len(data)))[words + 1]
+    seen = kind != SPACE
+    kind, at, is_word = kind[seen], at[seen], is_word[seen]
     escaped = None
-    if backslashes:
+    if escapes:
         escaped = np.frombuffer(data, np.uint8)[start] == 0x5C
         start = start + escaped
-    names = intern(data, start, stop)
-    word_of = np.cumsum(kind == WORD, dtype=np.int32)
-    word_of -= kind == WORD
+    names = intern(padded, start, stop)
+    word_of = np.cumsum(is_word, dtype=np.int32)
+    word_of -= is_word
     return Scan(data, kind, at, names.ids, stop, escaped, word_of, names)
 
 
@@ -106,13 +107,12 @@ def _protect(data: bytes, classes: NDArray[np.uint8]) -> NDArray[np.uint8]:
     return classes
 
 
-def _outside_escapes(data: bytes, classes: NDArray[np.uint8]) -> NDArray[np.bool_]:
-    """Tell for each byte whether an escaped identifier may begin there (not inside another one)."""
+def _escapes(data: bytes, classes: NDArray[np.uint8]) -> NDArray[np.bool_]:
+    """Tell for each byte whether an escaped identifier begins there (bool[bytes])."""
     start = np.flatnonzero((np.frombuffer(data, np.uint8) == 0x5C) & (classes == WORD))
-    spaces = np.flatnonzero(classes == SPACE)
-    order = np.searchsorted(spaces, start)
+    ends = np.searchsorted(np.flatnonzero(classes == SPACE), start)
     first = np.ones(len(start), bool)
-    first[1:] = order[1:] != order[:-1]
-    outside = np.zeros(len(data), bool)
-    outside[start[first]] = True
-    return outside
+    first[1:] = ends[1:] != ends[:-1]
+    begins = np.zeros(len(data), bool)
+    begins[start[first]] = True
+    return begins

@@ -12,7 +12,7 @@ from typing import NamedTuple
 class Number(NamedTuple):
     """A number: `value` with x and z bits 0; `unknown`, `floating` their masks; `width` None when unsized.
 
-    `signed` as clause 2.5.1 says: plain decimals and based numbers with an `s`.
+    `signed` as clause 3.5.1 says: plain decimals and based numbers with an `s`.
     """
 
     value: int

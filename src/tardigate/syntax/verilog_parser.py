@@ -5,10 +5,12 @@ from __future__ import annotations
 from functools import cache
 from typing import TYPE_CHECKING
 
+from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.placed import PlacedText
 from tardigate.syntax.grammar import parser
 from tardigate.syntax.lark_errors import explain
+from tardigate.syntax.numbers import BadNumberError
 from tardigate.syntax.tree import Module, PlainPorts, Run
 from tardigate.syntax.verilog_tree_maker import TreeMaker
 
@@ -35,11 +37,17 @@ def _parser() -> tuple[Lark, TreeMaker]:
 def parse(
     text: str, cuts: Cuts, runs: dict[int, Run], ports: dict[int, PlainPorts], placed: PlacedText
 ) -> Module:
-    """Return the tree of a module. Raises InputRefusedError (V001) for what the grammar does not accept."""
+    """Return the tree of a module.
+
+    Raises InputRefusedError: V001 for what the grammar does not accept, V009 for a number that is none.
+    """
     lark, maker = _parser()
     maker.begin(cuts.where, runs, ports)
     try:
         return lark.parse(text)  # type: ignore[return-value]
+    except BadNumberError as error:
+        span = placed.span(error.at, error.at + len(error.text))
+        diagnostic = Diagnostic.of("V009", span, number=error.text, reason=error.reason)
     except Exception as error:  # explain raises again what is not about the text
         diagnostic = explain(error, lark, placed, "V001", cuts.where, FRIENDLY)
     raise InputRefusedError((diagnostic,))

@@ -266,10 +266,10 @@ class TreeMaker(Transformer[Token, tree.Module]):
         return tree.Selection("part", children[0], children[1])
 
     def part_up(self, children: list[Any]) -> tree.Selection:
-        return tree.Selection("up", children[0], children[1])
+        return tree.Selection("up", children[0], children[-1])
 
     def part_down(self, children: list[Any]) -> tree.Selection:
-        return tree.Selection("down", children[0], children[1])
+        return tree.Selection("down", children[0], children[-1])
 
     def range(self, children: list[Any]) -> tree.Range:
         return tree.Range(children[0], children[1], children[0].at)

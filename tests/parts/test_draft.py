@@ -1,0 +1,79 @@
+"""What `draft` writes is read again, asks for every delay, and describes every pin."""
+
+from collections.abc import Callable
+
+from hypothesis import given
+from hypothesis import strategies as st
+
+from tardigate.parts.draft import UndescribedModule, draft_text
+from tardigate.parts.gates import BUFFERS, GATES, OPERATORS, THREE_STATE
+from tardigate.parts.kind import Kind, Origin, Way
+from tardigate.parts.library import Library
+from tardigate.source.collector import Collector
+from tardigate.source.files import SourceFile
+
+EMPTY = Library([], [])
+
+
+def read(text: str) -> Library:
+    collector = Collector()
+    library = Library.read([SourceFile("draft.parts", text.encode())], None, collector)
+    collector.refuse()
+    return library
+
+
+def gate(name: str, inputs: int) -> Kind:
+    return EMPTY.gate_kind(name, 1 if name in BUFFERS else 2 if name in THREE_STATE else inputs)
+
+
+def operator(name: str, inputs: int) -> Kind:
+    return EMPTY.operator_kind(name, 1 if name in ("~", "copy") else inputs)
+
+
+GATE_KINDS = st.builds(gate, st.sampled_from(sorted(GATES)), st.integers(1, 12))
+OPERATOR_KINDS = st.builds(operator, st.sampled_from(sorted(OPERATORS)), st.integers(1, 40))
+NAMES = st.text(st.characters(codec="ascii", min_codepoint=33, max_codepoint=126), min_size=1, max_size=8)
+PINS = st.lists(st.tuples(NAMES, st.sampled_from([*Way, None])), unique_by=lambda pin: pin[0], max_size=6)
+MODULES = st.lists(
+    st.builds(lambda name, pins: UndescribedModule(name, tuple(pins)), NAMES, PINS),
+    unique_by=lambda module: module.name,
+    max_size=4,
+)
+
+
+@given(st.lists(GATE_KINDS | OPERATOR_KINDS, max_size=6), MODULES)
+def test_what_draft_writes_is_read_again(kinds: list[Kind], modules: list[UndescribedModule]) -> None:
+    library = read(draft_text(kinds, modules))
+    assert library.part_names() == sorted(module.name for module in modules)
+    for module in modules:
+        ways = {pin.name: pin.way for pin in library.pins(module.name)}
+        assert ways == {name: Way.INPUT if way is None else way for name, way in module.pins}
+    for kind in kinds:
+        inputs = sum(1 for way in kind.ways if way == Way.INPUT)
+        of_gate = kind.group == "gate"
+        name = kind.name if of_gate else kind.name.removeprefix("assign").strip() or "copy"
+        again = library.gate_kind(name, inputs) if of_gate else library.operator_kind(name, inputs)
+        assert again.origin == (Origin.WIRE if name == "copy" else Origin.MISSING)
+
+
+def test_filled_in_the_draft_gives_delays() -> None:
+    kinds = [gate("nand", 2), gate("bufif0", 2), EMPTY.operator_kind("?:", 3)]
+    library = read(draft_text(kinds, []).replace("-:-:-", "1:2:3"))
+    assert library.gate_kind("nand", 2).origin == Origin.PARTS
+    assert library.gate_kind("bufif0", 2).origin == Origin.PARTS
+    assert library.operator_kind("?:", 3).origin == Origin.PARTS
+    assert library.gate_kind("nand", 3).origin == Origin.MISSING
+
+
+def test_vectors_and_pins_by_order_are_declared() -> None:
+    module = UndescribedModule(
+        "BOX", (("", Way.INPUT), ("D", Way.INPUT), ("Q", Way.OUTPUT)), {"D": 8, "Q": 4}
+    )
+    library = read(draft_text([], [module]))
+    assert [(pin.name, pin.width) for pin in library.pins("BOX")] == [("pin1", 1), ("D", 8), ("Q", 4)]
+    assert library.part_kind("BOX").origin == Origin.MISSING
+
+
+def test_equal_kinds_are_written_once(library: Callable[..., Library]) -> None:
+    text = draft_text([gate("nand", 2), library("family F { }").gate_kind("nand", 2)], [])
+    assert text.count("tPLH  nand(2)") == 1
