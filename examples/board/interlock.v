@@ -1,5 +1,5 @@
-// Machine side: line receivers, contact filters, fault memory and the drives. Receivers, drivers and the
-// small programmable device have no parts entry; their delays were taken from a bench report and stand here.
+// Machine side: line receivers, contact filters, fault memory and the drives. The receivers and the small
+// programmable device are no parts of the family; their delays stand here.
 
 `timescale 1 ns / 100 ps
 
@@ -14,7 +14,7 @@ module interlock (
     output       fault,
     output [3:0] drive,
     output       brake_n,
-    output [1:0] lamp_n
+    output [1:0] lamp_n                  // fault, ready
 );
     wire [3:0] received;
     wire [1:0] encoder_n;

@@ -18,7 +18,7 @@ def test_12_3_both_port_styles_are_the_same(dumped: Text) -> None:
     new = "module board(input wire [1:0] a, output y, inout tri io);\nand g (y, a[1], a[0]);\nbufif1 (io, y, a[0]);\nendmodule\n"
     wanted = "input a[1] = a[1]\ninput a[0] = a[0]\noutput y = y\ninout io = io\n"
     assert dumped(old).startswith(wanted)
-    assert dumped(old).replace(":8:", ":3:") == dumped(new)
+    assert dumped(old).replace(":7:", ":3:") == dumped(new)
 
 
 def test_12_3_4_a_direction_carries_on(dumped: Text) -> None:
@@ -120,7 +120,7 @@ def test_12_3_connections_may_be_expressions_and_constants(instances: Lines) -> 
 )  # fmt: skip
 def test_connections_that_are_wrong(instance: str, codes: list[str], told: Codes) -> None:
     text = f"module board(input a, input [1:0] b, output y, output [1:0] z);\n{instance}\nendmodule\n" + HALF
-    found = [code for code in told(text) if code not in ("N202", "N103")]
+    found = [code for code in told(text, top="board") if code not in ("N202", "N103")]
     assert found == codes or found == codes[:1]
 
 
@@ -177,9 +177,8 @@ def test_12_2_2_parameters_that_are_not_there(overrides: str, told: Codes) -> No
 
 
 def test_a_module_is_elaborated_once_for_each_set_of_parameters(elaborate: Callable[..., object]) -> None:
-    text = f"module board(input [2:0] a, output [2:0] y);\n{{}}\nendmodule\n{BLOCK}".format(
-        "block #(2) u (a[1:0], y[1:0]); block #(.W(2)) v (a[1:0]); block #(1) w (a[2], y[2]); block x (a[1:0]);"
-    )
+    body = "block #(2) u (a[1:0], y[1:0]); block #(.W(2)) v (a[1:0]); block #(1) w (a[2], y[2]); block x (a[1:0]);"
+    text = f"module board(input [2:0] a, output [2:0] y);\n{body}\nendmodule\n{BLOCK}"
     assert len(elaborate(text).templates) == 3  # type: ignore[attr-defined]
 
 
@@ -255,7 +254,7 @@ def test_4_6_nets_that_need_no_driver(net: str, told: Codes) -> None:
         ("wire a; wire a;", "N110"),
         ("input a;", "N110"),
         ("wire w; wire [1:0] w;", "N110"),
-        ("wire [1:0] a;", "N110"),
+        ("wire [1:0] a;", "N111"),
         ("output q;", "N113"),
         ("parameter P = 1; parameter P = 2;", "N110"),
         ("parameter P = 1; wire P;", "N110"),

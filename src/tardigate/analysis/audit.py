@@ -27,12 +27,15 @@ TOLERANCE = 1e-12
 
 @dataclass(frozen=True, slots=True)
 class _Steps:
-    """The hops of all trails in a row, from the parts: nets, edges, delays; clock pins are -1 - number."""
+    """The hops that the trails use, from the parts; `row` int32[graph's hops] is where each stands here.
 
-    from_net: NDArray[np.int64]
-    to_net: NDArray[np.int64]
-    from_edge: NDArray[np.uint8]
-    to_edge: NDArray[np.uint8]
+    `begin`, `end` int64 are net and edge as `2 * net + edge`, where a register's clock pin counts as net
+    `-1 - number of the pin`; `delays` float64, fs.
+    """
+
+    row: NDArray[np.int32]
+    begin: NDArray[np.int64]
+    end: NDArray[np.int64]
     delays: NDArray[np.float64]
 
 
@@ -52,10 +55,8 @@ def audit(
     sinks were chosen, so that each trail must begin and end where the design's trails do.
     """
     steps = _steps(flat, graph, trails, grade, late)
-    at = 0
     for number, trail in enumerate(trails):
-        _check_trail(flat, graph, trail, steps, at, number)
-        at += len(trail.hops)
+        _check_trail(flat, graph, trail, steps, number)
     _check_order(trails, late)
     if times is not None:
         _check_times(trails, times.settles if late else times.stirs)
@@ -64,26 +65,27 @@ def audit(
 
 
 def _steps(flat: Flat, graph: Graph, trails: Sequence[Trail], grade: Grade, late: bool) -> _Steps:
-    hops = np.concatenate([np.empty(0, np.int64), *(trail.hops for trail in trails)])
-    instance = graph.instance[hops]
+    used = np.zeros(len(graph.tail), np.bool_)
+    for trail in trails:
+        used[trail.hops] = True
+    hops = np.flatnonzero(used)
+    instance, delay_row = graph.instance[hops], graph.delay_row[hops]
     kind = flat.inst_kind[instance]
-    row = graph.delay_row[hops]
-    if (graph.row_kind[row] != kind).any():
+    if (graph.row_kind[delay_row] != kind).any():
         raise InternalFaultError("Audit: a hop uses the delay of another kind.")
-    pin = np.zeros((2, len(hops)), np.int64)
-    edge = np.zeros((2, len(hops)), np.uint8)
-    delays = np.zeros(len(hops))
-    launches = np.zeros(len(hops), np.bool_)
+    pin, edge = np.zeros((2, len(hops)), np.int64), np.zeros((2, len(hops)), np.int64)
+    delays, launches = np.zeros(len(hops)), np.zeros(len(hops), np.bool_)
     for number in np.unique(kind):
         part, here = flat.kinds[number], np.flatnonzero(kind == number)
-        line = graph.row_hop[row[here]]
+        line = graph.row_hop[delay_row[here]]
         pin[:, here] = part.hop_from[line], part.hop_to[line]
         edge[:, here] = part.from_edge[line], part.to_edge[line]
         delays[here] = np.array([_figure(triple, grade, late) for triple in part.delays.tolist()])[line]
         launches[here] = part.launches[line]
-    nets = flat.pin_net[flat.pin_start[instance] + pin].astype(np.int64)
-    nets[0, launches] = -1 - (flat.pin_start[instance] + pin[0])[launches]
-    return _Steps(nets[0], nets[1], edge[0], edge[1], delays)
+    pin += flat.pin_start[instance]
+    nets = flat.pin_net[pin].astype(np.int64)
+    nets[0, launches] = -1 - pin[0, launches]
+    return _Steps((np.cumsum(used) - 1).astype(np.int32), *(2 * nets + edge), delays)
 
 
 def _figure(triple: list[float], grade: Grade, late: bool) -> float:
@@ -93,32 +95,30 @@ def _figure(triple: list[float], grade: Grade, late: bool) -> float:
     return 0.0 if figure != figure else figure  # only NaN differs from itself
 
 
-def _check_trail(flat: Flat, graph: Graph, trail: Trail, steps: _Steps, at: int, number: int) -> None:
-    end = at + len(trail.hops)
-    here = slice(at, end)
-    place, edge = _start(flat, graph, trail.source)
-    nets = np.concatenate([[place], steps.to_net[here]])
-    edges = np.concatenate([[edge], steps.to_edge[here]])
-    if (nets[:-1] != steps.from_net[here]).any():
-        raise InternalFaultError(f"Audit: the hops of trail {number} do not join.")
-    if (edges[:-1] != steps.from_edge[here]).any():
-        raise InternalFaultError(f"Audit: the edges of trail {number} do not follow from each other.")
-    if (int(nets[-1]), int(edges[-1])) != _start(flat, graph, trail.sink):
+def _check_trail(flat: Flat, graph: Graph, trail: Trail, steps: _Steps, number: int) -> None:
+    rows = steps.row[trail.hops]
+    at = np.concatenate([[_place(flat, graph, trail.source)], steps.end[rows]])
+    apart = at[:-1] ^ steps.begin[rows]
+    if apart.any():
+        what = "edges" if (apart <= 1).all() and (apart >= 0).all() else "nets"
+        raise InternalFaultError(f"Audit: the hops of trail {number} do not join: other {what}.")
+    if at[-1] != _place(flat, graph, trail.sink):
         raise InternalFaultError(f"Audit: trail {number} does not end at its sink.")
-    total = fsum(steps.delays[here].tolist())
-    if (trail.delays != steps.delays[here]).any() or abs(total - trail.total) > TOLERANCE * abs(total):
+    delays = steps.delays[rows]
+    total = fsum(delays.tolist())
+    if (trail.delays != delays).any() or abs(total - trail.total) > TOLERANCE * abs(total):
         raise InternalFaultError(
             f"Audit: trail {number} takes {total:.0f} fs by the parts, {trail.total:.0f} fs by the search."
         )
 
 
-def _start(flat: Flat, graph: Graph, vertex: int) -> tuple[int, int]:
-    """Return net and edge of a vertex; the net of a clock pin as in `_Steps`."""
+def _place(flat: Flat, graph: Graph, vertex: int) -> int:
+    """Return net and edge of a vertex as in `_Steps`."""
     point, edge = divmod(vertex, 2)
     if point < flat.nets:
-        return point, edge
+        return vertex
     pin = point - flat.nets
-    return -1 - int(flat.pin_start[graph.clock_pin_instance[pin]] + graph.clock_pin_pin[pin]), edge
+    return 2 * (-1 - int(flat.pin_start[graph.clock_pin_instance[pin]] + graph.clock_pin_pin[pin])) + edge
 
 
 def _check_order(trails: Sequence[Trail], late: bool) -> None:

@@ -73,11 +73,23 @@ class _Found(NamedTuple):
 
 
 class _Piece(NamedTuple):
-    """A stretch of the tree: hops from a vertex back, then the vertex where a known piece goes on, or -1."""
+    """A stretch of the tree: hops from a vertex back, then the vertex where a known piece goes on.
+
+    The last piece goes on at -1 and has the source; `depth` counts the hops from the vertex to there.
+    """
 
     back: NDArray[np.int32]
     onward: int
     source: int
+    depth: int
+
+
+class _Known(NamedTuple):
+    """A vertex that was looked at: the heap of the sidetracks on its best way, and where that way begins."""
+
+    heap: Node | None
+    piece: _Piece
+    at: int
 
 
 class _Search:
@@ -102,9 +114,7 @@ class _Search:
         self.tail, self.head = graph.tail.data, graph.head.data
         self.row, self.start = graph.delay_row.data, graph.head_start.data
         self.delay: list[float] = delays.tolist()
-        self.heaps: dict[int, Node | None] = {}
-        self.place_in: dict[int, tuple[_Piece, int]] = {}
-        self.depth: dict[int, int] = {}
+        self.known: dict[int, _Known] = {}
         self.queue: list[tuple[float, int, _Found | None, Node | None, int]] = []
         self.pushed = 0
 
@@ -146,27 +156,25 @@ class _Search:
                     self._push(minus + below.loss, before, below, 0)
 
     def _heap(self, vertex: int) -> Node | None:
-        """Return the heap of all sidetracks on the best way to a vertex, and keep that way as a piece."""
+        """Return the heap of all sidetracks on the best way to a vertex, which is known from then on."""
         chain: list[tuple[int, list[Sidetrack]]] = []
         back: list[int] = []
-        while vertex not in self.heaps:
+        while vertex not in self.known:
             ways = self._ways(vertex)
             chain.append((vertex, ways[1:]))
             if ways[0][1] < 0:
-                piece, heap = _Piece(np.array(back, np.int32), -1, vertex), None
+                piece, heap = _Piece(np.array(back, np.int32), -1, vertex, len(back)), None
                 break
             back.append(ways[0][1])
             vertex = self.tail[back[-1]]
         else:
-            piece, heap = _Piece(np.array(back, np.int32), vertex, -1), self.heaps[vertex]
-        beyond = len(back) + self.depth.get(piece.onward, 0)
-        for number in range(len(chain) - 1, -1, -1):
-            vertex, sidetracks = chain[number]
+            heap, beyond, at = self.known[vertex]
+            piece = _Piece(np.array(back, np.int32), vertex, -1, len(back) + beyond.depth - at)
+        for at in range(len(chain) - 1, -1, -1):
+            vertex, sidetracks = chain[at]
             if sidetracks:
                 heap = insert(heap, sidetracks)
-            self.heaps[vertex] = heap
-            self.place_in[vertex] = piece, number
-            self.depth[vertex] = beyond - number
+            self.known[vertex] = _Known(heap, piece, at)
         return heap
 
     def _ways(self, vertex: int) -> list[Sidetrack]:
@@ -187,7 +195,7 @@ class _Search:
     def _found(self, sink: int, back: list[NDArray[np.int32]], vertex: int) -> _Found:
         """Return the trail that comes the best way to a vertex and on through the hops `back` to its sink."""
         while True:
-            piece, at = self.place_in[vertex]
+            _, piece, at = self.known[vertex]
             back.append(piece.back[at:])
             if piece.onward < 0:
                 return _Found(sink, np.concatenate(back), piece.source)
@@ -196,7 +204,8 @@ class _Search:
     def _turned(self, before: _Found, hop: int, vertex: int) -> _Found:
         """Return a trail with its last stretch, on the tree, left for a sidetrack from `vertex`."""
         leaves = self.head[hop] if hop >= 0 else -1 - hop
-        kept = before.back[: len(before.back) - self.depth[leaves]]
+        _, piece, at = self.known[leaves]
+        kept = before.back[: len(before.back) - (piece.depth - at)]
         if hop < 0:
             return _Found(before.sink, kept, leaves)
         return self._found(before.sink, [kept, np.array([hop], np.int32)], vertex)

@@ -187,12 +187,12 @@ class _Shop:
             key = name or f"P{at + 1}"
             stranger.pins[key] = max(width, stranger.pins.get(key, 1))
 
-    def parameter_names(self, module: str) -> list[str]:
-        """Return the parameters that an instance may override."""
+    def parameter_names(self, module: str) -> list[str] | None:
+        """Return the parameters that an instance may override; None where nobody says which there are."""
         if self.library.describes(module):
-            return list(self.library.parameters(module))
+            return list(self.library.parameters(module)) or None
         if module not in self.modules:
-            return []
+            return None
         tree_of = self.modules.tree(module)
         declared = [*tree_of.parameters, *(i for i in tree_of.items if isinstance(i, tree.Parameter))]
         return [named.name for declaration in declared if not declaration.local for named in declaration.names]

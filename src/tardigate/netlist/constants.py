@@ -73,8 +73,10 @@ def evaluate(expression: tree.Expression, parameters: Mapping[str, Value]) -> Va
     while work:
         node, ready = work.pop()
         if ready:
-            _apply(node, values)
+            _apply(node, values, parameters)
             continue
+        if isinstance(node, tree.Reference):
+            _check_parameter(node, parameters)
         below = _children(node)
         if below:
             work.append((node, True))
@@ -97,7 +99,16 @@ def _children(node: tree.Expression) -> tuple[tree.Expression, ...]:
         return node.parts
     if isinstance(node, tree.Replication):
         return (node.times, *node.parts)
+    if isinstance(node, tree.Reference):
+        return tuple(bound for s in node.selections for bound in (s.high, s.low) if bound is not None)
     return ()
+
+
+def _check_parameter(node: tree.Reference, parameters: Mapping[str, Value]) -> None:
+    if len(node.path) > 1 or node.path[0] not in parameters:
+        raise NotConstantError(f"`{'.'.join(node.path)}` is no parameter", node.at)
+    if len(node.selections) > 1:
+        raise NotConstantError("a parameter is selected from once", node.at)
 
 
 def _leaf(node: tree.Expression, parameters: Mapping[str, Value]) -> Value:
@@ -108,23 +119,16 @@ def _leaf(node: tree.Expression, parameters: Mapping[str, Value]) -> Value:
             raise NotConstantError("the value is too large", node.at)
         return Value(node.value, node.width, node.signed)
     if isinstance(node, tree.Reference):
-        name = node.path[0]
-        if len(node.path) == 1 and name in parameters:
-            return _selected(node, parameters[name], parameters)
-        raise NotConstantError(f"`{'.'.join(node.path)}` is no parameter", node.at)
+        return parameters[node.path[0]]
     if isinstance(node, tree.String):
         raise NotConstantError("a text is no number", node.at)
     raise NotConstantError("this is no whole number", node.at)
 
 
-def _selected(node: tree.Reference, value: Value, parameters: Mapping[str, Value]) -> Value:
-    if not node.selections:
-        return value
+def _selected(node: tree.Reference, value: Value, bounds: list[Value]) -> Value:
+    """Return bits of a parameter, whose bit 0 is its least significant (clause 5.2.1)."""
     chosen = node.selections[0]
-    bounds = [s for s in (chosen.high, chosen.low) if s is not None]
-    if len(node.selections) > 1 or any(not isinstance(b, tree.Number) for b in bounds):
-        raise NotConstantError("only constant numbers may select from a parameter", node.at)
-    high, *low = (evaluate(bound, parameters).value for bound in bounds)
+    high, *low = (bound.value for bound in bounds)
     bottom = {"bit": high, "part": low[0] if low else high, "up": high}.get(chosen.mode)
     width = {"bit": 1, "part": high - (low[0] if low else high) + 1}.get(chosen.mode, low[0] if low else 1)
     if bottom is None:
@@ -134,13 +138,16 @@ def _selected(node: tree.Reference, value: Value, parameters: Mapping[str, Value
     return Value((value.value >> bottom) & ((1 << width) - 1), width, False)
 
 
-def _apply(node: tree.Expression, values: list[Value]) -> None:
+def _apply(node: tree.Expression, values: list[Value], parameters: Mapping[str, Value]) -> None:
     """Replace the values of a node's operands by its own."""
     count = len(_children(node))
     operands = values[-count:]
     del values[-count:]
     try:
-        result = _result(node, operands)
+        if isinstance(node, tree.Reference):
+            result = _selected(node, parameters[node.path[0]], operands)
+        else:
+            result = _result(node, operands)
     except ZeroDivisionError:
         raise NotConstantError("division by zero", node.at) from None
     except OverflowError:

@@ -52,8 +52,8 @@ class Workshop(Protocol):
     def undescribed(self, module: str, pins: Sequence[tuple[str, int]], place: int) -> None:
         """Take note of an instance of something that nobody describes: pin names (empty by order), widths."""
 
-    def parameter_names(self, module: str) -> list[str]:
-        """Return the parameters of a module or part, in the order in which they may be overridden."""
+    def parameter_names(self, module: str) -> list[str] | None:
+        """Return a module's or part's parameters, in the order in which they may be overridden; None: any."""
 
 
 class Elaborator:
@@ -236,8 +236,8 @@ class Elaborator:
             return found
         names = self.workshop.parameter_names(item.module)
         for at, override in enumerate(item.overrides):
-            name = override.pin or (names[at] if at < len(names) else "")
-            if name not in names and names:
+            name = override.pin or (names[at] if names and at < len(names) else "")
+            if names is not None and name not in names:
                 span = self.wiring.span(override.at, max(1, len(override.pin)))
                 self.collector.tell("N168", span, module=item.module, name=override.pin or f"number {at + 1}")
                 return None

@@ -18,8 +18,8 @@ from tardigate.syntax.placing import PlacingSink, Sink, Use
 
 _QUOTE, _SLASH = 0x22, 0x2F
 _AFTER_PADDING = b" \t\r\n),;"
-_SAME_USES = late(rb"""(`[A-Za-z_][\w$]*+)(?=[ \t\r\n),;])(?:[^"\\/`]*+\1(?=[ \t\r\n),;]))*+""")
-"""A use of a macro, to the last use of the same one that only plain text parts from it."""
+_SAME_USES = late(rb"""(`[A-Za-z_][\w$]*+)(?=[ \t\r\n),;])(?:[^"\\/`]{0,400}+\1(?=[ \t\r\n),;]))*+""")
+"""A use of a macro, to the last use of the same one that only a little plain text parts from it."""
 
 Handler = Callable[[Frame, int, int], int]
 """Does a directive: its text, offsets of the grave accent and past the name; gives where it ends."""

@@ -34,7 +34,7 @@ class Reader:
         self._text = _package_file("tardigate.grammars", f"{name}.lark")
         self._lark: Lark | None = None
         self._machine: Machine | None = None
-        key = _key(self._text)
+        key = _key("tables\n" + self._text)
         kept = grammar_cache.fetch(name, key)
         if kept is not None:
             try:

@@ -27,7 +27,7 @@ _STRINGS = late(rb"(?:" + STRING + rb'(?:[^"\\/`]{1,255}+|\\[^\s]*+|/(?![/*])){0
 _BLACK = late(rb"[^\s]*")
 _COMMENT = re.compile(rb"/[/*]")
 _LINE_COMMENT = late(rb"//[^\n]*")
-_LINE_COMMENTS = late(rb'(?:[^"\\/`]*+//[^\n]*+)++')
+_LINE_COMMENTS = late(rb'(?:[^"\\/`]{0,400}+//[^\n]*+)++')
 
 
 def blank(text: bytes) -> bytes:
@@ -50,7 +50,7 @@ def comment_end(data: bytes, start: int) -> int:
 
 
 def blank_line_comments(data: bytes, start: int) -> bytes:
-    """Return the text from a line comment to the last one that only plain text parts from it, all blanked.
+    """Return the text from a line comment to the last one that only a little plain text parts from it, blanked.
 
     Files with a comment at each gate are then no slower to pass than others.
     """
