@@ -5,7 +5,10 @@ Tests take them as fixtures, for test modules do not import one another.
 
 from __future__ import annotations
 
+import importlib.util
+import sys
 from collections.abc import Callable, Sequence
+from pathlib import Path
 
 import numpy as np
 import pytest
@@ -124,3 +127,25 @@ def make_flat() -> Callable[..., Flat]:
     """
     assert CONSTANTS == 4
     return _flat
+
+
+@pytest.fixture(scope="session")
+def random_verilog() -> Callable[..., str]:
+    """`random_verilog(seed, size=8, wild=False)`: the text of a random design whose top is `top`."""
+    path = Path(__file__).with_name("random_verilog.py")
+    spec = importlib.util.spec_from_file_location("random_verilog", path)
+    assert spec is not None
+    assert spec.loader is not None
+    module = importlib.util.module_from_spec(spec)
+    sys.modules[spec.name] = module  # dataclasses look their module up
+    spec.loader.exec_module(module)
+    return module.design  # type: ignore[no-any-return]
+
+
+@pytest.fixture(scope="session")
+def circuit_folder() -> Path:
+    """The folder of circuit files that the package circuitgraph carries; its code is never imported."""
+    spec = importlib.util.find_spec("circuitgraph")
+    assert spec is not None
+    assert spec.submodule_search_locations
+    return Path(spec.submodule_search_locations[0]) / "netlists"

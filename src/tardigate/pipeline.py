@@ -25,6 +25,7 @@ from tardigate.netlist.names import Names
 from tardigate.parts.draft import UndescribedModule, draft_text
 from tardigate.parts.kind import Kind, Origin
 from tardigate.parts.library import Library
+from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.files import SourceFile, read_file
@@ -83,7 +84,7 @@ def load(request: Request) -> Loaded:
     names = Names(built.flat)
     check_structure(built.flat, names, collector, complete=not built.undescribed)
     collector.refuse()
-    used = np.unique(built.flat.inst_kind)
+    used = distinct(built.flat.inst_kind)
     missing = tuple(built.flat.kinds[k] for k in used if built.flat.kinds[k].origin == Origin.MISSING)
     return Loaded(
         request, built.top, built.flat, names, library, built.modules, collector.warnings(), missing,

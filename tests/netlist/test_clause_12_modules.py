@@ -166,7 +166,7 @@ def test_12_2_2_overrides(overrides: str, width: int, mask: int, last: int, inst
     masks = [line.rpartition("=")[2] for line in gates]
     assert masks == [f"1'b{mask >> i & 1}" for i in range(width)]
     assert [line for line in instances(text) if line.startswith("buf")] == [
-        f"buf u.buf:7: out=u.tie, in=1'b{mask >> last & 1}"
+        f"buf u.buf:11: out=u.tie, in=1'b{mask >> last & 1}"
     ]
 
 

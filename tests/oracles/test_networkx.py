@@ -23,7 +23,7 @@ from tardigate.analysis.trails import fastest, slowest
 from tardigate.graph.build import build
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS, Flat
-from tardigate.parts.kind import Way
+from tardigate.parts.kind import Kind, Way
 
 RandomCircuit = Callable[[int], st.SearchStrategy[Flat]]
 Node = tuple[object, int]
@@ -46,6 +46,16 @@ class Listed(NamedTuple):
     total: float
 
 
+def _rows(kind: Kind, grade: Grade) -> Iterator[tuple[int, int, int, int, bool, dict[str, float]]]:
+    late, early = {"span": (2, 0), "min": (0, 0), "typ": (1, 1), "max": (2, 2)}[grade]
+    for hop in range(kind.hops):
+        delay = np.nan_to_num(kind.delays[hop]).tolist()
+        words = {"late": delay[late], "early": delay[early], "minus_late": -delay[late]}
+        ends = (kind.hop_from[hop], kind.from_edge[hop], kind.hop_to[hop], kind.to_edge[hop])
+        pin_in, from_edge, pin_out, to_edge = map(int, ends)
+        yield pin_in, from_edge, pin_out, to_edge, bool(kind.launches[hop]), words
+
+
 class Twin:
     """The multigraph of a flat design: nodes (net or clock pin, edge), an edge a hop, keys (part, row)."""
 
@@ -53,20 +63,17 @@ class Twin:
         self.graph: Any = networkx.MultiDiGraph()
         self.sources: set[Node] = set()
         sinks: set[object] = set()
-        columns = {"span": (2, 0), "min": (0, 0), "typ": (1, 1), "max": (2, 2)}[grade]
-        for part, number in enumerate(flat.inst_kind):
-            kind = flat.kinds[number]
-            nets = [int(net) for net in flat.pin_net[flat.pin_start[part] :][: len(kind.pins)]]
-            sinks |= {nets[pin] for pin in kind.sinks}
-            for row in range(kind.hops):
-                pin_in, pin_out = int(kind.hop_from[row]), int(kind.hop_to[row])
+        rows = [list(_rows(kind, grade)) for kind in flat.kinds]
+        begin, pin_net = flat.pin_start.tolist(), flat.pin_net.tolist()
+        for part, number in enumerate(flat.inst_kind.tolist()):
+            nets = pin_net[begin[part] : begin[part + 1]]
+            sinks |= {nets[pin] for pin in flat.kinds[number].sinks}
+            for row, (pin_in, from_edge, pin_out, to_edge, launches, words) in enumerate(rows[number]):
                 if nets[pin_in] < CONSTANTS or nets[pin_out] < CONSTANTS:
                     continue
-                place: object = ("clock pin", part, pin_in) if kind.launches[row] else nets[pin_in]
-                tail, head = (place, int(kind.from_edge[row])), (nets[pin_out], int(kind.to_edge[row]))
-                self.sources |= {tail} if kind.launches[row] else set()
-                late, early = (float(np.nan_to_num(kind.delays[row, column])) for column in columns)
-                self.graph.add_edge(tail, head, (part, row), late=late, early=early, minus_late=-late)
+                tail = (("clock pin", part, pin_in) if launches else nets[pin_in], from_edge)
+                self.sources |= {tail} if launches else set()
+                self.graph.add_edge(tail, (nets[pin_out], to_edge), (part, row), **words)
         for port in flat.ports:
             if port.way != Way.OUTPUT:
                 self.sources |= {(port.net, 0), (port.net, 1)}

@@ -16,6 +16,7 @@ from tardigate.analysis.sweep import COLUMNS
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS, Flat
 from tardigate.parts.kind import Origin, Way
+from tardigate.source.arrays import distinct
 
 Key = Literal[
     "inputs_at_zero",  # input port bits taken as changing at 0
@@ -67,4 +68,4 @@ def _minima_at_zero(graph: Graph, grade: Grade) -> tuple[int, int]:
     if not row_lacks.any():
         return 0, 0
     lacking = row_lacks[graph.delay_row]
-    return int(lacking.sum()), len(np.unique(graph.instance[lacking]))
+    return int(lacking.sum()), len(distinct(graph.instance[lacking]))

@@ -19,6 +19,7 @@ from tardigate.analysis.model import Grade, Times, Trail
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import Flat
 from tardigate.parts.kind import Way
+from tardigate.source.arrays import distinct
 from tardigate.source.faults import InternalFaultError
 
 TOLERANCE = 1e-12
@@ -75,7 +76,7 @@ def _steps(flat: Flat, graph: Graph, trails: Sequence[Trail], grade: Grade, late
         raise InternalFaultError("Audit: a hop uses the delay of another kind.")
     pin, edge = np.zeros((2, len(hops)), np.int64), np.zeros((2, len(hops)), np.int64)
     delays, launches = np.zeros(len(hops)), np.zeros(len(hops), np.bool_)
-    for number in np.unique(kind):
+    for number in distinct(kind):
         part, here = flat.kinds[number], np.flatnonzero(kind == number)
         line = graph.row_hop[delay_row[here]]
         pin[:, here] = part.hop_from[line], part.hop_to[line]
@@ -85,7 +86,8 @@ def _steps(flat: Flat, graph: Graph, trails: Sequence[Trail], grade: Grade, late
     pin += flat.pin_start[instance]
     nets = flat.pin_net[pin].astype(np.int64)
     nets[0, launches] = -1 - pin[0, launches]
-    return _Steps((np.cumsum(used) - 1).astype(np.int32), *(2 * nets + edge), delays)
+    begin, end = 2 * nets + edge
+    return _Steps((np.cumsum(used) - 1).astype(np.int32), begin, end, delays)
 
 
 def _figure(triple: list[float], grade: Grade, late: bool) -> float:
@@ -160,7 +162,7 @@ def _at_registers(flat: Flat, nets: list[int]) -> set[int]:
     instance = np.searchsorted(flat.pin_start, pins, "right") - 1
     kind, pin = flat.inst_kind[instance], pins - flat.pin_start[instance]
     found: set[int] = set()
-    for number in np.unique(kind):
+    for number in distinct(kind):
         at_sink = (kind == number) & np.isin(pin, flat.kinds[number].sinks)
         found.update(flat.pin_net[pins[at_sink]].tolist())
     return found

@@ -12,14 +12,15 @@ from numpy.typing import NDArray
 
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS, Flat
+from tardigate.source.arrays import distinct
 
 Ints = NDArray[np.int64]
 
 
 def both_edges(points: Sequence[int] | NDArray[np.integer]) -> Ints:
     """Return the vertices of points, int64[2 * distinct points], ascending."""
-    distinct = np.unique(np.asarray(points, np.int64))
-    return np.stack([2 * distinct, 2 * distinct + 1], axis=1).reshape(-1)
+    once = distinct(np.asarray(points, np.int64))
+    return np.stack([2 * once, 2 * once + 1], axis=1).reshape(-1)
 
 
 def clock_vertices(graph: Graph, instances: Sequence[int]) -> Ints:
@@ -41,5 +42,5 @@ def sink_nets(flat: Flat, instances: Sequence[int]) -> Ints:
     for instance in instances:
         pins = flat.kinds[flat.inst_kind[instance]].sinks
         found.append(flat.pin_net[flat.pin_start[instance] + pins].astype(np.int64))
-    nets = np.unique(np.concatenate(found))
+    nets = distinct(np.concatenate(found))
     return nets[nets >= CONSTANTS]

@@ -20,6 +20,7 @@ from tardigate.analysis.heaps import Node, Sidetrack, insert
 from tardigate.analysis.model import Grade, Times, Trail
 from tardigate.analysis.sweep import early_delays, late_delays, settle
 from tardigate.graph.model import Graph
+from tardigate.source.arrays import distinct
 
 Vertices = NDArray[np.integer]
 Floats = NDArray[np.float64]
@@ -84,12 +85,8 @@ class _Piece(NamedTuple):
     depth: int
 
 
-class _Known(NamedTuple):
-    """A vertex that was looked at: the heap of the sidetracks on its best way, and where that way begins."""
-
-    heap: Node | None
-    piece: _Piece
-    at: int
+_Known = tuple[Node | None, _Piece, int]
+"""What is known of a vertex: the heap of the sidetracks on its best way; the piece and place it begins at."""
 
 
 class _Search:
@@ -174,7 +171,7 @@ class _Search:
             vertex, sidetracks = chain[at]
             if sidetracks:
                 heap = insert(heap, sidetracks)
-            self.known[vertex] = _Known(heap, piece, at)
+            self.known[vertex] = heap, piece, at
         return heap
 
     def _ways(self, vertex: int) -> list[Sidetrack]:
@@ -220,7 +217,7 @@ def _ends(graph: Graph, time: Floats, sinks: Vertices | None, count: int) -> lis
     """Return the vertices of the sinks that a trail reaches, longest first; at least the first `count`."""
     if sinks is None:
         sinks = np.concatenate([2 * graph.sinks, 2 * graph.sinks + 1])
-    ends = np.unique(sinks)
+    ends = distinct(sinks)
     ends = ends[time[ends] > -np.inf]
     if 0 < count < len(ends):
         least = np.partition(time[ends], len(ends) - count)[len(ends) - count]

@@ -15,6 +15,7 @@ from tardigate.graph.levels import IN_LOOP, find_levels
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS, Flat
 from tardigate.parts.kind import Way
+from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
 
 
@@ -91,10 +92,10 @@ def _rows(flat: Flat) -> tuple[NDArray[np.int32], NDArray[np.int32], NDArray[np.
 def _sources(flat: Flat, clock_pins: ClockPins) -> NDArray[np.int32]:
     """Return both edges of each input port bit, then the launching edges of each clock pin, ascending."""
     ports = [port.net for port in flat.ports if port.way != Way.OUTPUT and port.net >= CONSTANTS]
-    nets = np.unique(np.array(ports, np.int64))
+    nets = distinct(np.array(ports, np.int64))
     kind_of = flat.inst_kind[clock_pins.instance]
     edges = np.zeros((len(kind_of), 2), np.bool_)
-    for number in np.unique(kind_of):
+    for number in distinct(kind_of):
         kind = flat.kinds[number]
         launch = np.zeros((len(kind.pins), 2), np.bool_)
         launch[kind.hop_from[kind.launches], kind.from_edge[kind.launches]] = True
@@ -109,5 +110,5 @@ def _sinks(flat: Flat, groups: list[Batch]) -> NDArray[np.int32]:
     ports = [port.net for port in flat.ports if port.way != Way.INPUT]
     found = [np.array(ports, np.int32)]
     found += [batch.nets[batch.kind.sinks].reshape(-1) for batch in groups if len(batch.kind.sinks)]
-    nets = np.unique(np.concatenate(found))
+    nets = distinct(np.concatenate(found))
     return nets[nets >= CONSTANTS].astype(np.int32)

@@ -14,6 +14,7 @@ from numpy.typing import NDArray
 
 from tardigate.netlist.flat import CONSTANTS, Flat
 from tardigate.parts.kind import Kind
+from tardigate.source.arrays import distinct
 
 Ints = NDArray[np.int32]
 
@@ -77,7 +78,7 @@ def find_clock_pins(groups: Sequence[Batch]) -> ClockPins:
     found = [np.empty(0, np.int64)]
     for batch in groups:
         kind = batch.kind
-        for pin in np.unique(kind.hop_from[kind.launches]).tolist():
+        for pin in distinct(kind.hop_from[kind.launches]).tolist():
             heads = kind.hop_to[kind.launches & (kind.hop_from == pin)]
             live = (batch.nets[pin] >= CONSTANTS) & (batch.nets[heads] >= CONSTANTS).any(axis=0)
             found.append(_pack(batch.members[live], pin))

@@ -14,6 +14,7 @@ from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS, Flat
 from tardigate.netlist.names import Names
 from tardigate.parts.units import FEMTOSECONDS
+from tardigate.source.arrays import distinct
 
 if TYPE_CHECKING:
     import networkx
@@ -33,7 +34,7 @@ def to_networkx(flat: Flat, graph: Graph, names: Names) -> networkx.MultiDiGraph
     node = _nodes(flat, graph, names)
     result = networkx.MultiDiGraph()
     result.add_nodes_from((name, {"net": net}) for name, net in node.values())
-    instance_names = {number: names.instance(number) for number in np.unique(graph.instance).tolist()}
+    instance_names = {number: names.instance(number) for number in distinct(graph.instance).tolist()}
     edge_words = [_row_words(flat, graph, row) for row in range(len(graph.delays))]
     columns = graph.tail, graph.head, graph.delay_row, graph.instance
     for tail, head, row, instance in zip(*(column.tolist() for column in columns), strict=True):

@@ -17,6 +17,7 @@ from tardigate.netlist.flat import CONSTANTS, OPEN
 from tardigate.netlist.interface import Interface
 from tardigate.netlist.variables import RANGED, Variables
 from tardigate.parts.kind import Way
+from tardigate.source.arrays import distinct
 from tardigate.syntax import tree
 from tardigate.syntax.numbers import read_number
 from tardigate.syntax.verilog_reader import Unit
@@ -85,7 +86,7 @@ class Bulk:
         if is_gate.any():
             self._gates(statements[is_gate], gate_numbers, blocks, left)
         others = statements[~is_gate]
-        for head in np.unique(heads[~is_gate]).tolist():
+        for head in distinct(heads[~is_gate]).tolist():
             self._parts(others[self.plain.head[others] == head], head, blocks, left)
         return blocks, np.sort(np.concatenate([*left, np.zeros(0, np.int64)]))
 

@@ -5,6 +5,8 @@ Takes numbers, gives hierarchical names (`alu.u3.carry[2]`) and spans, and finds
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 import numpy as np
 
 from tardigate.netlist.flat import CONSTANTS, Flat
@@ -14,14 +16,21 @@ from tardigate.source.span import Span
 CONSTANT_NAMES = ("1'b0", "1'b1", "1'bx", "1'bz")
 
 
+def positions(column: Sequence[str], text: str) -> list[int]:
+    """Return where a column of names has `text`, or bits of it (`bus[3]` for `bus`)."""
+    find = getattr(column, "positions", None)
+    if find is not None:
+        found: list[int] = find(text)
+        return found
+    return [at for at, name in enumerate(column) if name == text or (name.startswith(f"{text}[") and name[-1] == "]")]
+
+
 class Names:
     """The names of one flat design."""
 
     def __init__(self, flat: Flat) -> None:
         self._flat = flat
         self._paths: dict[int, str] = {0: ""}
-        self._scope_of: dict[str, int] | None = None
-        self._net_of_raw: dict[int, int] | None = None
 
     def scope(self, scope: int) -> str:
         """Return the path of a scope with a dot at its end; the top's is empty."""

@@ -14,6 +14,7 @@ from numpy.typing import NDArray
 from tardigate.netlist.template import TemplatePort
 from tardigate.netlist.variables import NO_DIRECTION, RANGED
 from tardigate.parts.kind import Way
+from tardigate.source.arrays import distinct
 from tardigate.syntax import tree
 
 if TYPE_CHECKING:
@@ -53,7 +54,7 @@ class _Header:
         found = self.wiring.variables_of(numbers)
         if (
             (found >= 0).all()
-            and len(found) == len(np.unique(found))
+            and len(found) == len(distinct(found))
             and not (variables.flags[found] & RANGED).any()
             and (variables.way[found] != NO_DIRECTION).all()
         ):

@@ -15,6 +15,7 @@ from numpy.typing import NDArray
 from tardigate.netlist.flat import CONSTANTS, OPEN, Flat, Port
 from tardigate.netlist.template import Template
 from tardigate.parts.kind import Kind
+from tardigate.source.arrays import distinct
 
 MOST_SCOPES = 1 << 22
 MOST_NETS = 1 << 30
@@ -49,7 +50,7 @@ def stamp(templates: Sequence[Template], top: int, kinds: Sequence[Kind]) -> Fla
     pin_start = np.empty(inst_base[-1] + 1, np.int64)
     pin_start[-1] = pin_base[-1]
     pin_net = np.empty(pin_base[-1], np.int32)
-    for at in np.unique(of_scope).tolist():
+    for at in distinct(of_scope).tolist():
         template = templates[at]
         those = np.flatnonzero(of_scope == at)
         if not len(template.kind):
@@ -100,7 +101,7 @@ def _joined_nets(
     constants = np.arange(CONSTANTS)
     pairs: list[tuple[int, int]] = []
     port_nets = [np.array([n for port in t.ports for n in port.nets], np.int64) for t in templates]
-    doubled = [len(np.unique(nets)) < len(nets) for nets in port_nets]
+    doubled = [len(distinct(nets)) < len(nets) for nets in port_nets]
     for scope, (template, parent) in enumerate(zip(scopes.template, scopes.parent, strict=True)):
         base = net_base[scope]
         owner[base : base + CONSTANTS] = constants
@@ -150,7 +151,7 @@ def _marked(
         for at, template in enumerate(templates)
         if len(getattr(template, kind))
     ]
-    return np.unique(np.concatenate([*found, np.zeros(0, np.int32)])).astype(np.int32)
+    return distinct(np.concatenate([*found, np.zeros(0, np.int32)])).astype(np.int32)
 
 
 def _ports(top: Template, number: NDArray[np.int32]) -> tuple[Port, ...]:

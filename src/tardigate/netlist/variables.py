@@ -118,6 +118,29 @@ class NetNames(Sequence[str]):
         return f"{name}[{lsb + step * (index - int(variables.base[at]))}]"
 
 
+    def positions(self, text: str) -> list[int]:
+        """Return the local nets that are called `text`, or are bits of the vector that is."""
+        variables = self._variables
+        found = self._bits_of(text, None)
+        name, bracket, index = text.rpartition("[")
+        if bracket and index[:-1].lstrip("-").isdigit() and index[-1] == "]":
+            found += self._bits_of(name, int(index[:-1]))
+        if text.startswith("assign:"):
+            found += [at for at in range(self._first_result, variables.nets) if self[at] == text]
+        return found
+
+    def _bits_of(self, name: str, index: int | None) -> list[int]:
+        variables = self._variables
+        found: list[int] = []
+        for at in np.flatnonzero(variables.name == variables.names.find(name)).tolist():
+            bits = variables.bits(at)
+            if index is None:
+                found += bits
+            elif variables.flags[at] & RANGED:
+                found += [bit for bit in bits if self[bit].endswith(f"[{index}]")]
+        return found
+
+
 class InstanceNames(Sequence[str]):
     """The names of a module's part instances, made when asked for.
 
@@ -141,3 +164,11 @@ class InstanceNames(Sequence[str]):
         if number == -1:
             return ""
         return self._names.text(number) if number >= 0 else self._others[-2 - number]
+
+    def positions(self, text: str) -> list[int]:
+        """Return the instances that are called `text`, or are in the array that is."""
+        numbers = [-2 - at for at, name in enumerate(self._others) if name == text or name.startswith(f"{text}[")]
+        named = self._names.find(text)
+        wanted = [*numbers, named] if named >= 0 else numbers
+        found: list[int] = np.flatnonzero(np.isin(self._numbers, wanted)).tolist() if wanted else []
+        return found

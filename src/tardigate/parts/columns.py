@@ -7,7 +7,6 @@ delays, a wrong order and a wrong number of columns. Does not know what the row 
 from __future__ import annotations
 
 from collections.abc import Mapping
-from fractions import Fraction
 from functools import lru_cache
 
 from tardigate.parts.desk import Desk
@@ -19,7 +18,7 @@ from tardigate.syntax.parts_tree import Cell, Quantity, Word
 NAN = float("nan")
 ORDER = ("min", "typ", "max")
 
-Units = Mapping[str, int | Fraction]
+Units = Mapping[str, int]
 
 
 def unit_known(desk: Desk, unit: Word, units: Units, what: str) -> bool:

@@ -29,13 +29,13 @@ class Way(IntEnum):
 
 
 class Origin(IntEnum):
-    """Where a kind's delays come from, in the order in which one beats the other (design: which delay wins)."""
+    """Where a kind's delays come from, in the order in which one beats the other."""
 
-    SOURCE = 0      # a delay written in the Verilog source
-    PARTS = 1       # an entry of a parts file for just this
-    DEFAULT = 2     # a family default of a parts file
-    WIRE = 3        # nothing to delay: an assignment without operator, taken as a wire
-    MISSING = 4     # nowhere: the design is refused
+    SOURCE = 0  # a delay written in the Verilog source
+    PARTS = 1  # an entry of a parts file for just this
+    DEFAULT = 2  # a family default of a parts file
+    WIRE = 3  # nothing to delay: an assignment without operator, taken as a wire
+    MISSING = 4  # nowhere: the design is refused
 
 
 @dataclass(frozen=True, slots=True)

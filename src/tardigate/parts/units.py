@@ -8,9 +8,8 @@ exact up to 2**53 fs (9 s): results depend neither on the unit written nor on th
 from __future__ import annotations
 
 from collections.abc import Mapping
-from fractions import Fraction
 
-FEMTOSECONDS: Mapping[str, int | Fraction] = {
+FEMTOSECONDS: Mapping[str, int] = {
     "s": 10**15,
     "ms": 10**12,
     "us": 10**9,
@@ -20,19 +19,19 @@ FEMTOSECONDS: Mapping[str, int | Fraction] = {
 }
 """Units of time in femtoseconds (SI prefixes)."""
 
-FEMTOFARADS: Mapping[str, int | Fraction] = {"uF": 10**9, "nF": 10**6, "pF": 10**3, "fF": 1}
+FEMTOFARADS: Mapping[str, int] = {"uF": 10**9, "nF": 10**6, "pF": 10**3, "fF": 1}
 """Units of capacitance in femtofarads."""
 
-MICROMETRES: Mapping[str, int | Fraction] = {"m": 10**6, "cm": 10**4, "mm": 10**3, "um": 1}
+MICROMETRES: Mapping[str, int] = {"m": 10**6, "cm": 10**4, "mm": 10**3, "um": 1}
 """Units of length in micrometres."""
 
-VOLTS: Mapping[str, int | Fraction] = {"kV": 1000, "V": 1, "mV": Fraction(1, 1000)}
-"""Units of voltage in volts."""
+VOLTS: Mapping[str, int] = {"kV": 10**6, "V": 1000, "mV": 1}
+"""Units of voltage in millivolts."""
 
-CELSIUS: Mapping[str, int | Fraction] = {"C": 1}
+CELSIUS: Mapping[str, int] = {"C": 1}
 """Temperature has one unit: degrees Celsius."""
 
-UNITS: Mapping[str, Mapping[str, int | Fraction]] = {
+UNITS: Mapping[str, Mapping[str, int]] = {
     unit: table for table in (FEMTOSECONDS, FEMTOFARADS, MICROMETRES, VOLTS, CELSIUS) for unit in table
 }
 """Every unit and the table that it stands in."""
@@ -53,7 +52,7 @@ def time_in_fs(number: str, unit: str) -> float:
     return value
 
 
-def amount(number: str, unit: str, units: Mapping[str, int | Fraction]) -> float:
+def amount(number: str, unit: str, units: Mapping[str, int]) -> float:
     """Return `number` `unit` in the unit that `units` counts in, correctly rounded.
 
     Raises KeyError for an unknown unit, ValueError for what is no decimal number, OverflowError for a number
@@ -64,4 +63,8 @@ def amount(number: str, unit: str, units: Mapping[str, int | Fraction]) -> float
     mantissa, _, exponent = number.lower().partition("e")
     if exponent and abs(int(exponent)) > 60:
         raise OverflowError(number)
-    return float(Fraction(mantissa + (f"e{exponent}" if exponent else "")) * units[unit])
+    whole, _, part = mantissa.partition(".")
+    power = int(exponent or "0") - len(part)
+    value = int(whole + part) * units[unit] * 10 ** max(0, power)
+    quotient: float = value / 10 ** max(0, -power)  # of integers: correctly rounded
+    return quotient

@@ -7,7 +7,7 @@ several bits (`bus`) means all of them. Refuses a name that nothing has (U104).
 from __future__ import annotations
 
 import re
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterator, Sequence
 from itertools import islice
 
 import numpy as np
@@ -15,8 +15,9 @@ import numpy as np
 from tardigate.analysis.select import Ints, both_edges, clock_vertices, sink_nets
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS, Flat
-from tardigate.netlist.names import Names
+from tardigate.netlist.names import Names, positions
 from tardigate.parts.kind import Way
+from tardigate.source.arrays import distinct
 from tardigate.source.diagnostic import Diagnostic, did_you_mean
 from tardigate.source.faults import InputRefusedError
 
@@ -67,7 +68,7 @@ class Picker:
             found += of_name
         if faults:
             raise InputRefusedError(tuple(faults))
-        vertices = np.unique(np.concatenate(found))
+        vertices = distinct(np.concatenate(found))
         return vertices[vertices >= 2 * CONSTANTS]
 
     def _of_ports(self, name: str) -> list[Ints]:
@@ -86,8 +87,8 @@ class Picker:
         flat, fits = self._flat, _fits(name)
         for scope, path in self._scopes(name):
             template = flat.templates[flat.scope_template[scope]]
-            for local, net_name in enumerate(template.net_names):
-                if local >= CONSTANTS and fits(path + net_name):
+            for local in _those(template.net_names, path, name, fits):
+                if local >= CONSTANTS:
                     yield from self._stamped(scope, local)
 
     def _stamped(self, scope: int, local: int) -> list[int]:
@@ -122,15 +123,21 @@ class Picker:
         for scope, path in self._scopes(name):
             template = flat.templates[flat.scope_template[scope]]
             first = int(flat.scope_inst[scope])
-            for local, inst_name in enumerate(template.inst_names):
-                full = path + inst_name if inst_name else self._unnamed(first + local, name)
+            for local in _those(template.inst_names, path, name, fits):
+                yield first + local, None
+            if pin_name and (whole.startswith(path) or "*" in name):
+                for local in _those(template.inst_names, path, whole, owner_fits):
+                    yield from self._pins_of(first + local, pin_name)
+            for local in self._unnamed(scope) if ":" in name else ():
+                full = self._names.instance(first + local)
                 if fits(full):
                     yield first + local, None
                 elif pin_name and owner_fits(full):
                     yield from self._pins_of(first + local, pin_name)
 
-    def _unnamed(self, instance: int, name: str) -> str:
-        return self._names.instance(instance) if ":" in name else ""
+    def _unnamed(self, scope: int) -> list[int]:
+        names = self._flat.templates[self._flat.scope_template[scope]].inst_names
+        return [local for local, name in enumerate(names) if not name]
 
     def _pins_of(self, instance: int, pin_name: str) -> Iterator[tuple[int, int]]:
         fits = _fits(pin_name)
@@ -175,6 +182,13 @@ class Picker:
             template = self._flat.templates[self._flat.scope_template[scope]]
             yield from (path + below for below in template.inst_names if below)
             yield from (path + below for below in template.net_names)
+
+
+def _those(column: Sequence[str], path: str, name: str, fits: Fits) -> list[int]:
+    """Return where a scope's column of names has a name; only one with `*` is tried against each."""
+    if "*" not in name:
+        return positions(column, name[len(path) :]) if name.startswith(path) else []
+    return [at for at, below in enumerate(column) if below and fits(path + below)]
 
 
 def _fits(name: str) -> Fits:

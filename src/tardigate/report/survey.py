@@ -12,6 +12,7 @@ from tardigate.netlist.flat import CONSTANTS, Flat
 from tardigate.netlist.names import Names
 from tardigate.parts.kind import Kind, Origin, Way
 from tardigate.report.model import ClockRecord, KindRecord, ScopeRecord
+from tardigate.source.arrays import distinct
 
 ORIGINS = {
     Origin.SOURCE: "source",
@@ -64,7 +65,7 @@ def clock_records(flat: Flat, names: Names) -> tuple[int, tuple[ClockRecord, ...
 
 
 def _clock_pins(kind: Kind) -> list[int]:
-    pins: list[int] = np.unique(kind.hop_from[kind.launches]).tolist()
+    pins: list[int] = distinct(kind.hop_from[kind.launches]).tolist()
     return pins
 
 

@@ -50,7 +50,7 @@ def comment_end(data: bytes, start: int) -> int:
 
 
 def blank_line_comments(data: bytes, start: int) -> bytes:
-    """Return the text from a line comment to the last one that only a little plain text parts from it, blanked.
+    """Return the text from a line comment to the last one that little plain text parts from it, blanked.
 
     Files with a comment at each gate are then no slower to pass than others.
     """

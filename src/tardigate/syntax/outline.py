@@ -11,6 +11,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
 from tardigate.source.placed import PlacedText
 from tardigate.syntax.plain import NAME
@@ -112,4 +113,4 @@ def used_names(scan: Scan, marks: NDArray[np.uint8], module: ModuleText) -> list
     byte = np.frombuffer(scan.data, np.uint8)[scan.at[module.first : module.stop]]
     first = here[((following == NAME) | (byte[here + 1] == 0x23)) & (byte[here - 1] != 0x23)]
     words = scan.word[scan.word_of[module.first + first]]
-    return [scan.names.text(int(name)) for name in np.unique(words)]
+    return [scan.names.text(int(name)) for name in distinct(words)]

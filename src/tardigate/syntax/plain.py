@@ -11,6 +11,7 @@ grammar accepts; a statement that is not exactly of that shape is left to the gr
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cache
 
 import numpy as np
 from numpy.typing import NDArray
@@ -128,6 +129,7 @@ def _shift(marks: NDArray[np.uint8], by: int) -> NDArray[np.uint8]:
 _KINDS = 22
 
 
+@cache
 def _allowed() -> NDArray[np.bool_]:
     """Build the table of what may follow what: [depth + 1, mark before the last, last mark, mark]."""
     table = np.zeros((5, _KINDS, _KINDS, _KINDS), bool)
@@ -158,18 +160,13 @@ def _allowed() -> NDArray[np.bool_]:
     return table.reshape(-1)
 
 
-_ALLOWED: list[NDArray[np.bool_]] = []
-
-
 def _fits(marks: NDArray[np.uint8], depth: NDArray[np.int8]) -> NDArray[np.bool_]:
     """Tell for each mark whether it may stand after the two before it, at its depth."""
-    if not _ALLOWED:
-        _ALLOWED.append(_allowed())
     key = (depth + np.int8(1)).astype(np.int32)
     for by in (2, 1, 0):
         key *= _KINDS
         key += _shift(marks, by) if by else marks
-    fits: NDArray[np.bool_] = _ALLOWED[0][key]
+    fits: NDArray[np.bool_] = _allowed()[key]
     return fits
 
 
