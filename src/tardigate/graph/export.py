@@ -8,8 +8,6 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
-import numpy as np
-
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS, Flat
 from tardigate.netlist.names import Names

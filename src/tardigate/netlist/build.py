@@ -129,7 +129,7 @@ class _Shop:
         key = (name, tuple(values.items()))
         if key not in self._numbers:
             if len(self._work) >= MOST_TEMPLATES:
-                self.collector.tell("N125", self.modules.span(name), most=MOST_TEMPLATES)
+                self.collector.tell("N125", self.modules.span(name), name=name, most=MOST_TEMPLATES)
                 self.collector.refuse()
             self._numbers[key] = len(self._work)
             self._work.append((name, values))

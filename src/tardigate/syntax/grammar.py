@@ -1,7 +1,7 @@
 """The only file that opens a grammar.
 
-Takes a language's name and a transformer, gives its parser: LALR, one lexer for the whole text, the
-transformer called as each rule is reduced, so that no tree is walked. Does not know any language.
+Takes a language's name and a maker, gives its reader: LALR, one lexer for the whole text, the maker called as
+each rule is reduced, so that no tree is walked. Does not know any language.
 """
 
 from __future__ import annotations
@@ -18,7 +18,7 @@ if TYPE_CHECKING:
     from lark import Lark
 
 FORM = 1
-"""Raised whenever `_to_tables` writes something else for the same grammar."""
+"""Raised whenever `grammar_tables` writes something else for the same grammar."""
 
 
 class Reader:
@@ -76,25 +76,6 @@ class Reader:
         raise InternalFaultError("lark accepts a text that the tables made from its parser do not")
 
 
-def parser(name: str, transformer: Any) -> Lark:
-    """Return the parser of `name`.lark; its `parse` gives what `transformer` makes of the rule `start`.
-
-    Building the tables takes some hundred ms: they are kept between runs (`grammar_cache`).
-    """
-    text = _package_file("tardigate.grammars", f"{name}.lark")
-    key = _key(text)
-    kept = grammar_cache.fetch(name, key)
-    if kept is not None:
-        loaded = _from_tables(kept, transformer)
-        if loaded is not None:
-            return loaded
-    from lark import Lark
-
-    built = Lark(text, parser="lalr", lexer="basic", maybe_placeholders=True, transformer=transformer)
-    grammar_cache.keep(name, key, _to_tables(built))
-    return built
-
-
 def _key(text: str) -> str:
     """Return what the tables of a grammar depend on; lark's version stands in its first module."""
     return "\n".join((str(FORM), sys.version, _package_file("lark", "__init__.py"), text))
@@ -108,33 +89,3 @@ def _package_file(package: str, name: str) -> str:
         data: bytes = spec.loader.get_data(os.path.join(place, name))  # type: ignore[union-attr]
         return data.decode("utf-8")
     raise InternalFaultError(f"the package {package} is not installed")
-
-
-def _to_tables(built: Lark) -> Any:
-    """Return the parser as plain data (lark's own serial form), without what belongs to this run."""
-    from lark.grammar import Rule
-    from lark.lark import _LOAD_ALLOWED_OPTIONS
-    from lark.lexer import TerminalDef
-
-    data, memo = built.memo_serialize([TerminalDef, Rule])
-    options = {key: value for key, value in data["options"].items() if key not in _LOAD_ALLOWED_OPTIONS}
-    return [{**data, "options": options}, memo]
-
-
-def _from_tables(tables: Any, transformer: Any) -> Lark | None:
-    """Return the parser that was kept, or None when the tables are damaged."""
-    from lark import Lark
-
-    try:
-        data, memo = tables
-        table = data["parser"]["parser"]
-        table["tokens"] = {int(number): name for number, name in table["tokens"].items()}
-        table["states"] = {
-            int(state): {int(token): action for token, action in row.items()}
-            for state, row in table["states"].items()
-        }
-        numbered = {int(number): entry for number, entry in memo.items()}
-        loaded: Lark = Lark._load_from_dict(data, numbered, transformer=transformer)  # type: ignore[no-untyped-call]
-    except (KeyError, ValueError, TypeError, AttributeError, AssertionError, IndexError):
-        return None
-    return loaded

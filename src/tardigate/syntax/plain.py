@@ -17,7 +17,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tardigate.syntax import words
-from tardigate.syntax.scan import CLOSE, COMMA, DOT, LEFT, OPEN, OTHER, RIGHT, SEMICOLON, WORD, Scan
+from tardigate.syntax.scan import CLOSE, COMMA, DOT, LEFT, OPEN, RIGHT, SEMICOLON, WORD, Scan
 
 NAME, GATE, DECLARATION, NUMBER, CONSTANT, STRANGE = range(16, 22)
 """What a word is: an identifier, a gate primitive, `input` and its like, a decimal number, a constant of one

@@ -1,22 +1,22 @@
-"""One module's text through the grammar, with lark. Imported only when something is parsed."""
+"""One module's text through the grammar; lark only says what is wrong with one that is refused.
+
+Takes a text and what its marks stand for, gives a tree. Does not look any name up.
+"""
 
 from __future__ import annotations
 
 from functools import cache
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, cast
 
 from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.placed import PlacedText
-from tardigate.syntax.grammar import parser
-from tardigate.syntax.lark_errors import explain
+from tardigate.syntax.grammar import Reader
 from tardigate.syntax.numbers import BadNumberError
 from tardigate.syntax.tree import Module, PlainPorts, Run
 from tardigate.syntax.verilog_tree_maker import TreeMaker
 
 if TYPE_CHECKING:
-    from lark import Lark
-
     from tardigate.syntax.verilog_reader import Cuts
 
 FRIENDLY = {
@@ -29,9 +29,9 @@ FRIENDLY = {
 
 
 @cache
-def _parser() -> tuple[Lark, TreeMaker]:
+def _reader() -> tuple[Reader, TreeMaker]:
     maker = TreeMaker()
-    return parser("verilog", maker), maker
+    return Reader("verilog", maker), maker
 
 
 def parse(
@@ -41,13 +41,15 @@ def parse(
 
     Raises InputRefusedError: V001 for what the grammar does not accept, V009 for a number that is none.
     """
-    lark, maker = _parser()
+    reader, maker = _reader()
     maker.begin(cuts.where, runs, ports)
     try:
-        return lark.parse(text)  # type: ignore[return-value]
+        return cast(Module, reader.read(text))
     except BadNumberError as error:
         span = placed.span(error.at, error.at + len(error.text))
         diagnostic = Diagnostic.of("V009", span, number=error.text, reason=error.reason)
     except Exception as error:  # explain raises again what is not about the text
-        diagnostic = explain(error, lark, placed, "V001", cuts.where, FRIENDLY)
+        from tardigate.syntax.lark_errors import explain
+
+        diagnostic = explain(error, reader.lark, placed, "V001", cuts.where, FRIENDLY)
     raise InputRefusedError((diagnostic,))

@@ -8,9 +8,8 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import Any, NamedTuple
 
-from lark import Token, Transformer
-
 from tardigate.syntax import tree
+from tardigate.syntax.lalr import Token
 from tardigate.syntax.numbers import read_number
 from tardigate.syntax.precedence import resolve
 
@@ -25,7 +24,7 @@ def _of(children: list[Any], kind: type | tuple[type, ...]) -> Any:
     return next((child for child in children if isinstance(child, kind)), None)
 
 
-class TreeMaker(Transformer[Token, tree.Module]):
+class TreeMaker:
     """The callbacks. `begin` sets what one parse needs: the map of offsets and the plain stretches by offset."""
 
     def begin(
