@@ -27,6 +27,9 @@ from tardigate.syntax.verilog_reader import Unit
 WIDEST = 1 << 20
 """Bits of the widest vector that is accepted."""
 
+MOST_BITS = 1 << 25
+"""Bits of all nets of one module."""
+
 WAYS = {"input": Way.INPUT, "output": Way.OUTPUT, "inout": Way.INOUT}
 _WIRED = ("tri", "wand", "wor", "triand", "trior", "tri0", "tri1")
 _DRIVEN = ("supply0", "supply1", "tri0", "tri1")
@@ -163,8 +166,8 @@ class Declarer:
         msb, lsb = numbers[head, 0].astype(np.int32), numbers[head, 1].astype(np.int32)
         width = np.abs(msb - lsb) + 1
         ends = np.cumsum(width, dtype=np.int64)
-        if len(ends) and ends[-1] >= 1 << 30:
-            self.collector.tell("N121", self.text.span(int(places[0])), most=WIDEST)
+        if len(ends) and ends[-1] > MOST_BITS:
+            self.collector.tell("N124", self.text.span(int(places[0])))
             self.collector.refuse()
         base = (CONSTANTS + ends - width).astype(np.int32)
         return Variables(

@@ -6,6 +6,7 @@ offsets. Nets that are joined through ports become one. Iterative.
 
 from __future__ import annotations
 
+from collections import Counter
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 
@@ -18,7 +19,8 @@ from tardigate.parts.kind import Kind
 from tardigate.source.arrays import distinct
 
 MOST_SCOPES = 1 << 22
-MOST_NETS = 1 << 30
+MOST_NETS = 1 << 25
+"""Nets, and pins, of the flat design before joining; some 30 bytes each."""
 
 
 class TooLargeError(Exception):
@@ -37,14 +39,13 @@ class _Scopes:
 
 def stamp(templates: Sequence[Template], top: int, kinds: Sequence[Kind]) -> Flat:
     """Make the flat design. Raises TooLargeError."""
+    _check_size(templates, top)
     scopes = _scopes(templates, top)
     of_scope = np.array(scopes.template, np.int32)
     sizes = np.array([t.nets for t in templates], np.int64)[of_scope]
     counts = np.array([len(t.kind) for t in templates], np.int64)[of_scope]
     pins = np.array([len(t.pin_net) for t in templates], np.int64)[of_scope]
     net_base, inst_base, pin_base = (np.concatenate(([0], np.cumsum(c))) for c in (sizes, counts, pins))
-    if net_base[-1] > MOST_NETS or pin_base[-1] > MOST_NETS:
-        raise TooLargeError
     number, net_raw = _joined_nets(templates, scopes, net_base)
     inst_kind = np.empty(inst_base[-1], np.int32)
     pin_start = np.empty(inst_base[-1] + 1, np.int64)
@@ -69,6 +70,26 @@ def stamp(templates: Sequence[Template], top: int, kinds: Sequence[Kind]) -> Fla
     )  # fmt: skip
 
 
+def _check_size(templates: Sequence[Template], top: int) -> None:
+    """Count the flat design's scopes, nets and pins, each template once. Raises TooLargeError."""
+    total: dict[int, tuple[int, ...]] = {}
+    stack = [(top, False)]
+    while stack:
+        at, ready = stack.pop()
+        template = templates[at]
+        below = Counter(child.template for child in template.children)
+        if ready:
+            rows: list[tuple[int, ...]] = [(1, template.nets, len(template.pin_net))]
+            rows += [tuple(number * times for number in total[child]) for child, times in below.items()]
+            sums = tuple(map(sum, zip(*rows, strict=True)))
+            if sums[0] > MOST_SCOPES or max(sums[1:]) > MOST_NETS:
+                raise TooLargeError
+            total[at] = sums
+        elif at not in total:
+            stack.append((at, True))
+            stack += [(child, False) for child in below if child not in total]
+
+
 def _scopes(templates: Sequence[Template], top: int) -> _Scopes:
     """Return the scopes, parents before children, a scope's descendants right after it."""
     scopes = _Scopes()
@@ -76,16 +97,12 @@ def _scopes(templates: Sequence[Template], top: int) -> _Scopes:
     while stack:
         template, parent, child, name = stack.pop()
         number = len(scopes.template)
-        if number >= MOST_SCOPES:
-            raise TooLargeError
         scopes.template.append(template)
         scopes.parent.append(parent)
         scopes.child.append(child)
         scopes.name.append(name)
         below = templates[template].children
         stack += [(c.template, number, i, c.name) for i, c in zip(range(len(below) - 1, -1, -1), below[::-1], strict=True)]
-        if len(stack) > MOST_SCOPES:
-            raise TooLargeError
     return scopes
 
 

@@ -48,6 +48,8 @@ class _Compiler:
                 operands = done[len(done) - len(node.args) :]
                 del done[len(done) - len(node.args) :]
                 done.append(self.join(node, operands))
+            elif node.form == "read_bit" and node.args[0].form == "number" and node.args[0].word.text.isdigit():
+                done.append(self.leaf(Expr("read", node.word, (), Range(node.args[0].word, None))))
             elif node.args:
                 todo.append((node, True))
                 todo += [(arg, False) for arg in reversed(node.args)]

@@ -114,28 +114,26 @@ class Records:
         if beyond >= 0:
             instance = int(self._graph.clock_pin_instance[beyond])
             return EndRecord(self._pin(instance, int(self._graph.clock_pin_pin[beyond])), edge, "clock pin")
-        if point in self._port_names[Way.INPUT]:
-            return EndRecord(self._port_names[Way.INPUT][point], edge, "input port")
+        port = self._port(point, Way.INPUT)
+        if port is not None:
+            return EndRecord(port, edge, "input port")
         return EndRecord(self._names.net(point), edge, "net")
 
     def _sink(self, vertex: int) -> EndRecord:
         net, edge = vertex // 2, Edge(vertex % 2)
-        if net in self._port_names[Way.OUTPUT]:
-            return EndRecord(self._port_names[Way.OUTPUT][net], edge, "output port")
+        port = self._port(net, Way.OUTPUT)
+        if port is not None:
+            return EndRecord(port, edge, "output port")
         instances, pins, nets = self._register_sinks
         found = np.flatnonzero(nets == net)
         if len(found):
             return EndRecord(self._pin(int(instances[found[0]]), int(pins[found[0]])), edge, "register pin")
         return EndRecord(self._names.net(net), edge, "net")
 
-    @cached_property
-    def _port_names(self) -> dict[Way, dict[int, str]]:
-        names: dict[Way, dict[int, str]] = {Way.INPUT: {}, Way.OUTPUT: {}}
-        for port in reversed(self._flat.ports):
-            for way in names:
-                if port.way in (way, Way.INOUT):
-                    names[way][port.net] = port.name
-        return names
+    def _port(self, net: int, way: Way) -> str | None:
+        """Return the first port bit of a way that is on a net."""
+        ways = (way, Way.INOUT)
+        return next((port.name for port in self._flat.ports if port.net == net and port.way in ways), None)
 
     @cached_property
     def _register_sinks(self) -> tuple[NDArray[np.int64], NDArray[np.int64], NDArray[np.int64]]:

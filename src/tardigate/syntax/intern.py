@@ -13,8 +13,10 @@ from numpy.typing import NDArray
 
 _MULTIPLIER = np.uint64(0x9E3779B97F4A7C15)
 _FINISHER = np.uint64(0xD6E8FEB86659FD93)
+_LONG = np.uint64(1 << 63)
 _SHIFT = np.uint64(29)
 _HALF = np.uint64(32)
+_WORDS = 1 << 15
 _MASKS = np.array([0] + [(1 << 8 * i) - 1 for i in range(1, 9)], dtype=np.uint64)
 
 
@@ -63,11 +65,24 @@ class Interned:
 
 
 def _keys(data: bytes, start: NDArray[np.integer], stop: NDArray[np.integer]) -> NDArray[np.uint64]:
-    """Return a 64-bit key of each word, made of the word's 8-byte pieces; `data` is padded."""
+    """Return a 64-bit key of each word, made of the word's 8-byte pieces; `data` is padded.
+
+    Up to 8 bytes the key is the word itself, mixed by bijections. Longer words have the highest bit set
+    before the mixing; shorter ones, being ASCII, have not.
+    """
+    keys = np.empty(len(start), np.uint64)
+    for first in range(0, len(start), _WORDS):  # so many stay in the processor's cache
+        these = slice(first, first + _WORDS)
+        keys[these] = _keys_of_some(data, start[these], stop[these] - start[these])
+    return keys
+
+
+def _keys_of_some(
+    data: bytes, start: NDArray[np.integer], length: NDArray[np.integer]
+) -> NDArray[np.uint64]:
     pieces = np.ndarray((len(data) - 7,), dtype="<u8", buffer=data, strides=(1,))
-    length = stop - start
     keys: NDArray[np.uint64] = pieces[start] & _MASKS[np.minimum(length, 8)]
-    rest = np.flatnonzero(length > 8)
+    rest = long = np.flatnonzero(length > 8)
     offset = 8
     with np.errstate(over="ignore"):
         while rest.size:
@@ -75,6 +90,7 @@ def _keys(data: bytes, start: NDArray[np.integer], stop: NDArray[np.integer]) ->
             keys[rest] = (keys[rest] * _MULTIPLIER + (keys[rest] >> _SHIFT)) ^ piece
             offset += 8
             rest = rest[length[rest] > offset]
+        keys[long] |= _LONG
         keys *= _MULTIPLIER
         keys ^= keys >> _HALF
         keys *= _FINISHER
@@ -95,7 +111,7 @@ def intern(data: bytes, start: NDArray[np.int32], stop: NDArray[np.int32]) -> In
     order, first, ids = _group(keys)
     heads = order[first]
     name_start, name_stop = start[heads], stop[heads]
-    odd = _differing(data, start, stop, name_start[ids], name_stop[ids])
+    odd = _differing(data, start, stop, name_start, name_stop, ids)
     spill: dict[bytes, int] = {}
     for word in odd:
         text = data[start[word] : stop[word]]
@@ -141,21 +157,26 @@ def _differing(
     data: bytes,
     start: NDArray[np.int32],
     stop: NDArray[np.int32],
-    other_start: NDArray[np.int32],
-    other_stop: NDArray[np.int32],
+    name_start: NDArray[np.int32],
+    name_stop: NDArray[np.int32],
+    ids: NDArray[np.int32],
 ) -> NDArray[np.int64]:
-    """Return the numbers of the words that differ from the words they are compared with."""
+    """Return the numbers of the words that differ from the first word of their key.
+
+    Only words longer than 8 bytes can (see `_keys`).
+    """
     pieces = np.ndarray((len(data) - 7,), dtype="<u8", buffer=data, strides=(1,))
-    length = stop - start
-    differs = length != other_stop - other_start
-    rest = np.flatnonzero(length > 8)
+    words = np.flatnonzero(stop - start > 8)
+    one, other = start[words], name_start[ids[words]]
+    length = stop[words] - one
+    differs = length != name_stop[ids[words]] - other
+    differs |= pieces[one] != pieces[other]
+    rest = np.arange(len(words))
     offset = 8
-    # Up to 8 bytes the key is the word itself, mixed by bijections: equal keys are equal words.
-    head = pieces[start[rest]] != pieces[other_start[rest]]
-    differs[rest] |= head
     while rest.size:
         mask = _MASKS[np.minimum(length[rest] - offset, 8)]
-        differs[rest] |= ((pieces[start[rest] + offset] ^ pieces[other_start[rest] + offset]) & mask) != 0
+        differs[rest] |= ((pieces[one[rest] + offset] ^ pieces[other[rest] + offset]) & mask) != 0
         offset += 8
         rest = rest[length[rest] > offset]
-    return np.flatnonzero(differs)
+    found: NDArray[np.int64] = words[differs]
+    return found

@@ -112,12 +112,15 @@ def find_plain(scan: Scan, marks: NDArray[np.uint8]) -> Plain:
 
 def _depth(marks: NDArray[np.uint8], first: NDArray[np.int64], stop: NDArray[np.int64]) -> NDArray[np.int8]:
     """Return how deep in parentheses each mark stands within its statement (before it; at most 3)."""
-    opens = np.cumsum((marks == OPEN).view(np.int8) - (marks == CLOSE).view(np.int8), dtype=np.int32)
-    before = np.concatenate(([0], opens[:-1]))
-    depth = np.zeros(len(marks), np.int32)
-    last = int(stop[-1])
-    depth[:last] = before[:last] - np.repeat(before[first], stop - first)
-    return np.clip(depth, -1, 3).astype(np.int8)
+    # Counting modulo 256 does no harm: what is deeper than 3 in between is not plain anyway.
+    step = (marks == OPEN).view(np.int8) - (marks == CLOSE).view(np.int8)
+    depth = np.zeros(len(marks), np.int8)
+    np.cumsum(step[:-1], dtype=np.int8, out=depth[1:])
+    base = depth[first]
+    if base.any():
+        last = int(stop[-1])
+        depth[:last] -= np.repeat(base, stop - first)
+    return np.clip(depth, -1, 3, out=depth)
 
 
 def _shift(marks: NDArray[np.uint8], by: int) -> NDArray[np.uint8]:
@@ -127,6 +130,7 @@ def _shift(marks: NDArray[np.uint8], by: int) -> NDArray[np.uint8]:
 
 
 _KINDS = 22
+_PIECE = 1 << 16
 
 
 @cache
@@ -162,11 +166,16 @@ def _allowed() -> NDArray[np.bool_]:
 
 def _fits(marks: NDArray[np.uint8], depth: NDArray[np.int8]) -> NDArray[np.bool_]:
     """Tell for each mark whether it may stand after the two before it, at its depth."""
-    key = (depth + np.int8(1)).astype(np.int32)
-    for by in (2, 1, 0):
-        key *= _KINDS
-        key += _shift(marks, by) if by else marks
-    fits: NDArray[np.bool_] = _allowed()[key]
+    fits = np.empty(len(marks), np.bool_)
+    allowed = _allowed()
+    one, two = _shift(marks, 1), _shift(marks, 2)
+    for first in range(0, len(marks), _PIECE):
+        these = slice(first, first + _PIECE)
+        key = (depth[these] + np.int8(1)).astype(np.int32)
+        for column in (two, one, marks):
+            key *= _KINDS
+            key += column[these]
+        np.take(allowed, key, out=fits[these])
     return fits
 
 
@@ -174,11 +183,14 @@ def _whole(
     marks: NDArray[np.uint8], first: NDArray[np.int64], stop: NDArray[np.int64], depth: NDArray[np.int8]
 ) -> NDArray[np.bool_]:
     """Tell which statements are by name throughout or by order throughout, and closed."""
-    dots = np.concatenate(([0], np.cumsum(marks == DOT, dtype=np.int32)))
-    commas = np.concatenate(([0], np.cumsum((marks == COMMA) & (depth == 1), dtype=np.int32)))
-    count = dots[stop] - dots[first]
-    whole = (count == 0) | (count == commas[stop] - commas[first] + 1)
-    whole &= depth[stop - 1] == 0
+    whole = depth[stop - 1] == 0
+    count = np.zeros(len(first), np.int32)
+    by_name = marks == DOT
+    if by_name.any():
+        dots = np.concatenate(([0], np.cumsum(by_name, dtype=np.int32)))
+        commas = np.concatenate(([0], np.cumsum((marks == COMMA) & (depth == 1), dtype=np.int32)))
+        count = dots[stop] - dots[first]
+        whole &= (count == 0) | (count == commas[stop] - commas[first] + 1)
     # A module instance has a name; only a gate may go without (clause 7.1, 12.1.2).
     second = marks[np.minimum(first + 1, len(marks) - 1)]
     whole &= (marks[first] != NAME) | (second == NAME)
