@@ -5,7 +5,7 @@ Takes a request, gives the loaded design; from that the graph, times, trails and
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -33,8 +33,7 @@ from tardigate.syntax.preprocess import Preprocessed, PreprocessOptions, preproc
 from tardigate.syntax.verilog_reader import Unit, read_unit
 
 
-@dataclass(frozen=True, slots=True)
-class Request:
+class Request(NamedTuple):
     """What is asked for: files and how to read them.
 
     Files are paths, or texts that are at hand. `bulk` False sends every statement through the grammar: slow, and the same.
@@ -54,8 +53,7 @@ class Request:
         return tuple(file if isinstance(file, str) else file.path for file in files)
 
 
-@dataclass(frozen=True, slots=True)
-class Loaded:
+class Loaded(NamedTuple):
     """A design, read and checked for structure.
 
     `missing` are the kinds in use that have no delay, `undescribed` the modules that nobody describes;

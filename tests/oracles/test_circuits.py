@@ -69,7 +69,7 @@ def ways_through(kind: str) -> Iterator[Way]:
 
 
 class Twin:
-    """A circuit file as a networkx multigraph; nodes are (net, edge), clock pins are called by their register."""
+    """A circuit file as a networkx multigraph of (net, edge); clock pins, `register.pin`, stand for nets."""
 
     def __init__(self, text: str) -> None:
         self.graph: Any = networkx.MultiDiGraph()
@@ -92,7 +92,7 @@ class Twin:
             ends = {(net, edge) for net in WORD.findall(rest) for edge in OPPOSITE}
             (self.sources if keyword == "input" else self.sinks).update(ends)
         elif keyword in {"ff", "fflopd"}:
-            pins = {pin: net for pin, net in PIN.findall(rest)}
+            pins = dict(PIN.findall(rest))
             self.read_register(rest.split()[0].split("(")[0], pins)
         else:
             assert keyword in {"module", "wire"}

@@ -11,6 +11,8 @@ from collections.abc import Callable
 import pytest
 
 import tardigate
+from tardigate.analysis.model import Grade
+from tardigate.design import Settled
 
 PER_NS = {"ns": 1.0, "ps": 1000.0}
 
@@ -20,7 +22,7 @@ Hops = dict[tuple[str, str, str, str], tuple[float | None, float | None, float |
 class Figures:
     """When nets settle and stir after the sources, in the unit asked for."""
 
-    def __init__(self, settled: tardigate.design.Settled, unit: str) -> None:
+    def __init__(self, settled: Settled, unit: str) -> None:
         self.settled, self.unit = settled, unit
 
     def _scaled(self, ns: float | None) -> float:
@@ -48,10 +50,16 @@ class Figures:
 
 
 def _figures(
-    verilog: str, parts: str = "", unit: str = "ns", sources: tuple[str, ...] = (), grade: str = "span"
+    verilog: str,
+    parts: str = "",
+    unit: str = "ns",
+    sources: tuple[str, ...] = (),
+    grade: Grade = "span",
+    condition: str | None = None,
 ) -> Figures:
-    design = tardigate.read_text(verilog, parts=parts and f"family PUBLISHED {{ {parts} }}", grade=grade)  # type: ignore[arg-type]
-    return Figures(design.settle(grade, sources=sources), unit)  # type: ignore[arg-type]
+    family = parts and f"family PUBLISHED {{ {parts} }}"
+    design = tardigate.read_text(verilog, parts=family, grade=grade, condition=condition)
+    return Figures(design.settle(grade, sources=sources), unit)
 
 
 def _hops(verilog: str, parts: str = "", condition: str | None = None) -> Hops:
@@ -67,13 +75,13 @@ def _hops(verilog: str, parts: str = "", condition: str | None = None) -> Hops:
 
 @pytest.fixture(scope="session")
 def figures() -> Callable[..., Figures]:
-    """`figures(verilog, parts, unit, sources, grade)`; `parts` is the inside of a family."""
+    """`figures(verilog, parts, unit, sources, grade, condition)`; `parts` is the inside of a family."""
     return _figures
 
 
 @pytest.fixture(scope="session")
 def hops() -> Callable[..., Hops]:
-    """`hops(verilog, parts, condition)`: (pin, edge, pin, edge) → (min, typ, max) in ns of a lone instance."""
+    """`hops(verilog, parts, condition)`: (pin, edge, pin, edge) → (min, typ, max), ns, of one part."""
     return _hops
 
 

@@ -24,12 +24,15 @@ def test_carry_skip_block_with_a_late_carry(figures: Fixture) -> None:
 
     Topological delay of the carry out 11 with the carry in at 5 (true: 8). Recomputed exhaustively.
     """
-    late = "module m(input a0, b0, a1, b1, c, output s0, s1, cout); buf #5 l(cin, c); skip u(a0, b0, a1, b1, cin, s0, s1, cout); endmodule"
+    late = """
+      module m(input a0, b0, a1, b1, c, output s0, s1, cout);
+        buf #5 l(cin, c); skip u(a0, b0, a1, b1, cin, s0, s1, cout);
+      endmodule"""
     assert figures(late + SKIP_BLOCK).settles("cout") == 11
 
 
 def test_carry_skip_block_pin_to_pin(figures: Fixture) -> None:
-    """Kukimoto, Brayton, "Hierarchical functional timing analysis", DAC 1998, from memory: 6 (true: 2), 8, 6."""
+    """Kukimoto, Brayton, "Hierarchical functional timing analysis", DAC 1998, from memory (cin truly: 2)."""
     published = {("cin",): 6, ("a0",): 8, ("b0",): 8, ("a1",): 6, ("b1",): 6}
     for sources, delay in published.items():
         assert figures(SKIP_BLOCK, sources=sources).settles("cout") == delay
@@ -48,7 +51,7 @@ def test_two_carry_skip_blocks(figures: Fixture) -> None:
 
 
 def test_two_multiplexers_that_share_a_select(figures: Fixture) -> None:
-    """Slides "Static timing analysis for threshold logic circuits", no. 5: longest 6 (actual: 5). Recomputed."""
+    """Slides "Static timing analysis for threshold logic circuits", no. 5: longest 6, actual 5. Redone."""
     verilog = """
       module m(input x, s, output y);
         buf #3 a0(pa, x), a1(qa, n);

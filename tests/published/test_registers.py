@@ -25,7 +25,7 @@ endmodule"""
 
 
 def test_three_gates_and_one_between_flip_flops(figures: Fixture, flip_flop: Fixture) -> None:
-    """Harris and Harris, lecture slides to Digital Design and Computer Architecture, ch. 3, "Timing analysis"."""
+    """Harris and Harris, slides to Digital Design and Computer Architecture, ch. 3, "Timing analysis"."""
     parts = flip_flop("30:-:50", "ps") + "default ps { tpd 25:-:35; }"
     found = figures(TO_THREE_GATES_AND_ONE, parts, "ps")
     assert found.both("x_next") == (30 + 2 * 25, 50 + 3 * 35)
@@ -131,7 +131,7 @@ COUNTER = """
 
 
 def test_toggle_flip_flop(figures: Fixture, flip_flop: Fixture) -> None:
-    """Brown and Vranesic, Fundamentals of Digital Logic with Verilog Design, sec. 5.15, numbers from memory."""
+    """Brown and Vranesic, Fundamentals of Digital Logic with Verilog, sec. 5.15, numbers from memory."""
     verilog = "module m(input ck, output q); FF f(.D(d), .CK(ck), .Q(q)); not g(d, q); endmodule"
     found = figures(verilog, flip_flop("0.8:-:1.0") + GATE_RULE)
     assert found.both("d") == (1.9, 2.1)

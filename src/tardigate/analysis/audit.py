@@ -8,9 +8,9 @@ nor its delays. A difference is a fault of this program.
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from itertools import pairwise
 from math import fsum
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -26,8 +26,7 @@ TOLERANCE = 1e-12
 """Of a total: sums of whole femtoseconds agree exactly, others up to the last bits of float64."""
 
 
-@dataclass(frozen=True, slots=True)
-class _Steps:
+class _Steps(NamedTuple):
     """The hops that the trails use, from the parts; `row` int32[graph's hops] is where each stands here.
 
     `begin`, `end` int64 are net and edge as `2 * net + edge`, where a register's clock pin counts as net

@@ -2,8 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-from typing import Literal
+from typing import Literal, NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -14,8 +13,7 @@ Grade = Literal["min", "typ", "max", "span"]
 GRADES: tuple[Grade, ...] = ("span", "min", "typ", "max")
 
 
-@dataclass(frozen=True, slots=True)
-class Times:
+class Times(NamedTuple):
     """When each vertex settles and stirs, float64[vertices], fs.
 
     A vertex that no source reaches never changes: it settles at -inf and stirs at +inf.
@@ -25,8 +23,7 @@ class Times:
     stirs: NDArray[np.float64]
 
 
-@dataclass(frozen=True, slots=True)
-class Trail:
+class Trail(NamedTuple):
     """A chain of hops from a source to a sink.
 
     `source` and `sink` are vertices (the sink's point is one of `Graph.sinks`); `hops` int64, numbers of the

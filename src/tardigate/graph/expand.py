@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -19,16 +20,14 @@ from tardigate.source.arrays import distinct
 Ints = NDArray[np.int32]
 
 
-@dataclass(frozen=True, slots=True)
-class ClockPins:
+class ClockPins(NamedTuple):
     """Register clock pins on a net, one a point beyond the nets: `instance`, `pin` int32, in that order."""
 
     instance: Ints
     pin: Ints
 
 
-@dataclass(frozen=True, slots=True)
-class Hops:
+class Hops(NamedTuple):
     """Hops in order of kind, row and instance: int32 columns `tail`, `head` (vertices), `row`, `instance`."""
 
     tail: Ints
@@ -37,8 +36,7 @@ class Hops:
     instance: Ints
 
 
-@dataclass(frozen=True, slots=True)
-class Arcs:
+class Arcs(NamedTuple):
     """Hops without their edges, by points: int32 columns `tail`, `head`, `instance`, `pin_in`, `pin_out`."""
 
     tail: Ints
@@ -104,7 +102,8 @@ def expand_arcs(groups: Sequence[Batch], nets: int, clock_pins: ClockPins) -> Ar
     found: list[tuple[Ints, ...]] = []
     for batch in groups:
         kind = batch.kind
-        ways = np.unique(np.stack([kind.hop_from, kind.hop_to, kind.launches], axis=1), axis=0)
+        triples = zip(kind.hop_from.tolist(), kind.hop_to.tolist(), kind.launches.tolist(), strict=True)
+        ways = np.array(sorted(set(triples)), np.int32).reshape(-1, 3)
         pin_in, pin_out, launches = ways[:, 0], ways[:, 1], ways[:, 2].astype(bool)
         tail, head, live = _ends(batch, pin_in, pin_out, launches, nets, clock_pins)
         members = np.broadcast_to(batch.members, tail.shape)

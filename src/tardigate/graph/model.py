@@ -6,14 +6,13 @@ design; the points after them are register clock pins, where trails begin, one a
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
 
 
-@dataclass(frozen=True, slots=True)
-class Graph:
+class Graph(NamedTuple):
     """The graph.
 
     Hops are sorted by level of their head, then by head: `tail`, `head` int32[hops] are vertices; `delay_row`

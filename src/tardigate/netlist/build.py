@@ -9,6 +9,7 @@ from __future__ import annotations
 from bisect import bisect_right
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
+from typing import NamedTuple
 
 import numpy as np
 
@@ -46,8 +47,7 @@ class Undescribed:
     pins: dict[str, int] = field(default_factory=dict)
 
 
-@dataclass(frozen=True, slots=True)
-class Built:
+class Built(NamedTuple):
     """What elaboration gives: the flat design, the undescribed, and the delays whose unit was assumed."""
 
     top: str

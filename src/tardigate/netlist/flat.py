@@ -7,7 +7,6 @@ Data only.
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
 from typing import NamedTuple
 
 import numpy as np
@@ -31,8 +30,10 @@ class Port(NamedTuple):
     net: int
 
 
-@dataclass(frozen=True, slots=True)
-class Flat:
+_NO_NETS = np.zeros(0, np.int32)
+
+
+class Flat(NamedTuple):
     """The flat design.
 
     `kinds`: the kinds in use; `inst_kind` int32[instances]: the kind of each part instance; `pin_start`
@@ -60,8 +61,8 @@ class Flat:
     scope_inst: NDArray[np.int64]
     scope_net: NDArray[np.int64]
     net_raw: NDArray[np.int64]
-    wired: NDArray[np.int32] = field(default_factory=lambda: np.zeros(0, np.int32))
-    driven: NDArray[np.int32] = field(default_factory=lambda: np.zeros(0, np.int32))
+    wired: NDArray[np.int32] = _NO_NETS
+    driven: NDArray[np.int32] = _NO_NETS
 
     @property
     def instances(self) -> int:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from typing import NamedTuple
 
 from tardigate.parts.kind import Way
 from tardigate.source.collector import Collector
@@ -11,8 +11,7 @@ from tardigate.source.diagnostic import did_you_mean
 from tardigate.source.span import Span
 
 
-@dataclass(frozen=True, slots=True)
-class InterfacePin:
+class InterfacePin(NamedTuple):
     """A pin or port: its name (empty when only by order), way and width in bits."""
 
     name: str

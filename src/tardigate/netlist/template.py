@@ -6,7 +6,6 @@ Net numbers are local to the template: 0 to 3 are the constants 0, 1, x, z, then
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field
 from typing import NamedTuple
 
 import numpy as np
@@ -28,8 +27,7 @@ class TemplatePort(NamedTuple):
     bits: Sequence[str]
 
 
-@dataclass(frozen=True, slots=True)
-class Child:
+class Child(NamedTuple):
     """An instance of a module below: its name, its template's number, the local nets its ports' bits are on.
 
     `joins` is int32[bits]: for each bit of the child's ports, in order of ports and bits, the net of this
@@ -42,8 +40,10 @@ class Child:
     place: int
 
 
-@dataclass(frozen=True, slots=True)
-class Template:
+_NO_NETS = np.zeros(0, np.int32)
+
+
+class Template(NamedTuple):
     """An elaborated module.
 
     `net_names` names the local nets (the first four are the constants), bit by bit (`bus[3]`); `net_place`
@@ -67,8 +67,8 @@ class Template:
     inst_names: Sequence[str]
     inst_place: NDArray[np.int64]
     children: tuple[Child, ...]
-    wired: NDArray[np.int32] = field(default_factory=lambda: np.zeros(0, np.int32))
-    driven: NDArray[np.int32] = field(default_factory=lambda: np.zeros(0, np.int32))
+    wired: NDArray[np.int32] = _NO_NETS
+    driven: NDArray[np.int32] = _NO_NETS
 
     @property
     def nets(self) -> int:

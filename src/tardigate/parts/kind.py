@@ -6,8 +6,8 @@ each gate with so many inputs, each operator, each delay written in the source. 
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from enum import IntEnum
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -38,8 +38,7 @@ class Origin(IntEnum):
     MISSING = 4  # nowhere: the design is refused
 
 
-@dataclass(frozen=True, slots=True)
-class Kind:
+class Kind(NamedTuple):
     """A kind of part instance.
 
     `name` is what reports call it (`nand`, `HX00`, `assign &`); `group` sorts reports: `gate`, `operator` or

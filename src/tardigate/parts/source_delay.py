@@ -2,14 +2,13 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from typing import NamedTuple
 
 Triple = tuple[float, float, float]
 """min, typ, max in femtoseconds; NaN where nobody gave a number."""
 
 
-@dataclass(frozen=True, slots=True)
-class SourceDelay:
+class SourceDelay(NamedTuple):
     """One to three values: rise; fall; turn-off (IEEE 1364-2005 clauses 7.14 and 6.1.3).
 
     One value serves every transition; with two, rise and fall, the turn-off takes the smaller. `words` says

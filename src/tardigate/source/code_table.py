@@ -10,7 +10,6 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from functools import cache
-from importlib import resources
 
 FILES = {"U": "use", "V": "verilog", "P": "parts", "N": "netlist", "G": "graph"}
 """First letter of a code → the file of its entry: use of the tool, Verilog text, parts file, netlist, graph."""
@@ -31,7 +30,8 @@ class Entry:
 
 @cache
 def _read(letter: str) -> Mapping[str, Entry]:
-    import tomllib  # only when something is told
+    import tomllib  # only when something is told, and so the next
+    from importlib import resources
 
     source = resources.files("tardigate.source.codes").joinpath(f"{FILES[letter]}.toml").read_text("utf-8")
     return {

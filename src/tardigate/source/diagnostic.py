@@ -6,7 +6,7 @@ Takes a code of the table and the words that fill its headline. Does not print a
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
-from typing import Literal
+from typing import Literal, NamedTuple
 
 from tardigate.source.code_table import look_up
 from tardigate.source.span import Span
@@ -14,8 +14,7 @@ from tardigate.source.span import Span
 Severity = Literal["error", "warning"]
 
 
-@dataclass(frozen=True, slots=True)
-class Related:
+class Related(NamedTuple):
     """A second place that belongs to a diagnostic, with what it is."""
 
     span: Span

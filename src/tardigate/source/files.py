@@ -5,8 +5,8 @@ Takes paths, gives bytes with their paths. Does not look at what is written in t
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from pathlib import Path
+from typing import NamedTuple
 
 from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.faults import InputRefusedError
@@ -16,8 +16,7 @@ LARGEST_FILE = 1 << 30
 """Bytes; offsets are kept in 32 bits further on."""
 
 
-@dataclass(frozen=True, slots=True)
-class SourceFile:
+class SourceFile(NamedTuple):
     """One file: its path as the user wrote it, and its bytes."""
 
     path: str

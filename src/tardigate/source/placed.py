@@ -7,13 +7,13 @@ from __future__ import annotations
 
 from bisect import bisect_right
 from dataclasses import dataclass, field
+from typing import NamedTuple
 
 from tardigate.source.files import SourceFile
 from tardigate.source.span import Span
 
 
-@dataclass(frozen=True, slots=True)
-class Piece:
+class Piece(NamedTuple):
     """A stretch of placed text and where it was written.
 
     Byte `i` of the stretch stands at `offset + i` of `file`; in a macro's expansion (`stop` not None) every

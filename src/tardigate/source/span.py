@@ -5,14 +5,13 @@ Takes offsets and bytes, gives spans. Does not read files and does not check tha
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from typing import NamedTuple
 
 SNIPPET = 320
 """Longest piece of a source line that a span keeps, in characters."""
 
 
-@dataclass(frozen=True, slots=True, order=True)
-class Span:
+class Span(NamedTuple):
     """A piece of one line of a file.
 
     `line` and `column` count from 1, `column` in characters (a tab is one); `length` is the number of
@@ -33,6 +32,19 @@ class Span:
         return f"{self.path}:{self.line}:{self.column}"
 
 
+_LAST: list[tuple[bytes, int, int]] = [(b"", 0, 1)]
+"""The text, offset and line that were asked for last: the next place is seldom far, and files are long."""
+
+
+def _line(data: bytes, start: int) -> int:
+    last, at, line = _LAST[0]
+    if last is not data:
+        at, line = 0, 1
+    line += data.count(b"\n", at, start) if at <= start else -data.count(b"\n", start, at)
+    _LAST[0] = (data, start, line)
+    return line
+
+
 def span_in(path: str, data: bytes, start: int, stop: int) -> Span:
     """Make the span of `data[start:stop]`, cut at the end of its first line."""
     start = max(0, min(start, len(data)))
@@ -41,7 +53,7 @@ def span_in(path: str, data: bytes, start: int, stop: int) -> Span:
     line_stop = data.find(b"\n", start)
     if line_stop < 0:
         line_stop = len(data)
-    line = data.count(b"\n", 0, start) + 1
+    line = _line(data, start)
     before = data[line_start:start].decode("utf-8", "replace")
     inside = data[start : min(stop, line_stop)].decode("utf-8", "replace")
     column = len(before) + 1

@@ -17,6 +17,8 @@ _LONG = np.uint64(1 << 63)
 _SHIFT = np.uint64(29)
 _HALF = np.uint64(32)
 _WORDS = 1 << 15
+_SIEVED = 1024
+"""Bytes of a word that its key is made of: a pass over all words takes eight, and a name may have millions."""
 _MASKS = np.array([0] + [(1 << 8 * i) - 1 for i in range(1, 9)], dtype=np.uint64)
 
 
@@ -81,6 +83,7 @@ def _keys_of_some(
     data: bytes, start: NDArray[np.integer], length: NDArray[np.integer]
 ) -> NDArray[np.uint64]:
     pieces = np.ndarray((len(data) - 7,), dtype="<u8", buffer=data, strides=(1,))
+    length = np.minimum(length, _SIEVED)
     keys: NDArray[np.uint64] = pieces[start] & _MASKS[np.minimum(length, 8)]
     rest = long = np.flatnonzero(length > 8)
     offset = 8
@@ -171,6 +174,10 @@ def _differing(
     length = stop[words] - one
     differs = length != name_stop[ids[words]] - other
     differs |= pieces[one] != pieces[other]
+    for word in np.flatnonzero(length > _SIEVED):
+        size = int(length[word])
+        differs[word] |= data[one[word] : one[word] + size] != data[other[word] : other[word] + size]
+    length = np.minimum(length, _SIEVED)
     rest = np.arange(len(words))
     offset = 8
     while rest.size:

@@ -6,7 +6,7 @@ it uses. Does not check the modules.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -22,8 +22,7 @@ _BLOCKS = {
 }  # fmt: skip
 
 
-@dataclass(frozen=True, slots=True)
-class ModuleText:
+class ModuleText(NamedTuple):
     """A module's stretch of the text.
 
     `word` is `module` or, for what is not read, `primitive` or `config`; `first`, `stop` are marks, `start`,

@@ -10,8 +10,8 @@ grammar accepts; a statement that is not exactly of that shape is left to the gr
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from functools import cache
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -28,8 +28,7 @@ _ONE_BIT |= {f"1'{base}{digit}": 2 + (digit in "zZ?") for base in "bBhHoO" for d
 _LARGEST_INDEX_DIGITS = 8
 
 
-@dataclass(frozen=True, slots=True)
-class Plain:
+class Plain(NamedTuple):
     """All plain statements of a text, in order, in columns.
 
     `first` int32[statements]: its first mark; `stop` int32[statements]: the mark after its semicolon.
@@ -183,7 +182,7 @@ def _whole(
     marks: NDArray[np.uint8], first: NDArray[np.int64], stop: NDArray[np.int64], depth: NDArray[np.int8]
 ) -> NDArray[np.bool_]:
     """Tell which statements are by name throughout or by order throughout, and closed."""
-    whole = depth[stop - 1] == 0
+    whole: NDArray[np.bool_] = depth[stop - 1] == 0
     count = np.zeros(len(first), np.int32)
     by_name = marks == DOT
     if by_name.any():
@@ -195,7 +194,8 @@ def _whole(
     second = marks[np.minimum(first + 1, len(marks) - 1)]
     whole &= (marks[first] != NAME) | (second == NAME)
     gate_by_name = (marks[first] == GATE) & (count > 0)
-    return whole & ~gate_by_name
+    whole &= ~gate_by_name
+    return whole
 
 
 def _read(

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from typing import NamedTuple
 
 from tardigate.source.collector import Collector
 from tardigate.source.files import SourceFile
@@ -32,8 +33,7 @@ class PreprocessOptions:
     defines: Mapping[str, str] = field(default_factory=dict)
 
 
-@dataclass(frozen=True, slots=True)
-class Preprocessed:
+class Preprocessed(NamedTuple):
     """The expanded text and the states along it, each sorted by the offset from which it is in force.
 
     The first offset of each is 0. `timescales`: unit and precision in fs, both None where no `timescale` is

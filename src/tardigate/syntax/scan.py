@@ -7,7 +7,7 @@ not understand it leaves to the grammar.
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -33,8 +33,7 @@ _PIECE = 1 << 18
 _STRING = re.compile(rb'\\[^ \t\r\n\f\v]+|"(?:\\.|[^"\\\n])*"?', re.DOTALL)
 
 
-@dataclass(frozen=True, slots=True)
-class Scan:
+class Scan(NamedTuple):
     """The marks of a text, in order.
 
     `kind` uint8[marks]: class of each mark (WORD for a word, else the class of a single byte);

@@ -6,7 +6,7 @@ Takes files, gives a `Unit` each, whose modules are parsed one by one when asked
 from __future__ import annotations
 
 from bisect import bisect_right
-from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -25,8 +25,7 @@ from tardigate.syntax.tree import Module, PlainPorts, Run
 _RUN, _PORTS = b"\x01", b"\x02"
 
 
-@dataclass(frozen=True, slots=True)
-class Unit:
+class Unit(NamedTuple):
     """One file, scanned: its text, marks, plain statements and the modules that stand in it."""
 
     source: Preprocessed
@@ -151,8 +150,7 @@ def _plain_header(unit: Unit, module: ModuleText) -> tuple[int, int, PlainPorts]
     return int(found.at[first + 2]), int(found.at[stop - 1]) + 1, PlainPorts(word, word + len(names))
 
 
-@dataclass(frozen=True, slots=True)
-class Cuts:
+class Cuts(NamedTuple):
     """The map from a coarse text back to the placed text: at `coarse[i]` begins what stands at `placed[i]`."""
 
     coarse: list[int]

@@ -211,7 +211,7 @@ class TreeMaker:
         return tree.Delay(tuple(children), children[0].at)
 
     def triple(self, children: list[Any]) -> tree.Expression:
-        return children[0] if len(children) == 1 else self.grouped_triple(children)  # type: ignore[no-any-return]
+        return children[0] if len(children) == 1 else self.grouped_triple(children)
 
     # Expressions
 
