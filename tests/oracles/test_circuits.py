@@ -24,11 +24,13 @@ from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS
 from tardigate.pipeline import Loaded, Request, graph_of, load, times_of, trails_of
 
-Node = tuple[str, str]
+Node = str
+"""`net rise` or `net fall`: one text each, whose hash is reckoned once."""
+
 Way = tuple[str, str, float, float]
 
 FAMILY = str(Path(__file__).parents[1] / "data" / "circuits.parts")
-FAR_SMALLER = 100_000
+SMALL = 100_000
 """Bytes of a file up to which the twin lists the ten best trails too."""
 
 TRAILS = 10
@@ -69,10 +71,11 @@ def ways_through(kind: str) -> Iterator[Way]:
 
 
 class Twin:
-    """A circuit file as a networkx multigraph of (net, edge); clock pins, `register.pin`, stand for nets."""
+    """A circuit file as a networkx multigraph of nets by edge; clock pins, `register.pin`, stand for nets."""
 
     def __init__(self, text: str) -> None:
         self.graph: Any = networkx.MultiDiGraph()
+        self.nodes: dict[str, dict[str, Node]] = {}
         self.sources: set[Node] = set()
         self.sinks: set[Node] = set()
         self.ways = {kind: tuple(ways_through(kind)) for kind in GATES}
@@ -89,8 +92,8 @@ class Twin:
         elif keyword == "assign":
             self.read_assignment(*(side.strip() for side in rest.split("=")))
         elif keyword in {"input", "output"}:
-            ends = {(net, edge) for net in WORD.findall(rest) for edge in OPPOSITE}
-            (self.sources if keyword == "input" else self.sinks).update(ends)
+            for net in WORD.findall(rest):
+                (self.sources if keyword == "input" else self.sinks).update(self.at(net).values())
         elif keyword in {"ff", "fflopd"}:
             pins = dict(PIN.findall(rest))
             self.read_register(rest.split()[0].split("(")[0], pins)
@@ -101,8 +104,8 @@ class Twin:
         late, early = CLOCK_TO_OUTPUT
         clock = name + (".CK" if "CK" in pins else ".clk")
         self.join(clock, pins["Q"], (("rise", "rise", late, early), ("rise", "fall", late, early)))
-        self.sources.add((clock, "rise"))
-        self.sinks |= {(pins["D"], "rise"), (pins["D"], "fall")}
+        self.sources.add(self.at(clock)["rise"])
+        self.sinks.update(self.at(pins["D"]).values())
 
     def read_assignment(self, left: str, right: str) -> None:
         """An assignment is a constant, a wire, or an `or` of inverted nets: three operators by default."""
@@ -113,13 +116,21 @@ class Twin:
             self.join(right, left, copy)
             return
         inverter = (("rise", "fall", 4, 1), ("fall", "rise", 4, 1))
-        for net in re.fullmatch(r"~(\w+) \| ~(\w+)", right).groups():  # type: ignore[union-attr]
+        assert re.fullmatch(r"~\w+ \| ~\w+", right)
+        for net in WORD.findall(right):
             self.join(net, f"~{net} {left}", inverter)
             self.join(f"~{net} {left}", left, self.ways["or"])
 
+    def at(self, net: str) -> dict[str, Node]:
+        """Return the two nodes of a net."""
+        if net not in self.nodes:
+            self.nodes[net] = {edge: f"{net} {edge}" for edge in OPPOSITE}
+        return self.nodes[net]
+
     def join(self, tail: str, head: str, ways: tuple[Way, ...]) -> None:
+        tails, heads = self.at(tail), self.at(head)
         for edge_in, edge_out, late, early in ways:
-            self.graph.add_edge((tail, edge_in), (head, edge_out), late=-late, early=early)
+            self.graph.add_edge(tails[edge_in], heads[edge_out], late=-late, early=early)
 
     def extremes(self) -> tuple[dict[Node, float], dict[Node, float]]:
         """Return when each node settles and stirs, in ns."""
@@ -167,17 +178,17 @@ def test_a_circuit_settles_and_stirs_as_networkx_says(file: Path) -> None:
     times = times_of(graph, "span")
     names = [name_of(design, graph, point) for point in range(CONSTANTS, graph.vertices // 2)]
     assert len(set(names)) == len(names)
-    assert {net for net, _ in twin.graph if not net.startswith("~")} <= set(names)
+    assert {net for net in twin.nodes if not net.startswith("~")} <= set(names)
     for number, name in enumerate(names, CONSTANTS):
         if name.startswith("assign:"):  # between operators: nameless in the source
             continue
         for edge, word in enumerate(OPPOSITE):
             found = times.settles[2 * number + edge] / 1e6, times.stirs[2 * number + edge] / 1e6
-            assert found == (settles.get((name, word), -inf), stirs.get((name, word), inf)), (name, word)
+            assert found == (settles.get(f"{name} {word}", -inf), stirs.get(f"{name} {word}", inf)), name
     slowest = trails_of(design, graph, "span", TRAILS)  # which audits them
     assert slowest[0].total / 1e6 == max(settles.get(sink, -inf) for sink in twin.sinks)
     assert all(before.total >= after.total for before, after in pairwise(slowest))
-    if file.stat().st_size < FAR_SMALLER:
+    if file.stat().st_size < SMALL:
         fastest = trails_of(design, graph, "span", TRAILS, slow=False)
         totals = [[trail.total / 1e6 for trail in trails] for trails in (slowest, fastest)]
         assert totals == list(twin.best_totals(TRAILS))

@@ -148,12 +148,12 @@ class Declarer:
         names = np.concatenate([*columns.name, np.zeros(0, np.int32)]).astype(np.int32)
         places = np.concatenate([*columns.place, np.zeros(0, np.int64)])
         numbers = np.concatenate([*columns.numbers, np.zeros((0, 4), np.int64)])
-        _, first, back = np.unique(names, return_index=True, return_inverse=True)
-        order = np.argsort(first)
-        rank = np.empty(len(first), np.int64)
-        rank[order] = np.arange(len(first))
-        variable = rank[back]
-        head = first[order]
+        here = np.arange(len(names))
+        first = np.empty(len(self.unit.scan.names), np.int64)
+        first[names[::-1]] = here[::-1]  # the last that is written stays: the first declaration
+        is_head = first[names] == here
+        variable = (np.cumsum(is_head) - 1)[first[names]]
+        head = np.flatnonzero(is_head)
         directed = numbers[:, 2] != NO_DIRECTION
         self._tell_doubles(names, places, numbers, variable, directed, len(head))
         way = np.full(len(head), NO_DIRECTION, np.uint8)

@@ -56,6 +56,14 @@ def stamp(templates: Sequence[Template], top: int, kinds: Sequence[Kind]) -> Fla
         those = np.flatnonzero(of_scope == at)
         if not len(template.kind):
             continue
+        if len(those) == 1:  # no copying through tables of places
+            scope = int(those[0])
+            rows, cells = slice(*inst_base[scope : scope + 2]), slice(*pin_base[scope : scope + 2])
+            inst_kind[rows] = template.kind
+            pin_start[rows] = pin_base[scope] + template.pin_start[:-1]
+            own = number[net_base[scope] : net_base[scope + 1]]
+            pin_net[cells] = np.where(template.pin_net == OPEN, OPEN, own[np.maximum(template.pin_net, 0)])
+            continue
         rows = inst_base[those][:, None] + np.arange(len(template.kind))
         inst_kind[rows] = template.kind
         pin_start[rows] = pin_base[those][:, None] + template.pin_start[:-1]

@@ -15,7 +15,7 @@ from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
 from tardigate.source.placed import PlacedText
 from tardigate.syntax.plain import NAME
-from tardigate.syntax.scan import WORD, Scan
+from tardigate.syntax.scan import OTHER, WORD, Scan
 
 _BLOCKS = {
     "module": "endmodule", "macromodule": "endmodule", "primitive": "endprimitive", "config": "endconfig",
@@ -106,10 +106,17 @@ def used_names(scan: Scan, marks: NDArray[np.uint8], module: ModuleText) -> list
     Neither the module's own name in its header (`module m #(...)`) nor that of a delay (`buf #D g (...)`).
     """
     window = marks[module.first : module.stop]
-    here = np.flatnonzero(window[:-1] == NAME)
-    here = here[here > 1]
-    following = window[here + 1]
-    byte = np.frombuffer(scan.data, np.uint8)[scan.at[module.first : module.stop]]
-    first = here[((following == NAME) | (byte[here + 1] == 0x23)) & (byte[here - 1] != 0x23)]
+    is_name, following = window[:-1] == NAME, window[1:]
+    signs = np.flatnonzero(is_name & (following == OTHER))
+    signs = signs[_sharp(scan, module.first + signs + 1)]
+    first = np.concatenate((np.flatnonzero(is_name & (following == NAME)), signs))
+    first = first[first > 1]
+    first = first[~_sharp(scan, module.first + first - 1)]
     words = scan.word[scan.word_of[module.first + first]]
     return [scan.names.text(int(name)) for name in distinct(words)]
+
+
+def _sharp(scan: Scan, marks: NDArray[np.int64]) -> NDArray[np.bool_]:
+    """Tell which marks are a `#`."""
+    sharp: NDArray[np.bool_] = np.frombuffer(scan.data, np.uint8)[scan.at[marks]] == 0x23
+    return sharp

@@ -30,7 +30,7 @@ _TABLE = bytes(_CLASSES)
 _PIECE = 1 << 18
 """Bytes that are looked at in one go."""
 
-_STRING = re.compile(rb'\\[^ \t\r\n\f\v]+|"(?:\\.|[^"\\\n])*"?', re.DOTALL)
+_STRING = re.compile(rb'\\[^ \t\r\n\f\v]+|"(?:[^"\\\n]++|\\.)*+"?', re.DOTALL)
 
 
 class Scan(NamedTuple):
