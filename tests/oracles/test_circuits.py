@@ -71,7 +71,7 @@ def ways_through(kind: str) -> Iterator[Way]:
 
 
 class Twin:
-    """A circuit file as a networkx multigraph of nets by edge; clock pins, `register.pin`, stand for nets."""
+    """A circuit file as a networkx multigraph of nets by edge; a clock pin is called `register.pin`."""
 
     def __init__(self, text: str) -> None:
         self.graph: Any = networkx.MultiDiGraph()
@@ -79,7 +79,7 @@ class Twin:
         self.sources: set[Node] = set()
         self.sinks: set[Node] = set()
         self.ways = {kind: tuple(ways_through(kind)) for kind in GATES}
-        text = re.sub(r"//[^\n]*", "", text).replace("\\", "")  # escaped names are `\\a[0]` and the like
+        text = re.sub(r"//[^\n]*", "", text).replace("\\", "")  # escaped names: `\a[0]` and the like
         for keyword, rest in STATEMENT.findall(text[: text.index("endmodule")]):
             self.read(keyword, rest)
         self.graph.add_nodes_from(self.sources | self.sinks)

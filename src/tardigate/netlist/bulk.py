@@ -217,7 +217,7 @@ class Bulk:
         return tree.Instances(head, (), (tree.Instance(name, None, tuple(connections), at),), start)
 
     def _pin_place(self, net_at: int) -> int:
-        mark = int(np.searchsorted(self.unit.scan.at, net_at))
+        mark = int(np.searchsorted(self.unit.scan.at, np.int32(net_at)))  # of one type: no copy
         return int(self.unit.scan.at[mark - 2])
 
     def _net_tree(self, row: int) -> tree.Expression | None:
@@ -225,7 +225,7 @@ class Bulk:
         if name == -1:
             return None
         if name < -1:
-            mark = int(np.searchsorted(self.unit.scan.at, at))
+            mark = int(np.searchsorted(self.unit.scan.at, np.int32(at)))
             stop = int(self.unit.scan.word_stop[self.unit.scan.word_of[mark]])
             return read_number(self.unit.scan.data[at:stop].decode("latin-1"), at)
         selections: tuple[tree.Selection, ...] = ()
