@@ -7,7 +7,7 @@ precision on its own, half away from zero.
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from fractions import Fraction
 
 from tardigate.netlist.constants import NotConstantError, Value, evaluate
@@ -38,6 +38,7 @@ class Delays:
     collector: Collector
     known: dict[tuple[Triple, ...], SourceDelay]
     assumed: int = 0
+    _read: dict[tuple[int | str | None, ...], SourceDelay | None] = field(default_factory=dict)
 
     def read(self, delay: tree.Delay | None, most: int) -> SourceDelay | None:
         """Return a delay; None when there is none, or after telling what is wrong (N150 to N153)."""
@@ -48,6 +49,12 @@ class Delays:
             return None
         if self.unit is None:
             self.assumed += 1
+        key = tuple(_plain(value) for value in delay.values)
+        if key not in self._read or None in key:
+            self._read[key] = self._source_delay(delay)
+        return self._read[key]
+
+    def _source_delay(self, delay: tree.Delay) -> SourceDelay | None:
         triples = [self._triple(value) for value in delay.values]
         values = tuple(triple for triple in triples if triple is not None)
         if len(values) < len(triples):
@@ -92,6 +99,13 @@ class Delays:
             step = Fraction(self.precision)
             time = (time / step + Fraction(1, 2)).__floor__() * step
         return float(time)
+
+
+def _plain(value: tree.Expression) -> int | str | None:
+    """Return what tells a delay that is a mere number apart from others, None for any other expression."""
+    if isinstance(value, tree.Number) and not value.unknown | value.floating:
+        return value.value
+    return value.text if isinstance(value, tree.Decimal) else None
 
 
 def _fraction(text: str) -> Fraction:

@@ -69,6 +69,7 @@ class Elaborator:
         self.instances = Instances()
         self.children: list[Child] = []
         self.delay: SourceDelay | None = None
+        self._kinds: dict[tuple[str, int, int], int] = {}  # by operator, inputs and delay object
 
     def template(self, parameters: str) -> Template:
         """Elaborate."""
@@ -263,7 +264,10 @@ class Elaborator:
 
     def _emit(self, operator: str, inputs: Sequence[int], place: int, target: int | None, last: bool) -> int:
         delay = None if self.delay is None else self.delay if last else NO_DELAY
-        kind = self.workshop.operator(operator, len(inputs), delay)
+        key = (operator, len(inputs), id(delay))
+        kind = self._kinds.get(key)
+        if kind is None:
+            kind = self._kinds[key] = self.workshop.operator(operator, len(inputs), delay)
         out = self.variables.new_result(place) if target is None else target
         self.instances.add(kind, place, -1, [out, *inputs])
         return out

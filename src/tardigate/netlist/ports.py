@@ -38,6 +38,9 @@ def template_ports(module: tree.Module, wiring: Wiring) -> tuple[TemplatePort, .
     return tuple(header.ports)
 
 
+_WAYS = tuple(Way(way) for way in range(NO_DIRECTION))
+
+
 class _Header:
     """The ports so far: `names` those outside, `listed` the variables behind them."""
 
@@ -68,11 +71,10 @@ class _Header:
     def _scalars(self, numbers: NDArray[np.int32], found: NDArray[np.int32]) -> None:
         scan, variables = self.wiring.unit.scan, self.variables
         starts, ends = scan.names.start[numbers].tolist(), scan.names.stop[numbers].tolist()
-        ways = [Way(way) for way in range(NO_DIRECTION)]
-        rows = zip(starts, ends, variables.way[found].tolist(), variables.base[found].tolist(), strict=True)
-        for start, end, way, base in rows:
-            name = scan.data[start:end].decode("latin-1")
-            self.ports.append(TemplatePort(name, ways[way], (base,), (name,)))
+        names = [scan.data[start:end].decode("latin-1") for start, end in zip(starts, ends, strict=True)]
+        ways = [_WAYS[way] for way in variables.way[found].tolist()]
+        nets = variables.base[found].tolist()
+        self.ports.extend(map(TemplatePort, names, ways, zip(nets), zip(names)))  # noqa: B905
         self.listed.update(found.tolist())
 
     def port(self, port: tree.HeaderPort) -> None:

@@ -58,11 +58,11 @@ def stamp(templates: Sequence[Template], top: int, kinds: Sequence[Kind]) -> Fla
             continue
         if len(those) == 1:  # no copying through tables of places
             scope = int(those[0])
-            rows, cells = slice(*inst_base[scope : scope + 2]), slice(*pin_base[scope : scope + 2])
-            inst_kind[rows] = template.kind
-            pin_start[rows] = pin_base[scope] + template.pin_start[:-1]
+            own_rows = slice(int(inst_base[scope]), int(inst_base[scope + 1]))
+            inst_kind[own_rows] = template.kind
+            pin_start[own_rows] = pin_base[scope] + template.pin_start[:-1]
             own = number[net_base[scope] : net_base[scope + 1]]
-            pin_net[cells] = np.where(template.pin_net == OPEN, OPEN, own[np.maximum(template.pin_net, 0)])
+            pin_net[int(pin_base[scope]) : int(pin_base[scope + 1])] = np.where(template.pin_net == OPEN, OPEN, own[np.maximum(template.pin_net, 0)])
             continue
         rows = inst_base[those][:, None] + np.arange(len(template.kind))
         inst_kind[rows] = template.kind
@@ -181,5 +181,7 @@ def _marked(
 
 def _ports(top: Template, number: NDArray[np.int32]) -> tuple[Port, ...]:
     """Return the top's port bits, most significant first."""
-    nets = iter(number[[net for port in top.ports for net in port.nets]].tolist() if top.ports else ())
-    return tuple(Port(name, port.way, next(nets)) for port in top.ports for name in port.bits)
+    names = [name for port in top.ports for name in port.bits]
+    ways = [port.way for port in top.ports for _ in port.bits]
+    nets = number[[net for port in top.ports for net in port.nets]].tolist() if names else []
+    return tuple(map(Port, names, ways, nets))

@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -24,17 +25,17 @@ _MASKS = np.array([0] + [(1 << 8 * i) - 1 for i in range(1, 9)], dtype=np.uint64
 
 @dataclass(frozen=True, slots=True)
 class Interned:
-    """The names of a text, without repeats.
+    """The names of a text, without repeats, in order of their first words.
 
     `ids` int32[words]: the number of each word's name. `start`, `stop` int32[names]: where the first word of
-    that name stands. `hashes` uint64[names], ascending: the order of the names.
+    that name stands. `groups` finds a name by its key; `spill` holds names whose key another one has.
     """
 
     data: bytes
     ids: NDArray[np.int32]
     start: NDArray[np.int32]
     stop: NDArray[np.int32]
-    hashes: NDArray[np.uint64]
+    groups: Groups
     spill: dict[bytes, int]
 
     def __len__(self) -> int:
@@ -51,19 +52,74 @@ class Interned:
     def find_all(self, texts: Sequence[str]) -> NDArray[np.int32]:
         """Return the numbers of names, int32[texts], -1 for those that the text does not have."""
         found = np.full(len(texts), -1, np.int32)
-        if not len(self.hashes) or not texts:
+        if not len(self) or not texts:
             return found
         words = [text.encode("utf-8", "surrogateescape") for text in texts]
         stop = np.cumsum([len(word) for word in words])
         start = np.concatenate(([0], stop[:-1]))
-        keys = _keys(b"".join(words) + bytes(PAD), start, stop)
-        near = np.minimum(np.searchsorted(self.hashes, keys), len(self.hashes) - 1)
-        for at in np.flatnonzero(self.hashes[near] == keys):
-            if self.data[self.start[near[at]] : self.stop[near[at]]] == words[at]:
-                found[at] = near[at]
+        near = self.groups.find(_keys(b"".join(words) + bytes(PAD), start, stop))
+        for at in np.flatnonzero(near >= 0).tolist():
+            name = int(near[at])
+            if self.data[self.start[name] : self.stop[name]] == words[at]:
+                found[at] = name
         for number, word in enumerate(words if self.spill else ()):
             found[number] = self.spill.get(word, int(found[number]))
         return found
+
+
+class Groups(NamedTuple):
+    """Equal keys put together.
+
+    `ids` int32[keys]: the number of each key's group, in order of first keys; `heads` int64[groups]: the first
+    key of each. To find a key again: `table` int32 maps its highest bits to the first key that has them, plus
+    1; the keys that had to give way to another are in `others`, ascending, with their groups in `other_ids`.
+    """
+
+    keys: NDArray[np.uint64]
+    ids: NDArray[np.int32]
+    heads: NDArray[np.int64]
+    table: NDArray[np.int32]
+    others: NDArray[np.uint64]
+    other_ids: NDArray[np.int32]
+
+    def find(self, keys: NDArray[np.uint64]) -> NDArray[np.int32]:
+        """Return the groups of keys, -1 where there is none."""
+        found = np.full(len(keys), -1, np.int32)
+        owner = self.table[_slots(keys, self.table)] - 1
+        there = np.flatnonzero(owner >= 0)
+        there = there[self.keys[owner[there]] == keys[there]]
+        found[there] = self.ids[owner[there]]
+        if len(self.others):
+            near = np.minimum(np.searchsorted(self.others, keys), len(self.others) - 1)
+            there = np.flatnonzero(self.others[near] == keys)
+            found[there] = self.other_ids[near[there]]
+        return found
+
+
+def _slots(keys: NDArray[np.uint64], table: NDArray[np.int32]) -> NDArray[np.int64]:
+    """Return the place of each key in a table of 2**n entries: its n highest bits."""
+    slots: NDArray[np.int64] = (keys >> np.uint64(65 - len(table).bit_length())).astype(np.int64)
+    return slots
+
+
+def _group(keys: NDArray[np.uint64]) -> Groups:
+    """Put equal keys together: in a table by their highest bits, and by sorting where two keys share those.
+
+    Several times faster than to sort all, and names keep the order of the text, which keeps what belongs to
+    neighbours together in memory.
+    """
+    count = len(keys)
+    table = np.zeros(1 << max(4, count.bit_length() + 1), np.int32)
+    slots = _slots(keys, table)
+    table[slots[::-1]] = np.arange(count, 0, -1, dtype=np.int32)  # the last that is written stays: the first
+    owner = table[slots] - np.int32(1)
+    lost = np.flatnonzero(keys[owner] != keys)
+    others, first, back = np.unique(keys[lost], return_index=True, return_inverse=True)
+    owner[lost] = lost[first][back]
+    is_head = owner == np.arange(count, dtype=np.int32)
+    numbers = np.cumsum(is_head, dtype=np.int32)
+    numbers -= 1
+    return Groups(keys, numbers[owner], np.flatnonzero(is_head), table, others, numbers[lost[first]])
 
 
 def _keys(data: bytes, start: NDArray[np.integer], stop: NDArray[np.integer]) -> NDArray[np.uint64]:
@@ -110,10 +166,9 @@ def intern(data: bytes, start: NDArray[np.int32], stop: NDArray[np.int32]) -> In
     Words are put together by a 64-bit key; then every word is compared with the first of its key, byte for
     byte, and the words of which that fails (none, but for an attack) get numbers of their own.
     """
-    keys = _keys(data, start, stop)
-    order, first, ids = _group(keys)
-    heads = order[first]
-    name_start, name_stop = start[heads], stop[heads]
+    groups = _group(_keys(data, start, stop))
+    ids = groups.ids
+    name_start, name_stop = start[groups.heads], stop[groups.heads]
     odd = _differing(data, start, stop, name_start, name_stop, ids)
     spill: dict[bytes, int] = {}
     for word in odd:
@@ -123,37 +178,7 @@ def intern(data: bytes, start: NDArray[np.int32], stop: NDArray[np.int32]) -> In
             name_start = np.append(name_start, start[word])
             name_stop = np.append(name_stop, stop[word])
         ids[word] = spill[text]
-    return Interned(data, ids, name_start, name_stop, keys[heads], spill)
-
-
-def _group(
-    keys: NDArray[np.uint64],
-) -> tuple[NDArray[np.int64], NDArray[np.bool_], NDArray[np.int32]]:
-    """Sort keys; return the order, where a new key begins in it, and each key's rank among the distinct."""
-    order = np.argsort(keys, kind="stable") if len(keys) < 4096 else _packed_order(keys)
-    ordered = keys[order]
-    first = np.ones(len(keys), bool)
-    first[1:] = ordered[1:] != ordered[:-1]
-    ids = np.empty(len(keys), np.int32)
-    ids[order] = np.cumsum(first, dtype=np.int32) - 1
-    return order, first, ids
-
-
-def _packed_order(keys: NDArray[np.uint64]) -> NDArray[np.int64]:
-    """Return a stable order of keys by sorting their high bits together with their positions.
-
-    A plain sort of packed integers is several times faster than an argsort. Where different keys agree in
-    the high bits the order may be off, which shows; then the plain way is taken.
-    """
-    count = len(keys)
-    low = np.uint64((1 << count.bit_length()) - 1)
-    packed = (keys & ~low) | np.arange(count, dtype=np.uint64)
-    packed.sort()
-    order = (packed & low).astype(np.int64)
-    ordered = keys[order]
-    if (ordered[1:] < ordered[:-1]).any():
-        return np.argsort(keys, kind="stable")
-    return order
+    return Interned(data, ids, name_start, name_stop, groups, spill)
 
 
 def _differing(
