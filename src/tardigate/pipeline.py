@@ -18,10 +18,11 @@ from tardigate.analysis.sweep import sweep
 from tardigate.analysis.trails import fastest, slowest
 from tardigate.graph.build import build as build_graph
 from tardigate.graph.model import Graph
-from tardigate.netlist.build import Undescribed, build
+from tardigate.netlist.build import build
 from tardigate.netlist.check import check_structure
 from tardigate.netlist.flat import Flat
 from tardigate.netlist.names import Names
+from tardigate.netlist.strangers import Undescribed
 from tardigate.parts.draft import UndescribedModule, draft_text
 from tardigate.parts.kind import Kind, Origin
 from tardigate.parts.library import Library
@@ -135,21 +136,22 @@ def trails_of(
 def assumptions_of(loaded: Loaded, graph: Graph, grade: Grade, times: Times) -> tuple[Assumption, ...]:
     """Return what the figures rest on that nobody stated."""
     found = find_assumptions(loaded.flat, graph, grade, times)
-    if loaded.units_assumed:
-        found = (*found, Assumption("units_assumed", loaded.units_assumed))
-    return found
+    kinds, rated = loaded.flat.kinds, loaded.library.rated()
+    at_rated = np.array([kind.group == "part" and kind.name in rated for kind in kinds], np.bool_)
+    more = (
+        Assumption("at_rated_load", int(at_rated[loaded.flat.inst_kind].sum())),
+        Assumption("wire_rows_left_out", loaded.library.wire_rows()),
+        Assumption("units_assumed", loaded.units_assumed),
+    )
+    return (*found, *(assumption for assumption in more if assumption.count))
 
 
 def draft_of(loaded: Loaded) -> str:
     """Return a parts file skeleton for all that has no delay yet."""
     strangers = [
-        UndescribedModule(s.name, tuple((pin, None) for pin in _bits(s))) for s in loaded.undescribed
+        UndescribedModule(s.name, tuple((pin, s.ways.get(pin)) for pin in s.pins), s.pins) for s in loaded.undescribed
     ]
     return draft_text(loaded.missing, strangers)
-
-
-def _bits(stranger: Undescribed) -> list[str]:
-    return [pin if width == 1 else f"{pin}[{width - 1}:0]" for pin, width in stranger.pins.items()]
 
 
 def _units(request: Request, collector: Collector) -> list[Unit]:

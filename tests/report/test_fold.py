@@ -36,11 +36,16 @@ def test_the_ends_are_told_and_no_folded_hop_is_longer_than_one_between_them(
 
 
 def test_a_lone_hop_between_two_long_ones_is_told() -> None:
-    assert fold(np.array([1.0, 9.0, 1.0, 8.0, 1.0, 1.0, 2.0]), 4) == [
+    assert fold(np.array([1.0, 9.0, 1.0, 8.0, 1.0, 1.0, 1.0, 1.0, 2.0]), 4) == [
         (0, 1, False),
         (1, 2, False),
         (2, 3, False),
         (3, 4, False),
-        (4, 6, True),
-        (6, 7, False),
+        (4, 8, True),
+        (8, 9, False),
     ]
+
+
+def test_a_trail_is_told_whole_where_folding_would_save_next_to_nothing() -> None:
+    assert fold(np.array([1.0, 9.0, 1.0, 1.0, 1.0, 2.0]), 3) == [(i, i + 1, False) for i in range(6)]
+    assert len(fold(np.array([1.0, 9.0, 1.0, 1.0, 1.0, 1.0, 2.0]), 3)) == 4

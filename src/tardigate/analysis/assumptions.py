@@ -27,6 +27,8 @@ Key = Literal[
     "on_family_default",  # part instances on a family default
     "assigned_wires",  # assignments without operator, taken as wires of 0 ns
     "units_assumed",  # delays in the source without a `timescale`, taken as ns
+    "at_rated_load",  # part instances whose times are taken as at the rated load
+    "wire_rows_left_out",  # statements of parts files about wires that no figure counts
     "never_changing_nets",  # nets that no source reaches; they are left out of every figure
 ]
 

@@ -7,44 +7,36 @@ instances undescribed: `check` and the pipeline refuse what a figure would need.
 from __future__ import annotations
 
 from bisect import bisect_right
-from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, field
+from collections.abc import Iterable, Mapping, Sequence
 from typing import NamedTuple
 
 import numpy as np
+from numpy.typing import NDArray
 
-from tardigate.netlist.columns import Kinds
+from tardigate.netlist.columns import Block, Kinds
 from tardigate.netlist.constants import Value
 from tardigate.netlist.declare import Declarer
 from tardigate.netlist.delays import Delays
-from tardigate.netlist.elaborate import Elaborator
+from tardigate.netlist.elaborate import Elaborator, Strange
 from tardigate.netlist.flat import Flat
 from tardigate.netlist.interface import Interface, InterfacePin
 from tardigate.netlist.lookup import Lookup
 from tardigate.netlist.modules import Modules, collect, find_ring, find_top
 from tardigate.netlist.ports import template_ports
 from tardigate.netlist.stamp import TooLargeError, stamp
-from tardigate.netlist.template import Template
+from tardigate.netlist.strangers import Strangers, Undescribed
+from tardigate.netlist.template import Child, Template
 from tardigate.netlist.wiring import Wiring
+from tardigate.parts.kind import Way
 from tardigate.parts.library import Library
 from tardigate.parts.source_delay import SourceDelay, Triple
+from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
-from tardigate.source.span import Span
 from tardigate.syntax import tree
 from tardigate.syntax.verilog_reader import Unit
 
 MOST_TEMPLATES = 1 << 16
 """Modules times sets of parameters that one design may have."""
-
-
-@dataclass(slots=True)
-class Undescribed:
-    """A module that is instantiated and that nobody describes: where first, how often, pins as connected."""
-
-    name: str
-    place: Span
-    count: int = 0
-    pins: dict[str, int] = field(default_factory=dict)
 
 
 class Built(NamedTuple):
@@ -78,7 +70,7 @@ def build(
         collector.tell("N124", modules.span(found))
         collector.refuse()
         raise
-    return Built(found, flat, len({t.module for t in templates}), tuple(shop.strangers.values()), shop.assumed)
+    return Built(found, flat, len({t.module for t in templates}), shop.strangers.resolved(), shop.assumed)
 
 
 class _Shop:
@@ -87,7 +79,7 @@ class _Shop:
     def __init__(self, modules: Modules, library: Library, collector: Collector) -> None:
         self.modules, self.library, self.collector = modules, library, collector
         self.kinds = Kinds()
-        self.strangers: dict[str, Undescribed] = {}
+        self.strangers = Strangers()
         self.assumed = 0
         self._numbers: dict[tuple[str, tuple[tuple[str, Value], ...]], int] = {}
         self._work: list[tuple[str, dict[str, Value]]] = []
@@ -177,15 +169,24 @@ class _Shop:
             self._interfaces[number] = self._module_interface(*self._work[number])
         return self._interfaces[number], number
 
-    def undescribed(self, module: str, pins: Sequence[tuple[str, int]], place: int) -> None:
-        """Take note of an instance of something that nobody describes."""
+    def undescribed(self, strange: Sequence[Strange], driven: NDArray[np.bool_]) -> None:
+        """Take note of instances of what nobody describes."""
         assert self._at is not None
-        span = self._at.text.span(place, place + len(module))
-        stranger = self.strangers.setdefault(module, Undescribed(module, span))
-        stranger.count += 1
-        for at, (name, width) in enumerate(pins):
-            key = name or f"P{at + 1}"
-            stranger.pins[key] = max(width, stranger.pins.get(key, 1))
+        text = self._at.text
+        self.strangers.add(strange, [text.span(s.place, s.place + len(s.module)) for s in strange], driven)
+
+    def outputs(self, instances: Block, children: Sequence[Child]) -> Iterable[NDArray[np.int32]]:
+        """Yield the local nets at outputs of part instances and of modules below."""
+        start = np.cumsum(instances.count) - instances.count
+        for number in distinct(instances.kind).tolist():
+            rows = start[instances.kind == number]
+            for pin in np.flatnonzero(self.kinds.kinds[number].ways != Way.INPUT).tolist():
+                yield instances.pins[rows + pin]
+        for child in children:
+            interface = self._interfaces[child.template]
+            for port, first in zip(interface.pins, interface.first_bit, strict=False):
+                if port.way != Way.INPUT:
+                    yield child.joins[first : first + port.width]
 
     def parameter_names(self, module: str) -> list[str] | None:
         """Return the parameters that an instance may override; None where nobody says which there are."""

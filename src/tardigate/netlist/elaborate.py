@@ -6,20 +6,20 @@ kinds, interfaces and templates of others.
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
-from typing import Protocol
+from collections.abc import Iterable, Mapping, Sequence
+from typing import NamedTuple, Protocol
 
 import numpy as np
 from numpy.typing import NDArray
 
 from tardigate.netlist.bulk import Bulk, gate_terminals
-from tardigate.netlist.columns import Instances
+from tardigate.netlist.columns import Block, Instances
 from tardigate.netlist.connect import Connector, is_target
 from tardigate.netlist.constants import NotConstantError, Value, evaluate
 from tardigate.netlist.declare import Declarer
 from tardigate.netlist.delays import NO_DELAY, Delays
 from tardigate.netlist.expression import Expressions
-from tardigate.netlist.flat import CONSTANTS
+from tardigate.netlist.flat import CONSTANTS, OPEN
 from tardigate.netlist.implicit import connection_names
 from tardigate.netlist.interface import Interface, InterfacePin
 from tardigate.netlist.ports import template_ports
@@ -49,11 +49,23 @@ class Workshop(Protocol):
     def interface(self, module: str, parameters: Mapping[str, Value]) -> tuple[Interface, int] | None:
         """Return a module's interface and template number, None when there is no such module."""
 
-    def undescribed(self, module: str, pins: Sequence[tuple[str, int]], place: int) -> None:
-        """Take note of an instance of something that nobody describes: pin names (empty by order), widths."""
+    def undescribed(self, strange: Sequence[Strange], driven: NDArray[np.bool_]) -> None:
+        """Take note of instances of what nobody describes; `driven` tells which nets something known drives."""
+
+    def outputs(self, instances: Block, children: Sequence[Child]) -> Iterable[NDArray[np.int32]]:
+        """Yield the local nets at outputs of part instances and of modules below."""
 
     def parameter_names(self, module: str) -> list[str] | None:
         """Return a module's or part's parameters, in the order in which they may be overridden; None: any."""
+
+
+class Strange(NamedTuple):
+    """An instance, or array of `copies`, of a module that nobody describes: its pins and their local nets."""
+
+    module: str
+    place: int
+    copies: int
+    pins: tuple[tuple[str, tuple[int, ...]], ...]
 
 
 class Elaborator:
@@ -68,6 +80,7 @@ class Elaborator:
         self.delays, self.implicit = delays, implicit
         self.instances = Instances()
         self.children: list[Child] = []
+        self.strangers: list[Strange] = []
         self.delay: SourceDelay | None = None
         self._kinds: dict[tuple[str, int, int], int] = {}  # by operator, inputs and delay object
 
@@ -97,6 +110,8 @@ class Elaborator:
         start = np.concatenate(([0], np.cumsum(columns.count)))
         names = InstanceNames(self.unit.scan.names, columns.name, self.instances.others)
         self.children.sort(key=lambda child: child.place)
+        if self.strangers:
+            self.workshop.undescribed(self.strangers, self._driven(ports, columns))
         return Template(
             self.module.name, parameters, self.unit.text, self.module.at, ports, NetNames(self.variables),
             self.variables.net_places(), columns.kind, start, columns.pins, names, columns.place,
@@ -121,7 +136,7 @@ class Elaborator:
         if not self.implicit:
             for number in order:
                 name = self.unit.scan.names.text(number)
-                hint = self.declarer.suggestion(name, self.variables)
+                hint = self.declarer.suggestion(name, self.variables) if self.collector.room("N138") else None
                 span = self.unit.text.span(found[number], found[number] + len(name))
                 self.collector.tell("N138", span, name=name, hint=hint)
         if order:
@@ -207,8 +222,7 @@ class Elaborator:
         child = None if part else self.workshop.interface(item.module, overrides)
         for instance in item.instances:
             if part is None and child is None:
-                pins = [(c.pin, self._width(c)) for c in instance.connections]
-                self.workshop.undescribed(item.module, pins, item.at)
+                self._strange(item, instance)
                 continue
             interface, number = part or child or (Interface("", ()), 0)
             connections = self.connector.by_pin(instance, interface)
@@ -225,10 +239,23 @@ class Elaborator:
                 name = f"{instance.name}[{index}]" if instance.range is not None else instance.name
                 self.children.append(Child(name, number, np.array(of_copy, np.int32), instance.at))
 
-    def _width(self, connection: tree.Connection) -> int:
-        if connection.net is None:
-            return 1
-        return max(1, len(self.expressions.nets(connection.net)))
+    def _strange(self, item: tree.Instances, instance: tree.Instance) -> None:
+        indices = self.connector.array(instance.range)
+        if indices is None:
+            return
+        nets = [self.expressions.nets(c.net) if c.net is not None else [] for c in instance.connections]
+        names = [c.pin or f"P{at + 1}" for at, c in enumerate(instance.connections)]
+        pins = tuple(zip(names, map(tuple, nets), strict=True))
+        self.strangers.append(Strange(item.module, item.at, len(indices), pins))
+
+    def _driven(self, ports: Sequence[TemplatePort], columns: Block) -> NDArray[np.bool_]:
+        """Tell of each local net whether something that is known drives it."""
+        driven = np.zeros(self.variables.nets, np.bool_)
+        driven[:CONSTANTS] = True
+        driven[[net for port in ports if port.way == Way.INPUT for net in port.nets]] = True
+        for nets in self.workshop.outputs(columns, self.children):
+            driven[nets[nets != OPEN]] = True
+        return driven
 
     def _overrides(self, item: tree.Instances) -> dict[str, Value] | None:
         """Return the parameters that an instance statement overrides, None after telling (N168, N120)."""

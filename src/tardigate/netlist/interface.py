@@ -37,5 +37,6 @@ class Interface:
     def tell_unknown(self, pin: str, span: Span, collector: Collector) -> None:
         """Tell of a pin that is not there (N160)."""
         known = list(self._at)
-        hint = did_you_mean(pin, known) or f"Its pins are {', '.join(known[:12])}."
+        hint = did_you_mean(pin, known) if collector.room("N160") else None
+        hint = hint or f"Its pins are {', '.join(known[:12])}."
         collector.tell("N160", span, pin=pin, module=self.name, hint=hint)

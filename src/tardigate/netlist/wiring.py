@@ -64,7 +64,7 @@ class Wiring:
         name = reference.path[0]
         variable = self.variable(name)
         if variable < 0:
-            hint = self.declarer.suggestion(name, self.variables)
+            hint = self.declarer.suggestion(name, self.variables) if self.collector.room("N130") else None
             self.collector.tell("N130", self.span(reference.at, len(name)), name=name, hint=hint)
             return []
         base, width = int(self.variables.base[variable]), int(self.variables.width[variable])

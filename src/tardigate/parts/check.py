@@ -58,20 +58,20 @@ def check_aliases(families: Iterable[Family], parts: Mapping[str, Part], collect
     aliases = {name: to for family in families for name, to in family.aliases.items()}
     ringed: set[str] = set()
     for name, (target, place) in aliases.items():
-        chain = [name]
+        chain = {name: None}  # in order
         while target in aliases and target not in parts and target not in chain:
-            chain.append(target)
+            chain[target] = None
             target = aliases[target][0]
         if target in parts or ringed.intersection(chain):
             continue
         if target in chain:
-            ring = chain[chain.index(target) :]
+            ring = [*chain][[*chain].index(target) :]
             ringed.update(chain)
             related = tuple(Related(aliases[one][1].span(), f"`{one}`") for one in ring[1:])
             where = aliases[ring[0]][1].span()
             collector.tell("P017", where, related=related, ring=" → ".join([*ring, ring[0]]))
         else:
-            hint = did_you_mean(target, [*parts, *aliases])
+            hint = did_you_mean(target, [*parts, *aliases]) if collector.room("P016") else None
             collector.tell("P016", place.span(), hint=hint, what=f"alias `{name}`", name=target)
 
 

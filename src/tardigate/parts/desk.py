@@ -46,6 +46,6 @@ class Desk:
         self.faults += 1
         place = at if isinstance(at, Place) else self.place(at)
         if known is not None:
-            hint = did_you_mean(name, list(known)) or hint
+            hint = (did_you_mean(name, list(known)) if self.collector.room(code) else None) or hint
         beside = tuple(Related(where.span(), label) for where, label in related)
         self.collector.tell(code, place.span(), hint=hint, related=beside, name=name, **words)

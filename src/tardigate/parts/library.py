@@ -62,6 +62,17 @@ class Library:
         columns, assumed = choose_condition(families, condition, collector)
         return cls(families, columns, assumed)
 
+    def rated(self) -> frozenset[str]:
+        """Return the names of parts whose times hold at a rated load."""
+        return frozenset(part.name for family in self.families for part in family.parts if part.loads)
+
+    def wire_rows(self) -> int:
+        """Return how many statements about wires the parts files make."""
+        return sum(
+            len(wires.fanout) + bool(wires.more) + len(wires.nets) + (wires.load is not None)
+            for wires in (family.wires for family in self.families)
+        )
+
     def describes(self, module: str) -> bool:
         """Say whether a module's name is that of a part or alias."""
         return module in self._parts

@@ -34,6 +34,14 @@ WORDS = {
         "net that no source reaches: it never changes",
         "nets that no source reaches: they never change",
     ),
+    "at_rated_load": (
+        "part instance timed as at its rated load",
+        "part instances timed as at their rated load",
+    ),
+    "wire_rows_left_out": (
+        "statement about wires in the parts files, not counted",
+        "statements about wires in the parts files, not counted",
+    ),
     "units_assumed": (
         "delay in the source without a `timescale, taken as ns",
         "delays in the source without a `timescale, taken as ns",

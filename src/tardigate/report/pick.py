@@ -57,12 +57,14 @@ class Picker:
         found = [both_edges([])]
         faults = []
         for name in names:
+            # A name is one thing only (IEEE 1364-2005 clause 4.11); one with `*` means ports and instances, or
+            # else pins, or else nets: `alu.*` is what is in there, not what comes in from outside.
             of_name = self._of_ports(name)
             if "*" in name or not of_name:
-                for instance, pin in self._pins(name):
-                    of_name.append(of_instance(instance) if pin is None else of_pin(instance, pin))
-            if "*" in name or not of_name:  # a name is one thing only (IEEE 1364-2005 clause 4.11)
-                of_name += [both_edges([net]) for net in self._nets(name)]
+                pins = list(self._pins(name))
+                of_name += [of_instance(instance) for instance, pin in pins if pin is None]
+                of_name = of_name or [of_pin(instance, pin) for instance, pin in pins if pin is not None]
+            of_name = of_name or [both_edges([net]) for net in self._nets(name)]
             if not of_name:
                 faults.append(self._unknown(name))
             found += of_name

@@ -79,7 +79,8 @@ def _cells(row: Row, pins: str, scale: Scale, look: Look) -> list[Cell]:
     if isinstance(row, FoldRecord):
         told = f"{look.glyph('dot')} {counted(row.hops, 'other hop')}"
         return [(told, "quiet"), "", "", (delay, "quiet"), (over, "quiet"), "", ""]
-    place = f"{row.place.path}:{row.place.line}" if row.place else ""
+    # The file's own name is enough to tell it by here; JSON has the path.
+    place = f"{PurePath(row.place.path).name}:{row.place.line}" if row.place else ""
     return [row.instance, row.kind, pins, delay, over, row.net, place]
 
 

@@ -33,6 +33,10 @@ class Collector:
         else:
             self._beyond[diagnostic.code] = self._beyond.get(diagnostic.code, 0) + diagnostic.count
 
+    def room(self, code: str) -> bool:
+        """Tell whether another diagnostic of a code would be kept: if not, a costly hint is not worth making."""
+        return len(self._kept.get(code, ())) < MOST
+
     def tell(
         self,
         code: str,

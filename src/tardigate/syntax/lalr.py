@@ -8,7 +8,7 @@ is faulty: lark, on the same grammar, tells why.
 from __future__ import annotations
 
 import re
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from typing import Any
 
 Make = Callable[[list[Any]], Any]
@@ -66,10 +66,12 @@ class Machine:
             values.append(value)
         raise NotInGrammarError
 
-    def _tokens(self, text: str) -> list[tuple[str, Any]]:
-        """Return terminals with their values, None for words that no rule keeps, `$END` last."""
+    def _tokens(self, text: str) -> Iterator[tuple[str, Any]]:
+        """Yield terminals with their values, None for words that no rule keeps, `$END` last.
+
+        One at a time, so that a text that is refused is not read to its end.
+        """
         words, ignored, unseen, shifted = self._words, self._ignored, self._unseen, self._shifted
-        found: list[tuple[str, Any]] = []
         match = self._scan.scanner(text).match  # type: ignore[attr-defined]  # in re since 2.2, in no stub
         end = 0
         while (piece := match()) is not None and piece.lastgroup is not None:
@@ -80,16 +82,15 @@ class Machine:
             if kind in words:
                 kind = words[kind].get(piece.group(), kind)
             if kind in unseen:
-                found.append((kind, None))
+                yield kind, None
                 continue
             token = Token(piece.group())
             token.type, token.start_pos, token.end_pos = kind, start, end
             turn = shifted[kind]
-            found.append((kind, turn(token) if turn is not None else token))
+            yield kind, turn(token) if turn is not None else token
         if end != len(text):
             raise NotInGrammarError
-        found.append(("$END", None))
-        return found
+        yield "$END", None
 
 
 def _make(rule: dict[str, Any], maker: object) -> Make:
