@@ -6,6 +6,7 @@ Takes trail records, gives lines. Does not fold: the record says which hops are 
 from __future__ import annotations
 
 from collections.abc import Sequence
+from pathlib import PurePath
 
 from rich.text import Text
 
