@@ -8,7 +8,9 @@ from __future__ import annotations
 import importlib.util
 import sys
 from collections.abc import Callable, Sequence
+from functools import cache
 from pathlib import Path
+from types import ModuleType
 
 import numpy as np
 import pytest
@@ -129,9 +131,8 @@ def make_flat() -> Callable[..., Flat]:
     return _flat
 
 
-@pytest.fixture(scope="session")
-def random_verilog() -> Callable[..., str]:
-    """`random_verilog(seed, size=8, wild=False)`: the text of a random design whose top is `top`."""
+@cache
+def _random_text() -> ModuleType:
     path = Path(__file__).with_name("random_verilog.py")
     spec = importlib.util.spec_from_file_location("random_verilog", path)
     assert spec is not None
@@ -139,7 +140,19 @@ def random_verilog() -> Callable[..., str]:
     module = importlib.util.module_from_spec(spec)
     sys.modules[spec.name] = module  # dataclasses look their module up
     spec.loader.exec_module(module)
-    return module.design  # type: ignore[no-any-return]
+    return module
+
+
+@pytest.fixture(scope="session")
+def random_verilog() -> Callable[..., str]:
+    """`random_verilog(seed, size=8, wild=False)`: the text of a random design whose top is `top`."""
+    return _random_text().design  # type: ignore[no-any-return]
+
+
+@pytest.fixture(scope="session")
+def mutated() -> Callable[..., bytes]:
+    """`mutated(text, seed, parts=False)`: a text with one to four changes."""
+    return _random_text().mutated  # type: ignore[no-any-return]
 
 
 @pytest.fixture(scope="session")

@@ -1,15 +1,23 @@
-"""Random hierarchical Verilog for the tests that compare two ways of reading it.
+"""Random hierarchical Verilog, and random changes to texts.
 
 Takes a seed and a size, gives text: the same for the same. With `wild`, also what only this program's two ways
 are compared on: operators, delays, attributes, double declarations, and now and then a fault. Every gate has a
-name, every input is driven. Loaded by the fixture `random_verilog`.
+name, every input is driven. Loaded by the fixtures `random_verilog` and `mutated`.
 """
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass, field
 from random import Random
 
+VERILOG_WORDS = b"""module endmodule input output inout wire reg assign nand bufif1 ff supply0 parameter localparam signed #( ) ( [ ]
+{ } , ; . : ? = == & && ~ ^ + - * ** << >>> 1'b0 4'bx 2'sd1 0 1 3 99999999999 1.5 1e9 'h \\x " /* */ // (* *) ` `define `include
+`ifdef `endif `timescale always initial generate specify $clog2 @ [3:0] [a] #1 #(1:2:3) \n \x00 \xff""".split(b" ")
+PARTS_WORDS = b"""family part inputs output outputs inout times ns ps checks register latch posedge negedge when tpd tPLH tPZH tsu th
+gates operators default alias equivalent conditions provenance package parameter state load wires fanout { } ( ) [ ] , ; : = ~ & | ^
+? + - => *> .. 1 2:3:4 - 1e9 99999999999999999999 8'hff "x" " // \\x \n \x00 \xff family{ -1 1.5 pF V""".split(b" ")
+PIECES = re.compile(rb"\w+|\s+|[^\w\s]")
 GATES = ("and", "nand", "or", "nor", "xor", "xnor", "buf", "not", "bufif0", "bufif1", "notif0", "notif1")
 GAPS = (" ", "  ", "\n", "\t ", " /* ; ( */ ", " // it's\n", "\r\n")
 
@@ -246,3 +254,34 @@ def design(seed: int, size: int = 8, wild: bool = False) -> str:
     texts.append(_module(random, "top", below, size, wild)[1])
     random.shuffle(texts)
     return "".join(texts)
+
+
+def mutated(text: bytes, seed: int, parts: bool = False) -> bytes:
+    """Return a text with one to four changes; with `parts` new words are those of a parts file."""
+    words = PARTS_WORDS if parts else VERILOG_WORDS
+    random = Random(seed)
+    for _ in range(random.choice((1, 1, 2, 4))):
+        pieces = PIECES.findall(text) or [b" "]
+        at, other = random.randrange(len(pieces)), random.randrange(len(pieces))
+        last = min(len(pieces), at + random.choice((1, 1, 2, 8, 40)))
+        match random.randrange(8):
+            case 0:
+                del pieces[at:last]
+            case 1:
+                pieces[at:at] = pieces[at:last] * random.choice((1, 1, 3))
+            case 2:
+                pieces[at], pieces[other] = pieces[other], pieces[at]
+            case 3:
+                pieces[at] = pieces[other]
+            case 4 | 5:
+                pieces[at : at + random.randrange(2)] = [random.choice((b" ", b"")), random.choice(words), random.choice((b" ", b""))]
+            case 6:
+                pieces = pieces[:at]
+            case _:
+                changed = bytearray(text)
+                if changed:
+                    changed[random.randrange(len(changed))] ^= 1 << random.randrange(8)
+                text = bytes(changed)
+                continue
+        text = b"".join(pieces)
+    return text

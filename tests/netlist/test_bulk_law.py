@@ -55,3 +55,18 @@ def test_both_ways_are_the_same_on_circuits(circuit_folder: Path) -> None:
     assert len(paths) > 20
     for path in paths:
         assert _read(path, bulk=True) == _read(path, bulk=False), path.name
+
+
+@pytest.mark.parametrize("part", range(2))
+def test_both_ways_are_the_same_on_mutated_texts(
+    part: int, random_verilog: Callable[..., str], mutated: Callable[..., bytes], tmp_path: Path
+) -> None:
+    path = tmp_path / "board.v"
+
+    @settings(max_examples=150, deadline=None, derandomize=True)
+    @given(st.integers(0, 2**31 - 1), st.integers(0, 2**32 - 1))
+    def law(seed: int, change: int) -> None:
+        path.write_bytes(mutated(random_verilog(2 * seed + part, 4, wild=True).encode(), change))
+        assert _read(path, bulk=True) == _read(path, bulk=False), path.read_bytes()
+
+    law()

@@ -320,3 +320,8 @@ def test_structure_checks(told: Codes) -> None:
     assert told(head.format("bufif1 (y, a, b); bufif0 (y, b, a);")) == []
     assert told(head.format("bufif1 (y, a, b); buf (y, b);")) == ["N201"]
     assert told(head.format("buf (w, a);")) == ["N202"]
+
+
+@pytest.mark.parametrize("line", ["nand \\ (y, a, a);", "nand g (y, a, \\ );", "buf g (y, a); \\"])
+def test_3_7_1_a_backslash_alone_names_nothing(line: str, told: Codes) -> None:
+    assert told(f"module board(input a, output y);\n{line}\nendmodule\n") == ["V001"]

@@ -61,13 +61,13 @@ def test_marks_are_those_of_a_plain_lexer(text: bytes) -> None:
         if piece[:1] == b'"' and (len(piece) > 1 or text[first : first + 1] == b'"'):
             marks += list(range(first, token.end()))
         elif piece == b"\\":
-            marks.append(first)  # no escaped identifier: left to the grammar, as a word or not
+            marks.append(first)  # no escaped identifier: left to the grammar
         else:
             marks.append(first)
             if piece[:1] == b"\\" or re.fullmatch(rb"[\w$']+", piece):
                 words.append((token.end(), piece.lstrip(b"\\").decode() if piece[:1] != b"\\" else piece[1:].decode()))
     assert found.at.tolist() == marks
-    assert [(stop, name) for stop, name, _ in _words(found) if name] == words
+    assert [(stop, name) for stop, name, _ in _words(found)] == words
     assert (found.kind != SPACE).all()
     is_word = found.kind == WORD
     assert is_word.sum() == len(found.word)

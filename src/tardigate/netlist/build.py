@@ -26,6 +26,7 @@ from tardigate.netlist.ports import template_ports
 from tardigate.netlist.stamp import TooLargeError, stamp
 from tardigate.netlist.strangers import Strangers, Undescribed
 from tardigate.netlist.template import Child, Template
+from tardigate.netlist.variables import Variables
 from tardigate.netlist.wiring import Wiring
 from tardigate.parts.kind import Way
 from tardigate.parts.library import Library
@@ -84,6 +85,7 @@ class _Shop:
         self._numbers: dict[tuple[str, tuple[tuple[str, Value], ...]], int] = {}
         self._work: list[tuple[str, dict[str, Value]]] = []
         self._interfaces: dict[int, Interface] = {}
+        self._declared: dict[int, Variables] = {}
         self._lookups: dict[int, Lookup] = {}
         self._parts: dict[tuple[str, tuple[tuple[str, int], ...]], tuple[Interface, int]] = {}
         self._delays: dict[tuple[Triple, ...], SourceDelay] = {}
@@ -93,11 +95,11 @@ class _Shop:
         """Elaborate the modules on the list; elaborating one may put others on it."""
         templates: list[Template] = []
         while len(templates) < len(self._work):
-            name, values = self._work[len(templates)]
-            templates.append(self._elaborate(name, values))
+            templates.append(self._elaborate(len(templates)))
         return templates
 
-    def _elaborate(self, name: str, values: dict[str, Value]) -> Template:
+    def _elaborate(self, number: int) -> Template:
+        name, values = self._work[number]
         unit = self._at = self.modules.unit(name)
         start = self.modules.text(name).start
         state = _in_force([s[0] for s in unit.source.timescales], start)
@@ -107,13 +109,15 @@ class _Shop:
         implicit = nets < 0 or unit.source.default_nettypes[nets][1] != "none"
         module = self.modules.tree(name)
         elaborator = Elaborator(module, self._declarer(unit), values, self, delays, implicit)
-        template = elaborator.template(", ".join(f"{key}={value.value}" for key, value in values.items()))
+        words = ", ".join(f"{key}={value.value}" for key, value in values.items())
+        template = elaborator.template(words, self._variables(number))
         self.assumed += delays.assumed
         return template
 
     def _declarer(self, unit: Unit) -> Declarer:
-        lookup = self._lookups.setdefault(id(unit), Lookup(unit.scan.names))
-        return Declarer(unit, lookup, self.collector)
+        if id(unit) not in self._lookups:
+            self._lookups[id(unit)] = Lookup(unit.scan.names)
+        return Declarer(unit, self._lookups[id(unit)], self.collector)
 
     def number(self, name: str, overrides: Mapping[str, Value]) -> int:
         """Return the number of a module's template for a set of parameters; puts it on the list when new."""
@@ -127,12 +131,19 @@ class _Shop:
             self._work.append((name, values))
         return self._numbers[key]
 
-    def _module_interface(self, name: str, values: dict[str, Value]) -> Interface:
-        """Return a module's ports; what is wrong with them is told when the module itself is elaborated."""
+    def _variables(self, number: int) -> Variables:
+        """Return the declared nets of a template, once for the template and its interface."""
+        if number not in self._declared:
+            name, values = self._work[number]
+            declarer = self._declarer(self.modules.unit(name))
+            self._declared[number] = declarer.variables(self.modules.tree(name), values)
+        return self._declared[number]
+
+    def _module_interface(self, number: int) -> Interface:
+        """Return a module's ports; what is wrong with them is told again, and so once, by the module itself."""
+        name, values = self._work[number]
         unit, module = self.modules.unit(name), self.modules.tree(name)
-        lookup = self._lookups.setdefault(id(unit), Lookup(unit.scan.names))
-        declarer = Declarer(unit, lookup, Collector())
-        variables = declarer.variables(module, values)
+        declarer, variables = self._declarer(unit), self._variables(number)
         of_name = np.full(len(unit.scan.names) + 1, -1, np.int32)
         of_name[variables.name] = np.arange(len(variables))
         of_name[-1] = -1
@@ -166,7 +177,7 @@ class _Shop:
             return None
         number = self.number(module, parameters)
         if number not in self._interfaces:
-            self._interfaces[number] = self._module_interface(*self._work[number])
+            self._interfaces[number] = self._module_interface(number)
         return self._interfaces[number], number
 
     def undescribed(self, strange: Sequence[Strange], driven: NDArray[np.bool_]) -> None:

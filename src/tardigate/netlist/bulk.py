@@ -15,6 +15,7 @@ from numpy.typing import NDArray
 from tardigate.netlist.columns import Block
 from tardigate.netlist.flat import CONSTANTS, OPEN
 from tardigate.netlist.interface import Interface
+from tardigate.netlist.lookup import Lookup
 from tardigate.netlist.variables import RANGED, Variables
 from tardigate.parts.kind import Way
 from tardigate.source.arrays import distinct
@@ -38,6 +39,9 @@ class Rows(NamedTuple):
 
 UNCLEAR = -2
 
+FEW = 10
+"""So few instances of one part are sooner read one by one."""
+
 
 class Bulk:
     """Reads the plain instances of one module."""
@@ -45,12 +49,13 @@ class Bulk:
     def __init__(
         self,
         unit: Unit,
+        lookup: Lookup,
         variables: Variables,
         of_name: NDArray[np.int32],
         gate_kind: Callable[[str, int, int], int],
         part_kind: Callable[[str], tuple[Interface, int] | None],
     ) -> None:
-        self.unit, self.plain = unit, unit.plain
+        self.unit, self.plain, self.lookup = unit, unit.plain, lookup
         self.variables, self.of_name = variables, of_name
         self.gate_kind, self.part_kind = gate_kind, part_kind
 
@@ -78,7 +83,7 @@ class Bulk:
         blocks: list[Block] = []
         left: list[NDArray[np.int64]] = []
         heads = self.plain.head[statements]
-        gate_numbers = self.unit.scan.names.find_all(GATES)
+        gate_numbers = np.array(self.lookup.find_all(GATES), np.int32)
         is_gate = np.isin(heads, gate_numbers[gate_numbers >= 0])
         first = self.unit.scan.at[self.plain.first[statements]]
         if self.unit.scan.escaped is not None:
@@ -87,7 +92,11 @@ class Bulk:
             self._gates(statements[is_gate], gate_numbers, blocks, left)
         others = statements[~is_gate]
         for head in distinct(heads[~is_gate]).tolist():
-            self._parts(others[self.plain.head[others] == head], head, blocks, left)
+            those = others[self.plain.head[others] == head]
+            if len(those) < FEW:
+                left.append(those)
+            else:
+                self._parts(those, head, blocks, left)
         return blocks, np.sort(np.concatenate([*left, np.zeros(0, np.int64)]))
 
     def _count(self, statements: NDArray[np.int64]) -> NDArray[np.int64]:

@@ -24,7 +24,7 @@ from tardigate.netlist.implicit import connection_names
 from tardigate.netlist.interface import Interface, InterfacePin
 from tardigate.netlist.ports import template_ports
 from tardigate.netlist.template import Child, Template, TemplatePort
-from tardigate.netlist.variables import DRIVEN, WIRED, InstanceNames, NetNames
+from tardigate.netlist.variables import DRIVEN, WIRED, InstanceNames, NetNames, Variables
 from tardigate.netlist.wiring import Wiring
 from tardigate.parts.kind import Kind, Way
 from tardigate.parts.source_delay import SourceDelay
@@ -84,13 +84,13 @@ class Elaborator:
         self.delay: SourceDelay | None = None
         self._kinds: dict[tuple[str, int, int], int] = {}  # by operator, inputs and delay object
 
-    def template(self, parameters: str) -> Template:
-        """Elaborate."""
-        self.variables = variables = self.declarer.variables(self.module, self.values)
+    def template(self, parameters: str, variables: Variables) -> Template:
+        """Elaborate; `variables` are the declared nets."""
+        self.variables = variables
         of_name = np.full(len(self.unit.scan.names) + 1, -1, np.int32)
         of_name[variables.name] = np.arange(len(variables))
         of_name[-1] = -1
-        bulk = Bulk(self.unit, variables, of_name, self._gate_kind, lambda m: self.workshop.part(m, {}))
+        bulk = Bulk(self.unit, self.declarer.lookup, variables, of_name, self._gate_kind, lambda m: self.workshop.part(m, {}))
         plain = bulk.statements(self.module)
         self._declare_implicit(bulk, plain, of_name)
         self.wiring = Wiring(self.declarer, variables, self.values, of_name)

@@ -6,11 +6,12 @@ there are many.
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Collection
 
 from tardigate.syntax.intern import Interned
 
 _MANY = 2000
+"""Names in a file, or questions, up to which names are put in a table at once, or sought one at a time."""
 
 
 class Lookup:
@@ -20,21 +21,30 @@ class Lookup:
         self._names = names
         self._known: dict[str, int] = {}
         self._asked = 0
+        self._complete = False
+        if len(names) < _MANY:
+            self._complete_table()
+
+    def _complete_table(self) -> None:
+        self._complete = True
+        self._known = {self._names.text(i): i for i in range(len(self._names))}
 
     def find(self, text: str) -> int:
         """Return the number of a name, -1 when the file does not have it."""
         number = self._known.get(text)
-        if number is None:
-            self._asked += 1
-            if self._asked == _MANY:
-                self._known |= {self._names.text(i): i for i in range(len(self._names))}
-                return self._known.setdefault(text, -1)
-            number = self._known[text] = self._names.find(text) if self._asked < _MANY else -1
-        return number
+        if number is not None:
+            return number
+        if self._complete:
+            return -1
+        self._asked += 1
+        if self._asked < _MANY:
+            return self._known.setdefault(text, self._names.find(text))
+        self._complete_table()
+        return self._known.get(text, -1)
 
-    def find_all(self, texts: Iterable[str]) -> list[int]:
+    def find_all(self, texts: Collection[str]) -> list[int]:
         """Return the numbers of several names."""
-        missing = [text for text in texts if text not in self._known]
-        if len(missing) < _MANY:
+        if not self._complete:
+            missing = [text for text in texts if text not in self._known]
             self._known |= dict(zip(missing, self._names.find_all(missing).tolist(), strict=True))
-        return [self.find(text) for text in texts]
+        return [self._known.get(text, -1) for text in texts]

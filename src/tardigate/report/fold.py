@@ -8,7 +8,6 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-
 WORTH_IT = 3
 
 

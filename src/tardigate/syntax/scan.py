@@ -117,6 +117,7 @@ def _protect(data: bytes, classes: NDArray[np.uint8]) -> NDArray[np.uint8]:
         stop = np.append(spaces, len(data))[order]
         first = np.ones(len(start), bool)
         first[1:] = stop[1:] != stop[:-1]
+        first &= stop > start + 1  # a backslash with nothing behind it names nothing
         start, stop = start[first], stop[first]
         length = stop - start
         flat = np.arange(length.sum()) + np.repeat(start - (np.cumsum(length) - length), length)

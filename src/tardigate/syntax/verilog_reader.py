@@ -26,13 +26,17 @@ _RUN, _PORTS = b"\x01", b"\x02"
 
 
 class Unit(NamedTuple):
-    """One file, scanned: its text, marks, plain statements and the modules that stand in it."""
+    """One file, scanned: its text, marks, plain statements and the modules that stand in it.
+
+    `unread` lists the codes, and numbers of names, of words in the text that begin what is not read.
+    """
 
     source: Preprocessed
     scan: Scan
     marks: NDArray[np.uint8]
     plain: Plain
     modules: tuple[ModuleText, ...]
+    unread: tuple[tuple[str, NDArray[np.int32]], ...]
 
     @property
     def text(self) -> PlacedText:
@@ -49,7 +53,14 @@ def read_unit(source: Preprocessed, collector: Collector) -> Unit:
     found = scan(source.text.data)
     marks = refine(found, classify_names(found))
     modules = outline(found, marks, source.text, collector)
-    return Unit(source, found, marks, find_plain(found, marks), modules)
+    return Unit(source, found, marks, find_plain(found, marks), modules, _unread(found))
+
+
+def _unread(found: Scan) -> tuple[tuple[str, NDArray[np.int32]], ...]:
+    """Return the names in the text that begin what is not read, with the codes that refuse them."""
+    groups = (("V004", words.PROCEDURAL), ("V005", (*words.UNREAD, *words.SWITCHES)))
+    numbers = [(code, found.names.find_all(group)) for code, group in groups]
+    return tuple((code, those[those >= 0]) for code, those in numbers if (those >= 0).any())
 
 
 def parse_module(unit: Unit, module: ModuleText, *, bulk: bool = True) -> Module:
@@ -70,9 +81,8 @@ def _refuse_unread(unit: Unit, module: ModuleText) -> None:
     found = unit.scan
     window = slice(int(found.word_of[module.first]), int(found.word_of[module.stop - 1]) + 1)
     names = found.word[window]
-    for code, group in (("V004", words.PROCEDURAL), ("V005", (*words.UNREAD, *words.SWITCHES))):
-        numbers = found.names.find_all(group)
-        hits = np.isin(names, numbers[numbers >= 0])
+    for code, numbers in unit.unread:
+        hits = np.isin(names, numbers)
         if found.escaped is not None:
             hits &= ~found.escaped[window]
         places = np.flatnonzero(hits)
