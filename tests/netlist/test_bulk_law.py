@@ -21,6 +21,12 @@ SMALL = 21_000
 MEDIUM = ("s13207.v", "c2670.v", "c6288.v")
 
 
+@pytest.fixture(autouse=True)
+def even_few_instances_in_bulk(monkeypatch: pytest.MonkeyPatch) -> None:
+    """Take the quick way for every part, of which the small designs here have but few instances."""
+    monkeypatch.setattr("tardigate.netlist.bulk.FEW", 0)
+
+
 def _read(path: Path, bulk: bool) -> tuple[str, tuple[Diagnostic, ...]]:
     try:
         loaded = load(Request((str(path),), (str(FAMILY),), bulk=bulk))

@@ -7,6 +7,7 @@ kinds, interfaces and templates of others.
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
+from operator import attrgetter
 from typing import NamedTuple, Protocol
 
 import numpy as np
@@ -101,7 +102,7 @@ class Elaborator:
         for block in blocks:
             self.instances.add_block(block)
         items = [*self.module.items, *(bulk.as_tree(statement) for statement in left.tolist())]
-        for item in items:
+        for item in sorted(items, key=attrgetter("at")) if len(left) else items:  # in order of the text
             self._item(item)
         return self._made(parameters, ports)
 

@@ -63,8 +63,10 @@ class _Header:
         ):
             self._scalars(numbers, found)
             return
-        stops = scan.word_stop[span.first : span.last].tolist()
-        for number, stop in zip(numbers.tolist(), stops, strict=True):
+        stops = scan.word_stop[span.first : span.last]
+        if scan.escaped is not None:
+            stops = stops - scan.escaped[span.first : span.last]  # a place is that of the backslash
+        for number, stop in zip(numbers.tolist(), stops.tolist(), strict=True):
             name = scan.names.text(number)
             self._whole(name, name, stop - len(name))
 

@@ -46,11 +46,12 @@ class Diagnostic:
         related: tuple[Related, ...] = (),
         **words: object,
     ) -> Diagnostic:
-        """Make the diagnostic of a code; `words` fill its headline, `hint` stands in for the code's own."""
+        """Make the diagnostic of a code; `words` fill its headline and hint; `hint` stands in for the code's own."""
         entry = look_up(code)
         severity: Severity = "warning" if entry.severity == "warning" else "error"
-        message = entry.headline.format_map({key: printable(value) for key, value in words.items()})
-        return cls(code, severity, message, span, entry.hint if hint is None else hint, related)
+        shown = {key: printable(value) for key, value in words.items()}
+        message = entry.headline.format_map(shown)
+        return cls(code, severity, message, span, entry.hint.format_map(shown) if hint is None else hint, related)
 
     def counted(self, count: int) -> Diagnostic:
         """Return the same diagnostic for `count` like cases."""
