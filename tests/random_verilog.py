@@ -13,10 +13,14 @@ from random import Random
 
 VERILOG_WORDS = b"""module endmodule input output inout wire reg assign nand bufif1 ff supply0 parameter localparam signed #( ) ( [ ]
 { } , ; . : ? = == & && ~ ^ + - * ** << >>> 1'b0 4'bx 2'sd1 0 1 3 99999999999 1.5 1e9 'h \\x " /* */ // (* *) ` `define `include
-`ifdef `endif `timescale always initial generate specify $clog2 @ [3:0] [a] #1 #(1:2:3) \n \x00 \xff""".split(b" ")
+`ifdef `endif `timescale always initial generate specify $clog2 @ [3:0] [a] #1 #(1:2:3) \n \x00 \xff""".split(
+    b" "
+)
 PARTS_WORDS = b"""family part inputs output outputs inout times ns ps checks register latch posedge negedge when tpd tPLH tPZH tsu th
 gates operators default alias equivalent conditions provenance package parameter state load wires fanout { } ( ) [ ] , ; : = ~ & | ^
-? + - => *> .. 1 2:3:4 - 1e9 99999999999999999999 8'hff "x" " // \\x \n \x00 \xff family{ -1 1.5 pF V""".split(b" ")
+? + - => *> .. 1 2:3:4 - 1e9 99999999999999999999 8'hff "x" " // \\x \n \x00 \xff family{ -1 1.5 pF V""".split(
+    b" "
+)
 PIECES = re.compile(rb"\w+|\s+|[^\w\s]")
 GATES = ("and", "nand", "or", "nor", "xor", "xnor", "buf", "not", "bufif0", "bufif1", "notif0", "notif1")
 GAPS = (" ", "  ", "\n", "\t ", " /* ; ( */ ", " // it's\n", "\r\n")
@@ -66,7 +70,9 @@ class Writer:
         self.count += 1
         if self.random.random() < 0.1:
             return f"\\{stem}.{self.count}+{self.random.choice('a;/([')} "
-        return self.random.choice((f"{stem}{self.count}", f"{stem}_{self.count}$", f"{stem.upper()}_long_name_{self.count}"))
+        return self.random.choice(
+            (f"{stem}{self.count}", f"{stem}_{self.count}$", f"{stem.upper()}_long_name_{self.count}")
+        )
 
     def net(self, width: int) -> Net:
         """Declare a new net."""
@@ -106,7 +112,9 @@ class Writer:
             fit = [one for one in self.readable if one.width >= width]
             if fit:
                 return self.piece(self.random.choice(fit), width)
-            return "{" + ", ".join(self.piece(self.random.choice(self.readable), 1) for _ in range(width)) + "}"
+            return (
+                "{" + ", ".join(self.piece(self.random.choice(self.readable), 1) for _ in range(width)) + "}"
+            )
         step = 1 if net.left >= net.right else -1
         first = self.random.randrange(net.width - width + 1)
         low = net.right + step * first
@@ -147,11 +155,19 @@ class Writer:
 
     def attribute(self) -> str:
         """Return an attribute, mostly none."""
-        return self.random.choice(("(* keep *)", '(* note = "a;b", n = 2 *)')) if self.wild and self.random.random() < 0.05 else ""
+        return (
+            self.random.choice(("(* keep *)", '(* note = "a;b", n = 2 *)'))
+            if self.wild and self.random.random() < 0.05
+            else ""
+        )
 
     def delay(self) -> str:
         """Return a delay, mostly none."""
-        return self.random.choice(("#3", "#(1, 2)", "#(1:2:3)", "#1.5")) if self.wild and self.random.random() < 0.1 else ""
+        return (
+            self.random.choice(("#3", "#(1, 2)", "#(1:2:3)", "#1.5"))
+            if self.wild and self.random.random() < 0.1
+            else ""
+        )
 
     def gate(self) -> None:
         """Write a gate, or an array of them."""
@@ -163,7 +179,13 @@ class Writer:
         reads = [self.reading(copies if random.random() < 0.7 else 1) for _ in range(inputs)]
         drives = [self.driving(copies) for _ in range(outputs)]
         base = random.choice((0, 4))
-        bounds = "" if copies == 1 else f"[{base + copies - 1}:{base}]" if random.random() < 0.6 else f"[{base}:{base + copies - 1}]"
+        bounds = (
+            ""
+            if copies == 1
+            else f"[{base + copies - 1}:{base}]"
+            if random.random() < 0.6
+            else f"[{base}:{base + copies - 1}]"
+        )
         words = f"{kind} {self.delay()} {self.name('g')} {bounds} ({', '.join([*drives, *reads])});"
         self.lines.append(f"{self.attribute()} {words}")
 
@@ -172,13 +194,20 @@ class Writer:
         random = self.random
         copies = 2 if random.random() < 0.1 else 1
         pins = [(net.name, self.reading(net.width * random.choice((1, copies)))) for net in module.inputs]
-        pins += [(net.name, "" if random.random() < 0.1 else self.driving(net.width * copies)) for net in module.outputs]
+        pins += [
+            (net.name, "" if random.random() < 0.1 else self.driving(net.width * copies))
+            for net in module.outputs
+        ]
         if random.random() < 0.5:
             words = ", ".join(net for _, net in pins)
         else:
             random.shuffle(pins)
             words = ", ".join(f".{pin}({net})" for pin, net in pins)
-        values = random.choice(("", f"#({random.randrange(4)})", f"#(.P({random.randrange(4)}))")) if module.parameters else ""
+        values = (
+            random.choice(("", f"#({random.randrange(4)})", f"#(.P({random.randrange(4)}))"))
+            if module.parameters
+            else ""
+        )
         bounds = "[1:0]" if copies == 2 else ""
         self.lines.append(f"{self.attribute()} {module.name} {values} {self.name('u')} {bounds} ({words});")
 
@@ -214,18 +243,29 @@ def _module(random: Random, name: str, below: list[Module], size: int, wild: boo
     if wild and random.random() < 0.15:
         writer.fault()
     parameters = random.random() < 0.3
-    return Module(name, inputs, outputs, parameters), _text(random, name, inputs, outputs, parameters, writer.lines)
+    return Module(name, inputs, outputs, parameters), _text(
+        random, name, inputs, outputs, parameters, writer.lines
+    )
 
 
 def _port(writer: Writer, stem: str) -> Net:
     if writer.random.random() < 0.6:
         return Net(writer.name(stem))
     width = writer.random.randrange(1, 5)
-    return Net(writer.name(stem), width - 1, 0) if writer.random.random() < 0.8 else Net(writer.name(stem), 0, width - 1)
+    return (
+        Net(writer.name(stem), width - 1, 0)
+        if writer.random.random() < 0.8
+        else Net(writer.name(stem), 0, width - 1)
+    )
 
 
 def _text(
-    random: Random, name: str, inputs: tuple[Net, ...], outputs: tuple[Net, ...], parameters: bool, lines: list[str]
+    random: Random,
+    name: str,
+    inputs: tuple[Net, ...],
+    outputs: tuple[Net, ...],
+    parameters: bool,
+    lines: list[str],
 ) -> str:
     header = "#(parameter P = 1)" if parameters else ""
     ports = [("input", net) for net in inputs] + [("output", net) for net in outputs]
@@ -238,7 +278,9 @@ def _text(
         declared += [f"wire {net.range} {net.name} ;" for _, net in ports if random.random() < 0.3]
     text = f"module {name} {header} ({listed});\n" + "\n".join([*declared, *lines]) + "\nendmodule\n"
     if random.random() < 0.5:
-        text = "".join(random.choice(GAPS) if char == " " and random.random() < 0.1 else char for char in text)
+        text = "".join(
+            random.choice(GAPS) if char == " " and random.random() < 0.1 else char for char in text
+        )
     return text
 
 
@@ -274,7 +316,11 @@ def mutated(text: bytes, seed: int, parts: bool = False) -> bytes:
             case 3:
                 pieces[at] = pieces[other]
             case 4 | 5:
-                pieces[at : at + random.randrange(2)] = [random.choice((b" ", b"")), random.choice(words), random.choice((b" ", b""))]
+                pieces[at : at + random.randrange(2)] = [
+                    random.choice((b" ", b"")),
+                    random.choice(words),
+                    random.choice((b" ", b"")),
+                ]
             case 6:
                 pieces = pieces[:at]
             case _:

@@ -21,6 +21,7 @@ BODY = "module board(input a, output y);\n{}\nbuf #1 (y, a);\nendmodule\n"
 FAMILY = "family F {{\n{}\n}}\n"
 PART = "family F {{ part P {{ inputs A; output Y = {}; times ns {{ tpd A => Y 1; }} }} }}"
 DEEP = 100_000
+MANY = 10_000
 LONG = 10_000_000
 
 
@@ -51,7 +52,7 @@ VERILOG: dict[str, Callable[[], str]] = {
     "brackets": lambda: BODY.format("buf (w, " + "a[" * DEEP + "0" + "]" * DEEP + ");"),
     "parameter selects": lambda: BODY.format("parameter P = 0;\nwire [" + "P[" * DEEP + "0" + "]" * DEEP + ":0] w;"),
     "operators before": lambda: BODY.format("assign w = " + "~" * DEEP + "a;"),
-    "conditions": lambda: BODY.format("assign w = " + "a ? a : " * DEEP + "a;"),
+    "conditions": lambda: BODY.format("assign w = " + "a ? a : " * MANY + "a;"),
     "a long name": lambda: BODY.format("wire " + "n" * LONG + ";"),
     "a long name twice": lambda: BODY.format("wire " + "n" * LONG + ";\nbuf (" + "n" * LONG + ", a);"),
     "a long escaped name": lambda: BODY.format("wire \\" + "/" * LONG + " ;"),
@@ -80,7 +81,7 @@ VERILOG: dict[str, Callable[[], str]] = {
     "a width of a billion": lambda: BODY.format("wire [999999999:0] w;"),
     "a width beyond counting": lambda: BODY.format("wire [1 << 8000:0] w;"),
     "many wide nets": lambda: BODY.format("\n".join(f"wire [1048575:0] w{i};" for i in range(2000))),
-    "wide operators": lambda: BODY.format("wire [1048575:0] w;\nassign w = ~~~~~~~~w ^ (w & w) | ~w;"),
+    "wide operators": lambda: BODY.format("wire [524287:0] w;\nassign w = ~~w ^ (w & w) | ~w;"),
     "a wide port": lambda: "module board(input [262143:0] a, output [262143:0] y);\nassign #1 y = a;\nendmodule\n",
     "replications of replications": lambda: BODY.format("wire w = " + "{1000{" * 9 + "a" + "}}" * 9 + ";"),
     "a replication of a billion": lambda: BODY.format("wire w = {1000000000{a}};"),
@@ -99,8 +100,8 @@ VERILOG: dict[str, Callable[[], str]] = {
     + "module half(input a);\nless h [60000:0] (a);\nendmodule\nmodule less(input a);\nbuf #1 (w, a);\nendmodule\n",
     "doubling": lambda: _doubling(60),
     "ever new parameters": lambda: _growing(60, 2),
-    "modules without end": lambda: "module board(input a);\n" * DEEP,
-    "endmodules": lambda: "endmodule\n" * DEEP,
+    "modules without end": lambda: "module board(input a);\n" * MANY,
+    "endmodules": lambda: "endmodule\n" * MANY,
     "a define of itself": lambda: "`define A `A\n" + BODY.format("`A"),
     "defines that double": lambda: "\n".join(f"`define M{i} `M{i + 1} `M{i + 1}" for i in range(64)) + "\n`define M64 wire\n`M0\n",
     "arguments that double": lambda: "`define D(x) x x\n" + "`D(" * 60 + "a" + ")" * 60,
@@ -108,14 +109,14 @@ VERILOG: dict[str, Callable[[], str]] = {
     "an include of itself": lambda: '`include "board.v"\n',
     "an include of a folder": lambda: '`include "."\n',
     "conditions that stay open": lambda: "`ifdef A\n" * DEEP,
-    "a delay of many": lambda: BODY.format("buf #(" + "1, " * DEEP + "1) (w, a);"),
-    "many terminals": lambda: BODY.format("and #1 (w" + ", a" * DEEP + ");"),
-    "many pins": lambda: BODY.format("half h (" + ", ".join(f".p{i}(a)" for i in range(DEEP)) + ");"),
-    "many drivers": lambda: BODY.format("wire w;\n" + "buf #1 (w, a);\n" * (DEEP // 2)),
+    "a delay of many": lambda: BODY.format("buf #(" + "1, " * MANY + "1) (w, a);"),
+    "many terminals": lambda: BODY.format("and #1 (w" + ", a" * MANY + ");"),
+    "many pins": lambda: BODY.format("half h (" + ", ".join(f".p{i}(a)" for i in range(MANY)) + ");"),
+    "many drivers": lambda: BODY.format("wire w;\n" + "buf #1 (w, a);\n" * (MANY)),
     "many faults": lambda: BODY.format("assign w = nobody;\n" * 3000),
     "many ports of one net": lambda: f"module board({', '.join(f'.p{i}(a)' for i in range(20000))});\ninput a;\nendmodule\n",
     "one port many times": lambda: f"module board({'a, ' * 20000}a);\ninput a;\nendmodule\n",
-    "a loop of many": lambda: BODY.format("\n".join(f"not (n{i}, n{(i + 1) % DEEP});" for i in range(DEEP))),
+    "a loop of many": lambda: BODY.format("\n".join(f"not (n{i}, n{(i + 1) % MANY});" for i in range(MANY))),
     "a ring of modules": lambda: "".join(
         f"module m{i}(input a);\nm{(i + 1) % 3000} u (a);\nendmodule\n" for i in range(3000)
     ),
@@ -125,8 +126,8 @@ PARTS: dict[str, Callable[[], str]] = {
     "parentheses": lambda: PART.format("(" * DEEP + "A" + ")" * DEEP),
     "parentheses that stay open": lambda: PART.format("(" * DEEP),
     "operators before": lambda: PART.format("~" * DEEP + "A"),
-    "operators": lambda: PART.format("A" + " ^ A" * DEEP),
-    "conditions": lambda: PART.format("A ? A : " * DEEP + "A"),
+    "operators": lambda: PART.format("A" + " ^ A" * MANY),
+    "conditions": lambda: PART.format("A ? A : " * MANY + "A"),
     "braces": lambda: PART.format("{" * DEEP + "A" + "}" * DEEP),
     "families that stay open": lambda: "family F {" * DEEP,
     "a long name": lambda: "family " + "F" * LONG + " {}",
@@ -136,7 +137,7 @@ PARTS: dict[str, Callable[[], str]] = {
     "a large exponent": lambda: FAMILY.format("default ns { tpd 1e999999999; }"),
     "a small exponent": lambda: FAMILY.format("default ns { tpd 1e-999999999; }"),
     "a long exponent": lambda: FAMILY.format("default ns { tpd 1e" + "9" * LONG + "; }"),
-    "many columns": lambda: FAMILY.format("default ns { tpd 1" + " | 1" * DEEP + "; }"),
+    "many columns": lambda: FAMILY.format("default ns { tpd 1" + " | 1" * MANY + "; }"),
     "many inputs": lambda: FAMILY.format("gates ns { tpd nand(2..999999999999) 1; }"),
     "a wide pin": lambda: "family F { part P { inputs A[999999999:0]; output Y = A[0]; times ns { tpd A => Y 1; } } }",
     "a wide product": lambda: "family F { part P { inputs A[9999:0]; outputs Y[9999:0]; times ns { tpd A *> Y 1; } } }",

@@ -23,7 +23,7 @@ FAMILY = (Path(__file__).parents[1] / "data" / "circuits.parts").read_bytes()
 Run = Callable[[bytes, bytes], str]
 Mutated = Callable[..., bytes]
 
-FEW = settings(max_examples=400, deadline=None, derandomize=True)
+FEW = settings(max_examples=250, deadline=None, derandomize=True)
 
 
 @pytest.fixture
@@ -60,7 +60,10 @@ def _samples(suffix: str) -> list[bytes]:
 
 
 def test_mutated_circuits(run: Run, mutated: Mutated, circuit_folder: Path) -> None:
-    texts = [(circuit_folder / name).read_bytes() for name in ("c17.v", "s27.v", "c17_assign.v", "mux_4.v", "c432.v")]
+    texts = [
+        (circuit_folder / name).read_bytes()
+        for name in ("c17.v", "s27.v", "c17_assign.v", "mux_4.v", "c432.v")
+    ]
     ends: Counter[str] = Counter()
 
     @FEW
@@ -73,7 +76,9 @@ def test_mutated_circuits(run: Run, mutated: Mutated, circuit_folder: Path) -> N
 
 
 @pytest.mark.parametrize("part", range(2))
-def test_mutated_hierarchies(part: int, run: Run, mutated: Mutated, random_verilog: Callable[..., str]) -> None:
+def test_mutated_hierarchies(
+    part: int, run: Run, mutated: Mutated, random_verilog: Callable[..., str]
+) -> None:
     @FEW
     @given(st.integers(0, 2**32 - 1), st.integers(0, 2**32 - 1))
     def law(seed: int, change: int) -> None:
@@ -98,7 +103,9 @@ def test_mutated_samples(part: int, run: Run, mutated: Mutated) -> None:
 @pytest.mark.parametrize("part", range(2))
 def test_mutated_parts_files(part: int, run: Run, mutated: Mutated) -> None:
     texts = [*_samples(".parts"), FAMILY]
-    board = b"module board(input a, b, output y);\nDEMO u1 (.A(a), .B(b), .Y(y));\nnand (w, a, b);\nendmodule\n"
+    board = (
+        b"module board(input a, b, output y);\nDEMO u1 (.A(a), .B(b), .Y(y));\nnand (w, a, b);\nendmodule\n"
+    )
 
     @FEW
     @given(st.sampled_from(texts), st.integers(0, 2**31 - 1))

@@ -32,7 +32,9 @@ def _read(path: Path, bulk: bool) -> tuple[str, tuple[Diagnostic, ...]]:
         loaded = load(Request((str(path),), (str(FAMILY),), bulk=bulk))
     except InputRefusedError as refusal:
         return "refused", refusal.diagnostics
-    strangers = "\n".join(f"{s.name} {s.count} {s.place} {sorted(s.pins.items())}" for s in loaded.undescribed)
+    strangers = "\n".join(
+        f"{s.name} {s.count} {s.place} {sorted(s.pins.items())}" for s in loaded.undescribed
+    )
     return dump(loaded.flat, places=True) + strangers, loaded.warnings
 
 

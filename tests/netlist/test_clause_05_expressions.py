@@ -65,7 +65,10 @@ def test_5_1_each_operator_is_a_gate(assignment: str, instances: Lines) -> None:
 
 def _driven(instances: Lines, assignment: str) -> dict[str, str]:
     """Return what each net is driven by: `op(inputs)`, through results of other operators."""
-    made = {pins[0]: (kind.removeprefix("assign").strip(), pins[1:]) for kind, pins in map(_pins, instances(_module(f"assign {assignment};")))}
+    made = {
+        pins[0]: (kind.removeprefix("assign").strip(), pins[1:])
+        for kind, pins in map(_pins, instances(_module(f"assign {assignment};")))
+    }
 
     def text(net: str) -> str:
         if net not in made:
@@ -177,7 +180,10 @@ def test_5_2_1_ranges_that_ascend(instances: Lines) -> None:
     assert [_pins(line)[1] for line in lines] == [["y[5]", "a[1]"], ["y[6]", "a[2]"]]
     lines = instances(text.format("assign y = a[2-:2];"))
     assert [_pins(line)[1] for line in lines] == [["y[5]", "a[1]"], ["y[6]", "a[2]"]]
-    assert [_pins(line)[1] for line in instances(text.format("assign y = a;"))] == [["y[5]", "a[2]"], ["y[6]", "a[3]"]]
+    assert [_pins(line)[1] for line in instances(text.format("assign y = a;"))] == [
+        ["y[5]", "a[2]"],
+        ["y[6]", "a[3]"],
+    ]
 
 
 def test_4_3_negative_bounds(instances: Lines) -> None:

@@ -25,7 +25,9 @@ def test_7_3_many_outputs(instances: Lines) -> None:
 
 @pytest.mark.parametrize("gate", ["bufif0", "bufif1", "notif0", "notif1"])
 def test_7_4_three_state(gate: str, instances: Lines) -> None:
-    text = f"module board(input a, b, e, f, output y);\n{gate} g1 (y, a, e);\n{gate} g2 (y, b, f);\nendmodule\n"
+    text = (
+        f"module board(input a, b, e, f, output y);\n{gate} g1 (y, a, e);\n{gate} g2 (y, b, f);\nendmodule\n"
+    )
     assert instances(text) == [f"{gate} g1: out=y, in=a, control=e", f"{gate} g2: out=y, in=b, control=f"]
 
 
@@ -48,7 +50,9 @@ def test_7_1_6_arrays_deal_out_bits_and_repeat_scalars(instances: Lines) -> None
 
 
 def test_7_1_6_ascending_ranges_and_concatenations(instances: Lines) -> None:
-    text = "module board(input [0:1] a, input b, c, output [1:0] y);\nand ar [4:5] (y, {b, c}, a);\nendmodule\n"
+    text = (
+        "module board(input [0:1] a, input b, c, output [1:0] y);\nand ar [4:5] (y, {b, c}, a);\nendmodule\n"
+    )
     assert instances(text) == ["and ar[4]: out=y[1], in1=b, in2=a[0]", "and ar[5]: out=y[0], in1=c, in2=a[1]"]
 
 

@@ -23,7 +23,9 @@ def test_12_3_both_port_styles_are_the_same(dumped: Text) -> None:
 
 def test_12_3_4_a_direction_carries_on(dumped: Text) -> None:
     text = "module board(input [1:0] a, b, output y, z);\nand (y, a[0], b[1]);\nbuf (z, a[1]);\nendmodule\n"
-    assert dumped(text).startswith("input a[1] = a[1]\ninput a[0] = a[0]\ninput b[1] = b[1]\ninput b[0] = b[0]\noutput y")
+    assert dumped(text).startswith(
+        "input a[1] = a[1]\ninput a[0] = a[0]\ninput b[1] = b[1]\ninput b[0] = b[0]\noutput y"
+    )
 
 
 def test_12_3_3_renamed_ports_and_port_expressions(instances: Lines, dumped: Text) -> None:
@@ -82,7 +84,11 @@ def test_12_3_5_by_order_and_12_3_6_by_name_are_the_same(dumped: Text) -> None:
 
 def test_12_3_open_pins(instances: Lines) -> None:
     head = "module board(input [1:0] b, output [1:0] z);\nhalf u ({});\nendmodule\n" + HALF
-    wanted = ["and u.g: out=u.y, in1=1'b1, in2=b[0]", "buf u.h[0]: out=z[0], in=b[0]", "buf u.h[1]: out=z[1], in=b[1]"]
+    wanted = [
+        "and u.g: out=u.y, in1=1'b1, in2=b[0]",
+        "buf u.h[0]: out=z[0], in=b[0]",
+        "buf u.h[1]: out=z[1], in=b[1]",
+    ]
     assert instances(head.format("1'b1, b, , z")) == wanted
     assert instances(head.format(".a(1'b1), .b(b), .y(), .z(z)")) == wanted
     assert instances(head.format(".a(1'b1), .b(b), .z(z)")) == wanted
@@ -95,7 +101,10 @@ def test_an_input_that_is_left_open_inside_is_told(told: Codes) -> None:
 
 def test_12_3_connections_may_be_expressions_and_constants(instances: Lines) -> None:
     text = "module board(input a, c, output y);\nhalf u (.a(a & c), .b(2'b10), .y(y));\nendmodule\n" + HALF
-    assert instances(text)[:2] == ["and u.g: out=y, in1=assign:2.0, in2=1'b0", "assign & assign:&:2: out=assign:2.0, in1=a, in2=c"]
+    assert instances(text)[:2] == [
+        "and u.g: out=y, in1=assign:2.0, in2=1'b0",
+        "assign & assign:&:2: out=assign:2.0, in1=a, in2=c",
+    ]
 
 
 @pytest.mark.parametrize(
@@ -126,7 +135,11 @@ def test_connections_that_are_wrong(instance: str, codes: list[str], told: Codes
 
 def test_wide_pins_are_cut_and_filled(instances: Lines) -> None:
     text = "module board(input a, output y);\nhalf u (.a(a), .b(a), .z(y));\nendmodule\n" + HALF
-    assert instances(text) == ["and u.g: out=u.y, in1=a, in2=a", "buf u.h[0]: out=y, in=a", "buf u.h[1]: out=u.z[1], in=1'b0"]
+    assert instances(text) == [
+        "and u.g: out=u.y, in1=a, in2=a",
+        "buf u.h[0]: out=y, in=a",
+        "buf u.h[1]: out=u.z[1], in=1'b0",
+    ]
 
 
 # Parameters (clause 12.2, 4.10)
@@ -193,9 +206,13 @@ def test_4_5_implicit_nets(instances: Lines) -> None:
     ]  # fmt: skip
 
 
-@pytest.mark.parametrize("line", ["not (w, a);", "half u (a, w);", "half u (.a(a), .y(w));", "assign w = a;", "not #1 (w, a);"])
+@pytest.mark.parametrize(
+    "line", ["not (w, a);", "half u (a, w);", "half u (.a(a), .y(w));", "assign w = a;", "not #1 (w, a);"]
+)
 def test_19_2_default_nettype_none(line: str, told: Codes) -> None:
-    text = f"`default_nettype none\nmodule board(input wire a, output wire y);\n{line}\nbuf (y, a);\nendmodule\n"
+    text = (
+        f"`default_nettype none\nmodule board(input wire a, output wire y);\n{line}\nbuf (y, a);\nendmodule\n"
+    )
     text += "`default_nettype wire\nmodule half(input a, output y);\nbuf (y, a);\nendmodule\n"
     assert [code for code in told(text, top="board") if code != "N202"] == ["N138"]
 
@@ -235,7 +252,9 @@ endmodule
 
 @pytest.mark.parametrize("net", ["wand", "wor", "tri", "triand", "trior", "tri0", "tri1"])
 def test_4_6_wired_nets_may_have_several_drivers(net: str, told: Codes) -> None:
-    text = f"module board(input a, b, output y);\n{net} w;\nbuf (w, a);\nbuf (w, b);\nbuf (y, w);\nendmodule\n"
+    text = (
+        f"module board(input a, b, output y);\n{net} w;\nbuf (w, a);\nbuf (w, b);\nbuf (y, w);\nendmodule\n"
+    )
     assert told(text) == []
     assert told(text.replace(net, "wire")) == ["N201"]
 
@@ -283,7 +302,10 @@ def test_declarations_that_are_wrong(body: str, code: str, told: Codes) -> None:
         ("module board(a, y);\ninput a;\nbuf (y, a);\nendmodule\n", "N112"),
         ("module board(a, a, y);\ninput a;\noutput y;\nbuf (y, a);\nendmodule\n", "N114"),
         ("module board(a, .a(b), y);\ninput a, b;\noutput y;\nand (y, a, b);\nendmodule\n", "N114"),
-        ("module board(a, y);\ninput [1:0] a;\nwire [2:0] a;\noutput y;\nbuf (y, a[0]);\nendmodule\n", "N111"),
+        (
+            "module board(a, y);\ninput [1:0] a;\nwire [2:0] a;\noutput y;\nbuf (y, a[0]);\nendmodule\n",
+            "N111",
+        ),
         ("module board({a, y});\ninput a;\noutput y;\nbuf (y, a);\nendmodule\n", "N112"),
         ("module board(input a, output y);\nboard u (a, y);\nendmodule\n", "N106"),
         ("", "N104"),

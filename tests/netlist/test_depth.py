@@ -25,13 +25,18 @@ def _settles(tmp_path: Path, text: str) -> float:
 def test_a_chain_of_200_000_inverters_declared_output_first(tmp_path: Path) -> None:
     count = 200_000
     gates = [f"not g{i} (n{i + 1}, n{i});" for i in reversed(range(count))]
-    text = "module board(n0, y);\ninput n0;\noutput y;\nbuf last (y, n%d);\n%s\nendmodule\n" % (count, "\n".join(gates))
+    text = "module board(n0, y);\ninput n0;\noutput y;\nbuf last (y, n%d);\n%s\nendmodule\n" % (
+        count,
+        "\n".join(gates),
+    )
     assert _settles(tmp_path, text) == count + 1
 
 
 def test_a_hierarchy_of_2_000_modules(tmp_path: Path) -> None:
     depth = 2000
-    lines = [f"module m{i}(input a, output y);\nm{i + 1} u (a, w);\nnot g (y, w);\nendmodule" for i in range(depth)]
+    lines = [
+        f"module m{i}(input a, output y);\nm{i + 1} u (a, w);\nnot g (y, w);\nendmodule" for i in range(depth)
+    ]
     lines.append(f"module m{depth}(input a, output y);\nnot g (y, a);\nendmodule")
     assert _settles(tmp_path, "\n".join(lines)) == depth + 1
 
@@ -55,7 +60,10 @@ EXPRESSIONS = {
 @pytest.mark.parametrize("shape", EXPRESSIONS)
 def test_expressions_of_5_000_operators(shape: str, tmp_path: Path) -> None:
     expression, depth = EXPRESSIONS[shape]
-    assert _settles(tmp_path, f"module board(input a, output y);\nassign y = {expression};\nendmodule\n") == depth
+    assert (
+        _settles(tmp_path, f"module board(input a, output y);\nassign y = {expression};\nendmodule\n")
+        == depth
+    )
 
 
 def test_constant_expressions_of_5_000_operators(tmp_path: Path) -> None:

@@ -50,7 +50,9 @@ class Other:
                 self._modules(top)
         errors = [str(d.code) for d in compilation.getAllDiagnostics() if d.isError()]
         assert not errors
-        self.pins = {pin: self._find(bit) if isinstance(bit, tuple) else bit for pin, bit in self.pins.items()}
+        self.pins = {
+            pin: self._find(bit) if isinstance(bit, tuple) else bit for pin, bit in self.pins.items()
+        }
 
     def _find(self, bit: Bit) -> Bit:
         while bit in self._above:
@@ -106,7 +108,9 @@ def _constant(expression: Any) -> int:
         expression = expression.operand
     if expression.kind == ExpressionKind.UnaryOp:
         return -_constant(expression.operand)
-    return int(expression.value if expression.kind == ExpressionKind.IntegerLiteral else expression.constant.value)
+    return int(
+        expression.value if expression.kind == ExpressionKind.IntegerLiteral else expression.constant.value
+    )
 
 
 def _bits(path: str, expression: Any) -> list[Any]:

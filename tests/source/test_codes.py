@@ -32,7 +32,9 @@ def _words(sample: Mapping[str, str], code: str) -> list[str]:
 
 
 @pytest.fixture
-def told(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]) -> Callable[..., tuple[int, set[str]]]:
+def told(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capsys: pytest.CaptureFixture[str]
+) -> Callable[..., tuple[int, set[str]]]:
     """Run the tool on a sample; return its status and the codes of all it told."""
 
     def act(sample: Mapping[str, str], code: str) -> tuple[int, set[str]]:
@@ -127,6 +129,8 @@ def test_n122_more_gates_than_may_come_of_operators(tmp_path: Path, monkeypatch:
 def test_n125_more_sets_of_parameters_than_may_be(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     path = tmp_path / "board.v"
     uses = "\n".join(f"half #({i}) u{i} (a);" for i in range(9))
-    path.write_text(f"module board(input a);\n{uses}\nendmodule\nmodule half(input a);\nparameter P = 1;\nendmodule\n")
+    path.write_text(
+        f"module board(input a);\n{uses}\nendmodule\nmodule half(input a);\nparameter P = 1;\nendmodule\n"
+    )
     monkeypatch.setattr(build, "MOST_TEMPLATES", 5)
     assert _codes(path) == ["N125"]

@@ -17,7 +17,9 @@ def _intern(words: list[bytes]) -> Interned:
     return intern(padded, np.concatenate(([0], stop[:-1])).astype(np.int32), stop.astype(np.int32))
 
 
-words = st.lists(st.binary(min_size=1, max_size=40).filter(lambda word: 0 not in word), min_size=1, max_size=60)
+words = st.lists(
+    st.binary(min_size=1, max_size=40).filter(lambda word: 0 not in word), min_size=1, max_size=60
+)
 
 
 def _holds(names: list[bytes]) -> None:

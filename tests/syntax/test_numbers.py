@@ -49,7 +49,9 @@ def test_what_is_not_whole_stays_text(text: str) -> None:
     assert read_number(text, 3) == Decimal(text.replace("_", ""), 3)
 
 
-@pytest.mark.parametrize("text", ["4'd3f", "2'b12", "3'o8", "4'dx1", "4'd1x", "0'b0", "4'h_", "'b_", "8'b0120"])
+@pytest.mark.parametrize(
+    "text", ["4'd3f", "2'b12", "3'o8", "4'dx1", "4'd1x", "0'b0", "4'h_", "'b_", "8'b0120"]
+)
 def test_a_digit_or_width_that_cannot_be(text: str) -> None:
     with pytest.raises(BadNumberError):
         read_number(text, 0)

@@ -12,7 +12,11 @@ from tardigate.syntax.tree import Binary, Expression, Reference
 
 def _text(node: Expression) -> str:
     assert isinstance(node, Binary | Reference)
-    return node.path[0] if isinstance(node, Reference) else f"({_text(node.left)}{node.operator}{_text(node.right)})"
+    return (
+        node.path[0]
+        if isinstance(node, Reference)
+        else f"({_text(node.left)}{node.operator}{_text(node.right)})"
+    )
 
 
 def _row(words: list[str]) -> str:
@@ -29,7 +33,10 @@ def _row(words: list[str]) -> str:
         ("a - b - c", "((a-b)-c)"),
         ("a | b & c", "(a|(b&c))"),
         ("a & b | c", "((a&b)|c)"),
-        ("a || b && c | d ^ e & f == g < h << i + j * k ** l", "(a||(b&&(c|(d^(e&(f==(g<(h<<(i+(j*(k**l)))))))))))"),
+        (
+            "a || b && c | d ^ e & f == g < h << i + j * k ** l",
+            "(a||(b&&(c|(d^(e&(f==(g<(h<<(i+(j*(k**l)))))))))))",
+        ),
         ("a ** b ** c", "((a**b)**c)"),
         ("a ^ b ~^ c", "((a^b)~^c)"),
         ("a << b + c", "(a<<(b+c))"),

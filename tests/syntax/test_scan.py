@@ -10,7 +10,23 @@ from hypothesis import strategies as st
 
 from tardigate.syntax.scan import SPACE, WORD, Scan, scan
 
-PIECES = ["a", "b1", "_x$", "\\", "\\a+b ", "\\a ", "\\q\\r ", "1'b0", "4 'hf", '"', '"s\\"t"', "(", ")", ",", ";"]
+PIECES = [
+    "a",
+    "b1",
+    "_x$",
+    "\\",
+    "\\a+b ",
+    "\\a ",
+    "\\q\\r ",
+    "1'b0",
+    "4 'hf",
+    '"',
+    '"s\\"t"',
+    "(",
+    ")",
+    ",",
+    ";",
+]
 PIECES += [".", "[", "]", " ", "\n", "\t", "+", "{", "}", "#", "*"]
 TOKENS = re.compile(rb'\\[^ \t\r\n\f\v]*|"(?:\\.|[^"\\\n])*"?|[\w$\']+|[^ \t\r\n\f\v]', re.DOTALL | re.ASCII)
 texts = st.lists(st.sampled_from(PIECES), max_size=30).map("".join).map(str.encode)
@@ -18,7 +34,11 @@ texts = st.lists(st.sampled_from(PIECES), max_size=30).map("".join).map(str.enco
 
 def _words(found: Scan) -> list[tuple[int, str, bool]]:
     return [
-        (int(found.word_stop[at]), found.names.text(int(name)), bool(found.escaped is not None and found.escaped[at]))
+        (
+            int(found.word_stop[at]),
+            found.names.text(int(name)),
+            bool(found.escaped is not None and found.escaped[at]),
+        )
         for at, name in enumerate(found.word)
     ]
 
@@ -31,7 +51,7 @@ def _words(found: Scan) -> list[tuple[int, str, bool]]:
         (b"\\bus+index \\{a,b} x", ["bus+index", "{a,b}", "x"]),
         (b"a$b _c", ["a$b", "_c"]),
         (b'x "a b ; c" y', ["x", "y"]),
-        (b'\\a"b c"d', ["a\"b", "c"]),
+        (b'\\a"b c"d', ['a"b', "c"]),
         (b"\\a\\b c", ["a\\b", "c"]),
         (b"g\\a ", ["g", "a"]),
         (b"", []),
@@ -65,7 +85,9 @@ def test_marks_are_those_of_a_plain_lexer(text: bytes) -> None:
         else:
             marks.append(first)
             if piece[:1] == b"\\" or re.fullmatch(rb"[\w$']+", piece):
-                words.append((token.end(), piece.lstrip(b"\\").decode() if piece[:1] != b"\\" else piece[1:].decode()))
+                words.append(
+                    (token.end(), piece.lstrip(b"\\").decode() if piece[:1] != b"\\" else piece[1:].decode())
+                )
     assert found.at.tolist() == marks
     assert [(stop, name) for stop, name, _ in _words(found)] == words
     assert (found.kind != SPACE).all()

@@ -211,8 +211,7 @@ def _read(
     has_name = (marks[second] == NAME) & ~is_declaration
     name = np.full(len(first), -1, np.int32)
     name[has_name] = _names_at(scan, second[has_name])
-    terms = _terms(marks, first, stop, depth, bool(is_declaration.any()))
-    of_statement = np.searchsorted(terms, np.append(first, stop[-1] if len(stop) else 0))
+    terms, start = _terms(marks, first, stop, depth, bool(is_declaration.any()))
     net = _nets(scan, marks, terms)
     pin = np.full(len(terms), -1, np.int32)
     by_name = np.flatnonzero(depth[terms] == 2)
@@ -223,7 +222,7 @@ def _read(
         bit[selected] = _numbers(scan, _names_at(scan, terms[selected] + 2))
     return Plain(
         first.astype(np.int32), stop.astype(np.int32), _names_at(scan, first), is_declaration, name,
-        of_statement.astype(np.int64), pin, net, bit, scan.at[terms],
+        start, pin, net, bit, scan.at[terms],
     )  # fmt: skip
 
 
@@ -239,10 +238,13 @@ def _terms(
     stop: NDArray[np.int64],
     depth: NDArray[np.int8],
     declarations: bool,
-) -> NDArray[np.int64]:
-    """Return the marks that are connections of plain statements: a net, a constant, or the `)` of an open pin."""
+) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
+    """Return the marks that are connections, and where those of each statement begin among them.
+
+    A connection is a net, a constant, or the `)` of an open pin.
+    """
     if not len(first):
-        return np.zeros(0, np.int64)
+        return np.zeros(0, np.int64), np.zeros(1, np.int64)
     low, high = int(first[0]), int(stop[-1])
     kind, level, before = marks[low:high], depth[low:high], _shift(marks[low:high], 1)
     apart = (before == OPEN) | (before == COMMA)
@@ -256,7 +258,8 @@ def _terms(
         inside[first - low] += 1
         inside[stop - low] -= 1
         term &= np.cumsum(inside[:-1], dtype=np.int8).view(bool)
-    return np.flatnonzero(term) + low
+    before = np.cumsum(term, dtype=np.int32)  # a statement's first mark is no connection
+    return np.flatnonzero(term) + low, np.append(before[first - low], before[-1]).astype(np.int64)
 
 
 def _nets(scan: Scan, marks: NDArray[np.uint8], terms: NDArray[np.int64]) -> NDArray[np.int32]:
