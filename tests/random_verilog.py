@@ -5,6 +5,7 @@ are compared on: operators, delays, attributes, double declarations, and now and
 name, every input is driven. Loaded by the fixtures `random_verilog` and `mutated`.
 """
 
+# ruff: noqa: E501 - a case of a table stands on one line
 from __future__ import annotations
 
 import re
@@ -102,9 +103,9 @@ class Writer:
             return f"{{{times}{{{self.reading(width // times, depth + 1)}}}}}"
         if self.wild and shape < 0.3 and depth < 2:
             return self.operators(width, depth + 1)
-        return self.piece(net, width, depth)
+        return self.piece(net, width)
 
-    def piece(self, net: Net, width: int, depth: int = 3) -> str:
+    def piece(self, net: Net, width: int) -> str:
         """Return a part of a net, or an expression when the net is too narrow."""
         if net.width == width and (net.left is None or self.random.random() < 0.6):
             return net.name

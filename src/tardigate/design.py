@@ -189,7 +189,9 @@ class Design:
         """
         return self._trails(count, False, grade, sources, sinks)
 
-    def _trails(self, count: int, slow: bool, grade: Grade, sources: Names, sinks: Names) -> tuple[Trail, ...]:
+    def _trails(
+        self, count: int, slow: bool, grade: Grade, sources: Names, sinks: Names
+    ) -> tuple[Trail, ...]:
         begin, end = self._picker.sources(_names(sources)), self._picker.sinks(_names(sinks))
         found = trails_of(self.loaded, self.graph, grade, count, slow, begin, end)
         return tuple(_trail(self._records.trail(trail, None, True)) for trail in found)
@@ -236,15 +238,25 @@ def read(
     return Design(
         load(
             Request(
-                tuple(str(file) for file in files), tuple(str(file) for file in several), top,
-                tuple(str(folder) for folder in include), tuple((define or {}).items()), condition, grade,
+                tuple(str(file) for file in files),
+                tuple(str(file) for file in several),
+                top,
+                tuple(str(folder) for folder in include),
+                tuple((define or {}).items()),
+                condition,
+                grade,
             )  # fmt: skip
         )
     )
 
 
 def read_text(
-    verilog: str, *, parts: str = "", top: str | None = None, condition: str | None = None, grade: Grade = "span"
+    verilog: str,
+    *,
+    parts: str = "",
+    top: str | None = None,
+    condition: str | None = None,
+    grade: Grade = "span",
 ) -> Design:
     """Read a design from a text, its parts from another; see `read`."""
     file = SourceFile("design.v", verilog.encode())

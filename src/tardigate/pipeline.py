@@ -149,7 +149,8 @@ def assumptions_of(loaded: Loaded, graph: Graph, grade: Grade, times: Times) -> 
 def draft_of(loaded: Loaded) -> str:
     """Return a parts file skeleton for all that has no delay yet."""
     strangers = [
-        UndescribedModule(s.name, tuple((pin, s.ways.get(pin)) for pin in s.pins), s.pins) for s in loaded.undescribed
+        UndescribedModule(s.name, tuple((pin, s.ways.get(pin)) for pin in s.pins), s.pins)
+        for s in loaded.undescribed
     ]
     return draft_text(loaded.missing, strangers)
 

@@ -85,7 +85,13 @@ def large_netlist(runs: int) -> Row:
     pace = process(tardigate("pace", file, "--parts", CIRCUIT_PARTS))
     slang = process([PYTHON, str(Path(__file__).parent / "elaborate_with_pyslang.py"), str(file)])
     times = in_turn(pace, slang, runs)
-    return Row("large-netlist", "pace b19_Cg.v (8.7 MB), process", "pyslang parse + elaborate, process", *times, "< 1")
+    return Row(
+        "large-netlist",
+        "pace b19_Cg.v (8.7 MB), process",
+        "pyslang parse + elaborate, process",
+        *times,
+        "< 1",
+    )
 
 
 def board(runs: int) -> Row:
@@ -94,7 +100,9 @@ def board(runs: int) -> Row:
     parts = sorted((ROOT / "examples" / "board").glob("*.parts"))
     pace = process(tardigate("pace", *files, "--parts", *parts))
     times = in_turn(pace, process(IMPORTS), runs)
-    return Row("board", "pace examples/board, process", "import numpy, lark, rich.console, process", *times, "<= 2")
+    return Row(
+        "board", "pace examples/board, process", "import numpy, lark, rich.console, process", *times, "<= 2"
+    )
 
 
 def bulk_reading(runs: int) -> Row:
@@ -107,7 +115,9 @@ def bulk_reading(runs: int) -> Row:
         return lambda: void(load(Request((file,), (parts,), bulk=bulk)))
 
     times = in_turn(read(True), read(False), runs)
-    return Row("bulk-reading", "load c7552.v (117 KB) in bulk", "the same all through the grammar", *times, "< 0.2")
+    return Row(
+        "bulk-reading", "load c7552.v (117 KB) in bulk", "the same all through the grammar", *times, "< 0.2"
+    )
 
 
 def sweeps(runs: int) -> Row:
@@ -126,7 +136,9 @@ def sweeps(runs: int) -> Row:
             np.maximum.reduceat(taken, graph.head_start[:-1])
 
     times = in_turn(lambda: void(times_of(graph, "span")), floor, max(runs, 9))
-    return Row("sweeps", "both sweeps, both edges, b19_Cg", "numpy gather-add-maximum, as many hops", *times, "<= 4")
+    return Row(
+        "sweeps", "both sweeps, both edges, b19_Cg", "numpy gather-add-maximum, as many hops", *times, "<= 4"
+    )
 
 
 def many_trails(runs: int) -> Row:
@@ -149,15 +161,27 @@ def deep_chain(runs: int) -> Row:
         count = 200_000
         lines = [f"  not g{i} (n{i + 1}, n{i});" for i in range(count)]
         deep.write_text(
-            f"module deep(n0, n{count});\n  input n0;\n  output n{count};\n" + "\n".join(reversed(lines)) + "\nendmodule\n"
+            f"module deep(n0, n{count});\n  input n0;\n  output n{count};\n"
+            + "\n".join(reversed(lines))
+            + "\nendmodule\n"
         )
         lines = [f"  not g{i} (y{i}, a{i});" for i in range(count)]
         ports = ", ".join(f"a{i}, y{i}" for i in range(count))
         ins, outs = ", ".join(f"a{i}" for i in range(count)), ", ".join(f"y{i}" for i in range(count))
-        wide.write_text(f"module wide({ports});\n  input {ins};\n  output {outs};\n" + "\n".join(lines) + "\nendmodule\n")
+        wide.write_text(
+            f"module wide({ports});\n  input {ins};\n  output {outs};\n" + "\n".join(lines) + "\nendmodule\n"
+        )
         words = ("--parts", CIRCUIT_PARTS)
-        times = in_turn(process(tardigate("pace", deep, *words)), process(tardigate("pace", wide, *words)), runs)
-    return Row("deep-chain", "pace, 200,000 inverters in a chain", "pace, 200,000 inverters side by side", *times, "<= 6")
+        times = in_turn(
+            process(tardigate("pace", deep, *words)), process(tardigate("pace", wide, *words)), runs
+        )
+    return Row(
+        "deep-chain",
+        "pace, 200,000 inverters in a chain",
+        "pace, 200,000 inverters side by side",
+        *times,
+        "<= 6",
+    )
 
 
 def void(_result: object) -> None:
@@ -188,7 +212,9 @@ def main() -> None:
         print(f"{row.work:38} {row.seconds:8.3f} s   {row.against:44} {row.other_seconds:8.3f} s   "
               f"ratio {row.ratio:6.2f}   goal {row.goal}", flush=True)  # fmt: skip
     if given.json:
-        given.json.write_text(json.dumps([{**asdict(row), "ratio": row.ratio} for row in rows], indent=2) + "\n")
+        given.json.write_text(
+            json.dumps([{**asdict(row), "ratio": row.ratio} for row in rows], indent=2) + "\n"
+        )
 
 
 if __name__ == "__main__":

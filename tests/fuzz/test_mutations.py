@@ -1,7 +1,7 @@
 """Mutated real texts and random bytes: a diagnostic or a figure, never another exception.
 
-The texts are circuits, the samples of the table of codes and random hierarchies; the mutations flip bytes, cut,
-repeat and swap words, and put words of the language where they do not belong.
+The texts are circuits, the samples of the table of codes and random hierarchies; the mutations flip bytes,
+cut, repeat and swap words, and put words of the language where they do not belong.
 """
 
 from __future__ import annotations
@@ -26,6 +26,12 @@ Mutated = Callable[..., bytes]
 FEW = settings(max_examples=250, deadline=None, derandomize=True)
 
 
+def _refused(refusal: InputRefusedError) -> str:
+    assert refusal.diagnostics
+    assert str(refusal)
+    return "refused"
+
+
 @pytest.fixture
 def run(tmp_path: Path) -> Run:
     """Read a board and a parts file and reckon; return how it ended."""
@@ -38,9 +44,7 @@ def run(tmp_path: Path) -> Run:
             loaded = load(Request((str(board),), (str(family),)))
             times = times_of(graph_of(loaded), "span")
         except InputRefusedError as refusal:
-            assert refusal.diagnostics
-            assert str(refusal)
-            return "refused"
+            return _refused(refusal)
         finite = times.settles[np.isfinite(times.settles)]
         assert (finite >= 0).all()
         return "read"

@@ -1,5 +1,6 @@
 """Operators to gates, widths and signs (IEEE 1364-2005 clauses 5.1, 5.4, 5.5), constants (5.1, 4.10)."""
 
+# ruff: noqa: E501 - a case of a table stands on one line
 from __future__ import annotations
 
 from collections.abc import Callable

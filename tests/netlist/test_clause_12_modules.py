@@ -1,5 +1,6 @@
 """Modules, ports, parameters, instances (IEEE 1364-2005 clauses 12.1 to 12.3, 4.2 to 4.5), names (3.7), 3.8, 19.2."""
 
+# ruff: noqa: E501 - a case of a table stands on one line
 from __future__ import annotations
 
 from collections.abc import Callable

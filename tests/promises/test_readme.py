@@ -63,7 +63,7 @@ def test_ci_runs_the_readmes_own_test_command() -> None:
     script = (ROOT / ".ci" / "run").read_text("utf-8")
     reader = re.search(r"^command=\$\((.*)\)$", script, re.MULTILINE)
     assert reader
-    assert shell(f"printf %s \"$({reader[1]})\"").stdout == SETUP[1].strip()
+    assert shell(f'printf %s "$({reader[1]})"').stdout == SETUP[1].strip()
 
 
 @pytest.mark.parametrize("name", ["README.md", "examples/README.md", "grammars/parts.md", "DEVELOPERS.md"])

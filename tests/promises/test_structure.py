@@ -68,7 +68,16 @@ def test_only_the_frame_lies_at_the_top() -> None:
     else:
         names = {line.partition("/")[0] for line in listed.stdout.splitlines()}
     shown = {name for name in names if not name.startswith(".")}
-    frame = {"README.md", "DEVELOPERS.md", "LICENSE", "pyproject.toml", "src", "grammars", "tests", "examples"}
+    frame = {
+        "README.md",
+        "DEVELOPERS.md",
+        "LICENSE",
+        "pyproject.toml",
+        "src",
+        "grammars",
+        "tests",
+        "examples",
+    }
     assert shown == frame
 
 
@@ -87,7 +96,10 @@ def test_the_public_names_are_there() -> None:
         ("tardigate.grammars", "parts.md"),
         ("tardigate.report", "schema.json"),
         ("tardigate", "py.typed"),
-        *(("tardigate.source.codes", f"{name}.toml") for name in ("use", "verilog", "parts", "netlist", "graph")),
+        *(
+            ("tardigate.source.codes", f"{name}.toml")
+            for name in ("use", "verilog", "parts", "netlist", "graph")
+        ),
     ],
 )
 def test_package_data_is_found_from_the_installed_package(package: str, name: str) -> None:
@@ -112,4 +124,6 @@ def test_a_run_imports_only_what_it_uses() -> None:
     loaded_modules(code)  # makes the grammars' tables where there are none yet
     found = loaded_modules(code)
     assert "numpy" in found
-    assert not {"lark", "networkx", "tomllib", "difflib", "numpy.ma", "rich.markdown", "rich.traceback"} & found
+    assert (
+        not {"lark", "networkx", "tomllib", "difflib", "numpy.ma", "rich.markdown", "rich.traceback"} & found
+    )

@@ -45,7 +45,7 @@ def told(
         made: set[str] = set()
         plain = Diagnostic.of.__func__  # type: ignore[attr-defined]
 
-        def of(cls: type[Diagnostic], code: str, *words: object, **more: object) -> Diagnostic:
+        def of(cls: type[Diagnostic], /, code: str, *words: object, **more: object) -> Diagnostic:
             made.add(code)
             return plain(cls, code, *words, **more)  # type: ignore[no-any-return]
 

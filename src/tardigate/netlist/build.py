@@ -207,7 +207,9 @@ class _Shop:
             return None
         tree_of = self.modules.tree(module)
         declared = [*tree_of.parameters, *(i for i in tree_of.items if isinstance(i, tree.Parameter))]
-        return [named.name for declaration in declared if not declaration.local for named in declaration.names]
+        return [
+            named.name for declaration in declared if not declaration.local for named in declaration.names
+        ]
 
 
 def _in_force(offsets: Sequence[int], at: int) -> int:

@@ -121,7 +121,9 @@ class Bulk:
             chosen = variable[selected]
             msb, lsb = self.variables.msb[chosen], self.variables.lsb[chosen]
             low, high = np.minimum(msb, lsb), np.maximum(msb, lsb)
-            there = (self.variables.flags[chosen] & RANGED > 0) & (bit[selected] >= low) & (bit[selected] <= high)
+            there = (
+                (self.variables.flags[chosen] & RANGED > 0) & (bit[selected] >= low) & (bit[selected] <= high)
+            )
             found = self.variables.base[chosen] + np.abs(bit[selected] - lsb)
             net[selected[there]] = found[there]
         constants = names <= -2
@@ -129,9 +131,7 @@ class Bulk:
         net[names == -1] = OPEN
         return net
 
-    def _names_and_places(
-        self, statements: NDArray[np.int64]
-    ) -> tuple[NDArray[np.int32], NDArray[np.int64]]:
+    def _names_and_places(self, statements: NDArray[np.int64]) -> tuple[NDArray[np.int32], NDArray[np.int64]]:
         name = self.plain.name[statements]
         mark = self.plain.first[statements] + np.where(name >= 0, 1, 2)
         return name, self.unit.scan.at[mark].astype(np.int64)
@@ -203,7 +203,9 @@ class Bulk:
         names = self.plain.pin[rows.row]
         by_order = np.arange(len(rows.row)) - np.repeat(rows.start, rows.counts)
         distinct, back = np.unique(names, return_inverse=True)
-        found = np.array([interface.find(self.unit.scan.names.text(n)) if n >= 0 else -1 for n in distinct.tolist()])
+        found = np.array(
+            [interface.find(self.unit.scan.names.text(n)) if n >= 0 else -1 for n in distinct.tolist()]
+        )
         return np.where(names >= 0, found[back], by_order)
 
     def as_tree(self, statement: int) -> tree.Gates | tree.Instances:

@@ -60,11 +60,10 @@ def _open_inputs(
         collector.tell("N203", names.place(inst), instance=names.instance(inst), pin=name)
 
 
-def _tell_clash(
-    flat: Flat, names: Names, collector: Collector, net: int, drivers: NDArray[np.int32]
-) -> None:
+def _tell_clash(flat: Flat, names: Names, collector: Collector, net: int, drivers: NDArray[np.int32]) -> None:
     related = tuple(
-        Related(names.place(inst), f"driven by `{names.instance(inst)}`") for inst in drivers[:_SHOWN].tolist()
+        Related(names.place(inst), f"driven by `{names.instance(inst)}`")
+        for inst in drivers[:_SHOWN].tolist()
     )
     if net < CONSTANTS:
         for inst in drivers.tolist():

@@ -168,7 +168,9 @@ def _result(node: tree.Expression, operands: list[Value]) -> Value:
         if node.name != "$clog2" or len(operands) != 1:
             raise NotConstantError(f"`{node.name}` is not known here", node.at)
         return Value(max(0, operands[0].value - 1).bit_length())
-    parts, times = (operands, 1) if isinstance(node, tree.Concatenation) else (operands[1:], operands[0].value)
+    parts, times = (
+        (operands, 1) if isinstance(node, tree.Concatenation) else (operands[1:], operands[0].value)
+    )
     return _joined(node.at, parts, times)
 
 

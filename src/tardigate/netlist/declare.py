@@ -115,7 +115,9 @@ class Declarer:
                 self._declaration(item, values, columns)
         return self._joined(columns, values)
 
-    def _declaration(self, declaration: tree.Declaration, values: Mapping[str, Value], columns: _Columns) -> None:
+    def _declaration(
+        self, declaration: tree.Declaration, values: Mapping[str, Value], columns: _Columns
+    ) -> None:
         bounds = self.range(declaration.range, values) if declaration.range is not None else None
         flags = SIGNED * declaration.signed | WIRED * (declaration.net_type in _WIRED)
         flags |= DRIVEN * (declaration.net_type in _DRIVEN) | RANGED * (bounds is not None)
@@ -200,7 +202,9 @@ class Declarer:
             entries = np.flatnonzero(variable == odd)
             name = self.unit.scan.names.text(int(names[entries[0]]))
             first = Related(self._span(int(places[entries[0]]), name), "first declared here")
-            self.collector.tell("N111", self._span(int(places[entries[-1]]), name), name=name, related=(first,))
+            self.collector.tell(
+                "N111", self._span(int(places[entries[-1]]), name), name=name, related=(first,)
+            )
 
     def _span(self, at: int, name: str) -> Span:
         return self.text.span(at, at + len(name))

@@ -20,7 +20,8 @@ def dump(flat: Flat, *, places: bool = False) -> str:
         kind = flat.kinds[flat.inst_kind[inst]]
         nets = flat.pin_net[flat.pin_start[inst] : flat.pin_start[inst + 1]].tolist()
         pins = ", ".join(
-            f"{pin}={'-' if net == OPEN else names.net(net)}" for pin, net in zip(kind.pins, nets, strict=True)
+            f"{pin}={'-' if net == OPEN else names.net(net)}"
+            for pin, net in zip(kind.pins, nets, strict=True)
         )
         where = f" @{names.place(inst).line}" if places else ""
         lines.append(f"{kind.name} {names.instance(inst)}: {pins}{where}")

@@ -91,7 +91,14 @@ class Elaborator:
         of_name = np.full(len(self.unit.scan.names) + 1, -1, np.int32)
         of_name[variables.name] = np.arange(len(variables))
         of_name[-1] = -1
-        bulk = Bulk(self.unit, self.declarer.lookup, variables, of_name, self._gate_kind, lambda m: self.workshop.part(m, {}))
+        bulk = Bulk(
+            self.unit,
+            self.declarer.lookup,
+            variables,
+            of_name,
+            self._gate_kind,
+            lambda m: self.workshop.part(m, {}),
+        )
         plain = bulk.statements(self.module)
         self._declare_implicit(bulk, plain, of_name)
         self.wiring = Wiring(self.declarer, variables, self.values, of_name)
@@ -303,4 +310,6 @@ class Elaborator:
 
 def kind_interface(kind: Kind, name: str) -> Interface:
     """Return a kind's pins, bit by bit, as an interface."""
-    return Interface(name, [InterfacePin(pin, Way(way), 1) for pin, way in zip(kind.pins, kind.ways, strict=True)])
+    return Interface(
+        name, [InterfacePin(pin, Way(way), 1) for pin, way in zip(kind.pins, kind.ways, strict=True)]
+    )

@@ -91,6 +91,10 @@ class Expressions:
         if max(flat.want) > WIDEST:
             self.wiring.collector.tell("N121", self.wiring.span(root.at), most=WIDEST)
             return []
+        gates = sum(want for want, node in zip(flat.want, flat.nodes, strict=True) if _is_bit_by_bit(node))
+        if self._made + gates > MOST_RESULTS:
+            self.wiring.collector.tell("N122", self.wiring.span(root.at), most=MOST_RESULTS)
+            return []
         inside_constant = [False] * len(flat.nodes)
         for at, below in enumerate(flat.below):
             for child in below:
@@ -273,10 +277,6 @@ class Expressions:
     ) -> list[int] | None:
         node = flat.nodes[at]
         last = target is not None
-        if self._made + flat.want[at] > MOST_RESULTS:
-            self.wiring.collector.tell("N122", self.wiring.span(node.at), most=MOST_RESULTS)
-            return None
-
         def each(operator: str, rows: Sequence[Sequence[int]]) -> list[int]:
             if target is not None:
                 rows = rows[: len(target)]
@@ -307,12 +307,19 @@ class Expressions:
 
 
 def _number_bits(node: tree.Number, want: int) -> list[int]:
-    """Return the bits of a number, an unsized one as wide as wanted, its leading x or z spread (clause 3.5.1)."""
+    """Return the bits of a number; an unsized one is as wide as wanted, its leading x or z spread (3.5.1)."""
     top = 31 if node.width is None and (node.unknown | node.floating) >> 31 else want
     return [
         2 if node.unknown >> i & 1 else 3 if node.floating >> i & 1 else node.value >> i & 1
         for i in (min(bit, top) for bit in range(want if node.width is None else min(want, node.width)))
     ]
+
+
+def _is_bit_by_bit(node: tree.Expression) -> bool:
+    """Tell whether an operator becomes a gate for each bit of its context."""
+    if isinstance(node, tree.Unary):
+        return node.operator == "~"
+    return isinstance(node, tree.Conditional) or (isinstance(node, tree.Binary) and node.operator in _BITWISE)
 
 
 def _truth(bits: list[int]) -> list[int]:
@@ -321,7 +328,7 @@ def _truth(bits: list[int]) -> list[int]:
 
 
 def _compared(left: list[int], right: list[int]) -> list[int]:
-    """Return the bits that an equality compares, each pair once and none of equal constants: fill adds nothing."""
+    """Return the bits that an equality compares, each pair once and none of equal constants (fill)."""
     both = zip(left, right, strict=True)
     pairs = list(dict.fromkeys((a, b) for a, b in both if a != b or a > 1)) or [(0, 0)]
     return [a for a, _ in pairs] + [b for _, b in pairs]

@@ -65,7 +65,9 @@ class Modules:
         return self._uses[name]
 
 
-def collect(units: Iterable[Unit], described: Callable[[str], bool], collector: Collector, bulk: bool) -> Modules:
+def collect(
+    units: Iterable[Unit], described: Callable[[str], bool], collector: Collector, bulk: bool
+) -> Modules:
     """Put the modules of all files together; tells of two with one name (N101) and of UDPs (V006)."""
     modules = Modules(described, bulk)
     for unit in units:
@@ -128,7 +130,9 @@ def find_ring(modules: Modules, starts: Sequence[str], collector: Collector) -> 
             elif name in on_path:
                 ring = path[path.index(name) :]
                 related = tuple(Related(modules.span(m), f"`{m}`") for m in ring[:12])
-                collector.tell("N106", modules.span(ring[0]), ring=" > ".join([*ring, ring[0]]), related=related)
+                collector.tell(
+                    "N106", modules.span(ring[0]), ring=" > ".join([*ring, ring[0]]), related=related
+                )
                 return True
             elif name not in done:
                 path.append(name)

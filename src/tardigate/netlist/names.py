@@ -22,7 +22,11 @@ def positions(column: Sequence[str], text: str) -> list[int]:
     if find is not None:
         found: list[int] = find(text)
         return found
-    return [at for at, name in enumerate(column) if name == text or (name.startswith(f"{text}[") and name[-1] == "]")]
+    return [
+        at
+        for at, name in enumerate(column)
+        if name == text or (name.startswith(f"{text}[") and name[-1] == "]")
+    ]
 
 
 class Names:

@@ -51,7 +51,7 @@ class _Header:
         self.listed: set[int] = set()
 
     def plain(self, span: tree.PlainPorts) -> None:
-        """Take a header that only lists names: all at once where each is a scalar with a direction, named once."""
+        """Take a header that only lists names: all at once when all are scalars with directions."""
         scan, variables = self.wiring.unit.scan, self.variables
         numbers = scan.word[span.first : span.last]
         found = self.wiring.variables_of(numbers)

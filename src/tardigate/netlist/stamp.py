@@ -62,7 +62,9 @@ def stamp(templates: Sequence[Template], top: int, kinds: Sequence[Kind]) -> Fla
             inst_kind[own_rows] = template.kind
             pin_start[own_rows] = pin_base[scope] + template.pin_start[:-1]
             own = number[net_base[scope] : net_base[scope + 1]]
-            pin_net[int(pin_base[scope]) : int(pin_base[scope + 1])] = np.where(template.pin_net == OPEN, OPEN, own[np.maximum(template.pin_net, 0)])
+            pin_net[int(pin_base[scope]) : int(pin_base[scope + 1])] = np.where(
+                template.pin_net == OPEN, OPEN, own[np.maximum(template.pin_net, 0)]
+            )
             continue
         rows = inst_base[those][:, None] + np.arange(len(template.kind))
         inst_kind[rows] = template.kind
@@ -110,7 +112,10 @@ def _scopes(templates: Sequence[Template], top: int) -> _Scopes:
         scopes.child.append(child)
         scopes.name.append(name)
         below = templates[template].children
-        stack += [(c.template, number, i, c.name) for i, c in zip(range(len(below) - 1, -1, -1), below[::-1], strict=True)]
+        stack += [
+            (c.template, number, i, c.name)
+            for i, c in zip(range(len(below) - 1, -1, -1), below[::-1], strict=True)
+        ]
     return scopes
 
 

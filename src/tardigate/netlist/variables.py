@@ -83,7 +83,9 @@ class Variables:
     def net_places(self) -> NDArray[np.int64]:
         """Return the offset of each local net's declaration, int64[nets]."""
         constants = np.zeros(CONSTANTS, np.int64)
-        return np.concatenate((constants, np.repeat(self.place, self.width), np.array(self.results, np.int64)))
+        return np.concatenate(
+            (constants, np.repeat(self.place, self.width), np.array(self.results, np.int64))
+        )
 
 
 class NetNames(Sequence[str]):
@@ -116,7 +118,6 @@ class NetNames(Sequence[str]):
         msb, lsb = int(variables.msb[at]), int(variables.lsb[at])
         step = 1 if msb >= lsb else -1
         return f"{name}[{lsb + step * (index - int(variables.base[at]))}]"
-
 
     def positions(self, text: str) -> list[int]:
         """Return the local nets that are called `text`, or are bits of the vector that is."""
@@ -167,7 +168,9 @@ class InstanceNames(Sequence[str]):
 
     def positions(self, text: str) -> list[int]:
         """Return the instances that are called `text`, or are in the array that is."""
-        numbers = [-2 - at for at, name in enumerate(self._others) if name == text or name.startswith(f"{text}[")]
+        numbers = [
+            -2 - at for at, name in enumerate(self._others) if name == text or name.startswith(f"{text}[")
+        ]
         named = self._names.find(text)
         wanted = [*numbers, named] if named >= 0 else numbers
         found: list[int] = np.flatnonzero(np.isin(self._numbers, wanted)).tolist() if wanted else []

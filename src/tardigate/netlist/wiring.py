@@ -25,7 +25,11 @@ class Wiring:
     """The nets of one module by name."""
 
     def __init__(
-        self, declarer: Declarer, variables: Variables, values: Mapping[str, Value], of_name: NDArray[np.int32]
+        self,
+        declarer: Declarer,
+        variables: Variables,
+        values: Mapping[str, Value],
+        of_name: NDArray[np.int32],
     ) -> None:
         self.declarer, self.variables, self.values = declarer, variables, values
         self.unit: Unit = declarer.unit

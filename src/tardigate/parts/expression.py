@@ -48,7 +48,9 @@ class _Compiler:
                 operands = done[len(done) - len(node.args) :]
                 del done[len(done) - len(node.args) :]
                 done.append(self.join(node, operands))
-            elif node.form == "read_bit" and node.args[0].form == "number" and node.args[0].word.text.isdigit():
+            elif (
+                node.form == "read_bit" and node.args[0].form == "number" and node.args[0].word.text.isdigit()
+            ):
                 done.append(self.leaf(Expr("read", node.word, (), Range(node.args[0].word, None))))
             elif node.args:
                 todo.append((node, True))

@@ -51,7 +51,9 @@ class Diagnostic:
         severity: Severity = "warning" if entry.severity == "warning" else "error"
         shown = {key: printable(value) for key, value in words.items()}
         message = entry.headline.format_map(shown)
-        return cls(code, severity, message, span, entry.hint.format_map(shown) if hint is None else hint, related)
+        return cls(
+            code, severity, message, span, entry.hint.format_map(shown) if hint is None else hint, related
+        )
 
     def counted(self, count: int) -> Diagnostic:
         """Return the same diagnostic for `count` like cases."""

@@ -135,9 +135,7 @@ def _keys(data: bytes, start: NDArray[np.integer], stop: NDArray[np.integer]) ->
     return keys
 
 
-def _keys_of_some(
-    data: bytes, start: NDArray[np.integer], length: NDArray[np.integer]
-) -> NDArray[np.uint64]:
+def _keys_of_some(data: bytes, start: NDArray[np.integer], length: NDArray[np.integer]) -> NDArray[np.uint64]:
     pieces = np.ndarray((len(data) - 7,), dtype="<u8", buffer=data, strides=(1,))
     length = np.minimum(length, _SIEVED)
     keys: NDArray[np.uint64] = pieces[start] & _MASKS[np.minimum(length, 8)]

@@ -38,7 +38,9 @@ class ModuleText(NamedTuple):
     at: int
 
 
-def outline(scan: Scan, marks: NDArray[np.uint8], text: PlacedText, collector: Collector) -> tuple[ModuleText, ...]:
+def outline(
+    scan: Scan, marks: NDArray[np.uint8], text: PlacedText, collector: Collector
+) -> tuple[ModuleText, ...]:
     """Find the modules of a text; tell what stands outside of them (V003) or is not closed (V002)."""
     opening = {w: name for name in _BLOCKS if (w := scan.names.find(name)) >= 0}
     closing = {w: name for name in set(_BLOCKS.values()) if (w := scan.names.find(name)) >= 0}
@@ -67,13 +69,17 @@ def outline(scan: Scan, marks: NDArray[np.uint8], text: PlacedText, collector: C
             after = mark + 1
     if open_word:
         start = int(scan.at[open_mark])
-        collector.tell("V002", text.span(start, start + len(open_word)), word=open_word, closing=_BLOCKS[open_word])
+        collector.tell(
+            "V002", text.span(start, start + len(open_word)), word=open_word, closing=_BLOCKS[open_word]
+        )
     else:
         _outside(scan, after, len(scan.kind), text, collector)
     return tuple(found)
 
 
-def _module(scan: Scan, marks: NDArray[np.uint8], word: str, first: int, last: int, last_word: int) -> ModuleText:
+def _module(
+    scan: Scan, marks: NDArray[np.uint8], word: str, first: int, last: int, last_word: int
+) -> ModuleText:
     named = first + 1 if marks[first + 1] == NAME else first
     name_word = int(scan.word_of[named])
     name = scan.names.text(int(scan.word[name_word])) if named > first else ""

@@ -23,7 +23,9 @@ NAME, GATE, DECLARATION, NUMBER, CONSTANT, STRANGE = range(16, 22)
 """What a word is: an identifier, a gate primitive, `input` and its like, a decimal number, a constant of one
 bit, anything else (reserved words among it)."""
 
-_ONE_BIT = {f"1'{base}{digit}": value for base in "bBhHdDoO" for digit, value in zip("01", (0, 1), strict=True)}
+_ONE_BIT = {
+    f"1'{base}{digit}": value for base in "bBhHdDoO" for digit, value in zip("01", (0, 1), strict=True)
+}
 _ONE_BIT |= {f"1'{base}{digit}": 2 + (digit in "zZ?") for base in "bBhHoO" for digit in "xXzZ?"}
 _LARGEST_INDEX_DIGITS = 8
 
@@ -65,7 +67,11 @@ def classify_names(scan: Scan) -> NDArray[np.uint8]:
             kinds[name] = CONSTANT
         else:
             kinds[name] = STRANGE
-    for group, kind in ((words.RESERVED, STRANGE), (words.GATES, GATE), (words.PLAIN_DECLARATIONS, DECLARATION)):
+    for group, kind in (
+        (words.RESERVED, STRANGE),
+        (words.GATES, GATE),
+        (words.PLAIN_DECLARATIONS, DECLARATION),
+    ):
         found = names.find_all(tuple(group))
         kinds[found[found >= 0]] = kind
     return kinds

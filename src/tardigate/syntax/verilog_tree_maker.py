@@ -47,7 +47,9 @@ class TreeMaker:
         parameters = _of(children, _Parameters) or ()
         ports = _of(children[1:], (_Ports, tree.PlainPorts))
         items = tuple(c for c in children[1:] if isinstance(c, _ITEMS))
-        return tree.Module(_word(name), tuple(parameters), ports if ports is not None else (), items, self._at(name))
+        return tree.Module(
+            _word(name), tuple(parameters), ports if ports is not None else (), items, self._at(name)
+        )
 
     def parameter_ports(self, children: list[Any]) -> _Parameters:
         return _Parameters(children)
@@ -67,7 +69,12 @@ class TreeMaker:
 
     def _inherit(self, port: tree.HeaderPort, before: tree.HeaderPort | None) -> tree.HeaderPort:
         """Give a bare name after a declared port that port's declaration (clause 12.3.4)."""
-        if port.declaration or not before or not before.declaration or not isinstance(port.inside, tree.Reference):
+        if (
+            port.declaration
+            or not before
+            or not before.declaration
+            or not isinstance(port.inside, tree.Reference)
+        ):
             return port
         named = (tree.Named(port.name, None, port.at),)
         return port._replace(declaration=before.declaration._replace(names=named, at=port.at))
@@ -196,7 +203,9 @@ class TreeMaker:
         connections = children[-1]
         if len(connections) == 1 and connections[0].net is None and not connections[0].pin:
             connections = ()  # `()` connects nothing
-        return tree.Instance(_word(children[0]), _of(children, tree.Range), connections, self._at(children[0]))
+        return tree.Instance(
+            _word(children[0]), _of(children, tree.Range), connections, self._at(children[0])
+        )
 
     # Delays
 
