@@ -102,7 +102,8 @@ class Settled:
     """When everything settles and stirs, in one grade.
 
     >>> import tardigate
-    >>> design = tardigate.read_text("module m(input a, output y, z); buf #(1:2:3) (y, a); not #1 (z, y); endmodule")
+    >>> text = "module m(input a, output y, z); buf #(1:2:3) (y, a); not #1 (z, y); endmodule"
+    >>> design = tardigate.read_text(text)
     >>> [(sink.name, sink.settles_ns, sink.stirs_ns) for sink in design.settle().outputs()]
     [('z', 4.0, 2.0), ('y', 3.0, 1.0)]
     >>> design.settle("typ").net("y").settles_ns
@@ -122,7 +123,7 @@ class Settled:
         return tuple(_sink(record) for record in self.design._records.register_pins(self.times, None).shown)
 
     def net(self, name: str) -> SinkTimes:
-        """Return the times of a net, port or pin by name. Raises InputRefusedError (U104) for no such name."""
+        """Return the times of a net, port or pin. Raises InputRefusedError (U104) for an unknown name."""
         vertices = self.design._picker.sinks((name,))
         assert vertices is not None
         if not len(vertices):
@@ -183,7 +184,7 @@ class Design:
         """Return the `count` fastest trails, fastest first.
 
         >>> import tardigate
-        >>> text = "module m(input a, b, output y); wire n; not #(1:2:3) (n, b); and #(1:2:3) (y, a, n); endmodule"
+        >>> text = "module m(input a, b, output y); not #(1:2:3) (n, b); and #(1:2:3) (y, a, n); endmodule"
         >>> [(trail.source, trail.total_ns) for trail in tardigate.read_text(text).fastest(2)]
         [('a', 1.0), ('a', 1.0)]
         """
@@ -245,7 +246,7 @@ def read(
                 tuple((define or {}).items()),
                 condition,
                 grade,
-            )  # fmt: skip
+            )
         )
     )
 

@@ -37,7 +37,8 @@ from tardigate.syntax.verilog_reader import Unit, read_unit
 class Request(NamedTuple):
     """What is asked for: files and how to read them.
 
-    Files are paths, or texts that are at hand. `bulk` False sends every statement through the grammar: slow, and the same.
+    Files are paths, or texts that are at hand. `bulk` False sends every statement through the grammar: slow,
+    and the same.
     """
 
     files: tuple[str | SourceFile, ...]

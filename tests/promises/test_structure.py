@@ -1,4 +1,4 @@
-"""The repository keeps its own promises: order of the houses, sizes, dependencies, package data, top level."""
+"""The repository keeps its own promises: order of the houses, sizes, imports, package data."""
 
 from __future__ import annotations
 
@@ -16,7 +16,8 @@ import tardigate
 ROOT = Path(__file__).parents[2]
 PACKAGE = ROOT / "src" / "tardigate"
 ORDER = (
-    "source", "syntax", "parts", "netlist", "graph", "analysis", "report", "pipeline", "design", "cli", "__main__",
+    "source", "syntax", "parts", "netlist", "graph", "analysis", "report", "pipeline", "design", "cli",
+    "__main__",
 )  # fmt: skip
 FILES = sorted(PACKAGE.rglob("*.py"))
 MAY_IMPORT = {

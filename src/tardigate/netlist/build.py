@@ -140,7 +140,7 @@ class _Shop:
         return self._declared[number]
 
     def _module_interface(self, number: int) -> Interface:
-        """Return a module's ports; what is wrong with them is told again, and so once, by the module itself."""
+        """Return a module's ports; what is wrong with them the module's own elaboration tells again."""
         name, values = self._work[number]
         unit, module = self.modules.unit(name), self.modules.tree(name)
         declarer, variables = self._declarer(unit), self._variables(number)

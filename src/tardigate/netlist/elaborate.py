@@ -51,7 +51,7 @@ class Workshop(Protocol):
         """Return a module's interface and template number, None when there is no such module."""
 
     def undescribed(self, strange: Sequence[Strange], driven: NDArray[np.bool_]) -> None:
-        """Take note of instances of what nobody describes; `driven` tells which nets something known drives."""
+        """Take note of instances of what nobody describes; `driven` bool[nets]: something known drives it."""
 
     def outputs(self, instances: Block, children: Sequence[Child]) -> Iterable[NDArray[np.int32]]:
         """Yield the local nets at outputs of part instances and of modules below."""

@@ -72,13 +72,20 @@ class Expressions:
         self._made += 1
         return self._emit(operator, inputs, at, target, last)
 
-    def nets(self, root: tree.Expression, width: int | None = None, target: list[int] | None = None) -> list[int]:
+    def nets(
+        self, root: tree.Expression, width: int | None = None, target: list[int] | None = None
+    ) -> list[int]:
         """Return the nets of an expression, least significant bit first; empty after telling of a fault.
 
         `width` is the width of the context, if it has one (then so many bits come back). With `target` the
         last operator drives these nets, and what has no operator at its root is copied onto them.
         """
-        if isinstance(root, tree.Reference) and width is None and target is None and root.path[0] not in self.wiring.values:
+        if (
+            isinstance(root, tree.Reference)
+            and width is None
+            and target is None
+            and root.path[0] not in self.wiring.values
+        ):
             return self.wiring.bits(root)  # the usual connection
         flat = _Flat(root)
         for at in range(len(flat.nodes) - 1, -1, -1):
@@ -277,6 +284,7 @@ class Expressions:
     ) -> list[int] | None:
         node = flat.nodes[at]
         last = target is not None
+
         def each(operator: str, rows: Sequence[Sequence[int]]) -> list[int]:
             if target is not None:
                 rows = rows[: len(target)]

@@ -1,4 +1,4 @@
-"""What an instance sees of what it instantiates: pins with widths and ways, whatever stands behind them. Data."""
+"""What an instance sees of what it instantiates: pins with widths and ways. Data only."""
 
 from __future__ import annotations
 

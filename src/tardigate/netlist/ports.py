@@ -76,7 +76,7 @@ class _Header:
         names = [scan.data[start:end].decode("latin-1") for start, end in zip(starts, ends, strict=True)]
         ways = [_WAYS[way] for way in variables.way[found].tolist()]
         nets = variables.base[found].tolist()
-        self.ports.extend(map(TemplatePort, names, ways, zip(nets), zip(names)))  # noqa: B905
+        self.ports.extend(map(TemplatePort, names, ways, zip(nets), zip(names)))
         self.listed.update(found.tolist())
 
     def port(self, port: tree.HeaderPort) -> None:

@@ -75,7 +75,8 @@ def stamp(templates: Sequence[Template], top: int, kinds: Sequence[Kind]) -> Fla
     wired, driven = (_marked(templates, of_scope, net_base, number, kind) for kind in ("wired", "driven"))
     return Flat(
         tuple(kinds), inst_kind, pin_start, pin_net, len(net_raw), _ports(templates[top], number),
-        tuple(templates), of_scope, np.array(scopes.parent, np.int32), tuple(scopes.name), inst_base, net_base,
+        tuple(templates), of_scope, np.array(scopes.parent, np.int32), tuple(scopes.name), inst_base,
+        net_base,
         net_raw, wired, driven,
     )  # fmt: skip
 

@@ -57,8 +57,8 @@ class Picker:
         found = [both_edges([])]
         faults = []
         for name in names:
-            # A name is one thing only (IEEE 1364-2005 clause 4.11); one with `*` means ports and instances, or
-            # else pins, or else nets: `alu.*` is what is in there, not what comes in from outside.
+            # A name is one thing only (IEEE 1364-2005 clause 4.11); one with `*` means ports and instances,
+            # or else pins, or else nets: `alu.*` is what is in there, not what comes in from outside.
             of_name = self._of_ports(name)
             if "*" in name or not of_name:
                 pins = list(self._pins(name))

@@ -12,12 +12,12 @@ from dataclasses import dataclass, field
 from functools import cache
 
 FILES = {"U": "use", "V": "verilog", "P": "parts", "N": "netlist", "G": "graph"}
-"""First letter of a code → the file of its entry: use of the tool, Verilog text, parts file, netlist, graph."""
+"""First letter of a code → the file of its entry: use of the tool, Verilog, parts file, netlist, graph."""
 
 
 @dataclass(frozen=True, slots=True)
 class Entry:
-    """One code: `text` is what `explain` prints; samples map a file name to its text, `arguments` to words."""
+    """One code. `text` is what `explain` prints; samples map file names to texts, `arguments` to words."""
 
     code: str
     severity: str

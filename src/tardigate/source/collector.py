@@ -34,7 +34,7 @@ class Collector:
             self._beyond[diagnostic.code] = self._beyond.get(diagnostic.code, 0) + diagnostic.count
 
     def room(self, code: str) -> bool:
-        """Tell whether another diagnostic of a code would be kept: if not, a costly hint is not worth making."""
+        """Tell whether another diagnostic of a code would be kept: else a costly hint is not worth making."""
         return len(self._kept.get(code, ())) < MOST
 
     def tell(
@@ -54,7 +54,8 @@ class Collector:
         found = []
         for code, kept in self._kept.items():
             beyond = self._beyond.get(code, 0)
-            found += kept[:-1] + [kept[-1].counted(kept[-1].count + beyond)] if beyond else kept
+            last = kept[-1].counted(kept[-1].count + beyond) if beyond else kept[-1]
+            found += [*kept[:-1], last]
         return tuple(sorted(found, key=_order))
 
     def warnings(self) -> tuple[Diagnostic, ...]:

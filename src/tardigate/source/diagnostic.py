@@ -46,7 +46,7 @@ class Diagnostic:
         related: tuple[Related, ...] = (),
         **words: object,
     ) -> Diagnostic:
-        """Make the diagnostic of a code; `words` fill its headline and hint; `hint` stands in for the code's own."""
+        """Make the diagnostic of a code; `words` fill headline and hint; `hint` stands in for its own."""
         entry = look_up(code)
         severity: Severity = "warning" if entry.severity == "warning" else "error"
         shown = {key: printable(value) for key, value in words.items()}

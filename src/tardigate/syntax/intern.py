@@ -19,7 +19,7 @@ _SHIFT = np.uint64(29)
 _HALF = np.uint64(32)
 _WORDS = 1 << 15
 _SIEVED = 1024
-"""Bytes of a word that its key is made of: a pass over all words takes eight, and a name may have millions."""
+"""Bytes of a word that its key is made of: each pass takes eight, and a name may have millions."""
 _MASKS = np.array([0] + [(1 << 8 * i) - 1 for i in range(1, 9)], dtype=np.uint64)
 
 
@@ -70,9 +70,10 @@ class Interned:
 class Groups(NamedTuple):
     """Equal keys put together.
 
-    `ids` int32[keys]: the number of each key's group, in order of first keys; `heads` int64[groups]: the first
-    key of each. To find a key again: `table` int32 maps its highest bits to the first key that has them, plus
-    1; the keys that had to give way to another are in `others`, ascending, with their groups in `other_ids`.
+    `ids` int32[keys]: the number of each key's group, in order of first keys; `heads` int64[groups]: the
+    first key of each. To find a key again: `table` int32 maps its highest bits to the first key that has
+    them, plus 1; the keys that had to give way to another are in `others`, ascending, with their groups in
+    `other_ids`.
     """
 
     keys: NDArray[np.uint64]

@@ -60,7 +60,8 @@ def outline(
             found.append(_module(scan, marks, open_word, open_mark, mark, word))
             after, open_word = mark + 1, ""
         elif name in opening:
-            collector.tell("V002", text.span(int(scan.at[open_mark]), int(scan.at[open_mark]) + len(open_word)),
+            start = int(scan.at[open_mark])
+            collector.tell("V002", text.span(start, start + len(open_word)),
                            word=open_word, closing=_BLOCKS[open_word])  # fmt: skip
             open_word, open_mark = opening[name], mark
             after = mark

@@ -6,6 +6,7 @@ Takes files, gives a `Unit` each, whose modules are parsed one by one when asked
 from __future__ import annotations
 
 from bisect import bisect_right
+from itertools import pairwise
 from typing import NamedTuple
 
 import numpy as np
@@ -140,7 +141,7 @@ def _runs(plain: Plain, module: ModuleText) -> list[tuple[int, int]]:
         return []
     breaks = np.flatnonzero(plain.first[low + 1 : high] != plain.stop[low : high - 1]) + low + 1
     bounds = [low, *breaks.tolist(), high]
-    return list(zip(bounds[:-1], bounds[1:], strict=True))
+    return list(pairwise(bounds))
 
 
 def _plain_header(unit: Unit, module: ModuleText) -> tuple[int, int, PlainPorts] | None:
@@ -161,7 +162,7 @@ def _plain_header(unit: Unit, module: ModuleText) -> tuple[int, int, PlainPorts]
 
 
 class Cuts(NamedTuple):
-    """The map from a coarse text back to the placed text: at `coarse[i]` begins what stands at `placed[i]`."""
+    """The map from a coarse text back to the placed text: `coarse[i]` is what stands at `placed[i]`."""
 
     coarse: list[int]
     placed: list[int]

@@ -25,7 +25,7 @@ def _of(children: list[Any], kind: type | tuple[type, ...]) -> Any:
 
 
 class TreeMaker:
-    """The callbacks. `begin` sets what one parse needs: the map of offsets and the plain stretches by offset."""
+    """The callbacks. `begin` sets what one parse needs: the map of offsets and the plain stretches."""
 
     def begin(
         self,
