@@ -46,7 +46,8 @@ def test_what_a_module_below_drives_is_known() -> None:
 
 @pytest.mark.parametrize("part", ["FF", "FRONT"])
 def test_the_skeleton_describes_what_it_is_drafted_for(part: str) -> None:
-    verilog = f"module m(input a, ck, output q); wire n; {part} f (.D(a), .CK(ck), .Q(n)); nand (q, n, a); endmodule"
+    instance = f"{part} f (.D(a), .CK(ck), .Q(n));"
+    verilog = f"module m(input a, ck, output q); {instance} nand (q, n, a); endmodule"
     skeleton = tardigate.read_text(verilog).draft()
     design = tardigate.read_text(verilog, parts=skeleton)
     assert design.loaded.undescribed == ()

@@ -87,21 +87,10 @@ def evaluate(expression: tree.Expression, parameters: Mapping[str, Value]) -> Va
 
 
 def _children(node: tree.Expression) -> tuple[tree.Expression, ...]:
-    if isinstance(node, tree.Binary):
-        return (node.left, node.right)
-    if isinstance(node, tree.Unary):
-        return (node.operand,)
-    if isinstance(node, tree.Conditional):
-        return (node.condition, node.yes, node.no)
-    if isinstance(node, tree.Call):
-        return node.arguments
-    if isinstance(node, tree.Concatenation):
-        return node.parts
-    if isinstance(node, tree.Replication):
-        return (node.times, *node.parts)
     if isinstance(node, tree.Reference):
         return tuple(bound for s in node.selections for bound in (s.high, s.low) if bound is not None)
-    return ()
+    below = tree.operands(node)
+    return (node.times, *below) if isinstance(node, tree.Replication) else below
 
 
 def _check_parameter(node: tree.Reference, parameters: Mapping[str, Value]) -> None:

@@ -23,9 +23,10 @@ from tardigate.netlist.expression import Expressions
 from tardigate.netlist.flat import CONSTANTS, OPEN
 from tardigate.netlist.implicit import connection_names
 from tardigate.netlist.interface import Interface, InterfacePin
+from tardigate.netlist.name_columns import InstanceNames, NetNames
 from tardigate.netlist.ports import template_ports
 from tardigate.netlist.template import Child, Template, TemplatePort
-from tardigate.netlist.variables import DRIVEN, WIRED, InstanceNames, NetNames, Variables
+from tardigate.netlist.variables import DRIVEN, WIRED, Variables
 from tardigate.netlist.wiring import Wiring
 from tardigate.parts.kind import Kind, Way
 from tardigate.parts.source_delay import SourceDelay

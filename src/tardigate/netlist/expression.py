@@ -34,7 +34,7 @@ class _Flat:
         self.below: list[range] = []
         at = 0
         while at < len(self.nodes):
-            children = children_of(self.nodes[at])
+            children = tree.operands(self.nodes[at])
             self.below.append(range(len(self.nodes), len(self.nodes) + len(children)))
             self.nodes.extend(children)
             at += 1
@@ -43,21 +43,6 @@ class _Flat:
         self.signed, self.context_signed = [False] * count, [False] * count
         self.constant = [False] * count
         self.bits: list[list[int]] = [[] for _ in range(count)]
-
-
-def children_of(node: tree.Expression) -> tuple[tree.Expression, ...]:
-    """Return the operands of a node that may be nets."""
-    if isinstance(node, tree.Binary):
-        return (node.left, node.right)
-    if isinstance(node, tree.Unary):
-        return (node.operand,)
-    if isinstance(node, tree.Conditional):
-        return (node.condition, node.yes, node.no)
-    if isinstance(node, tree.Concatenation | tree.Replication):
-        return node.parts
-    if isinstance(node, tree.Call):
-        return node.arguments
-    return ()
 
 
 class Expressions:

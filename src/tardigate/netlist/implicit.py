@@ -8,7 +8,6 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from tardigate.netlist.expression import children_of
 from tardigate.syntax import tree
 
 
@@ -30,4 +29,4 @@ def connection_names(module: tree.Module) -> Iterator[tuple[str, int]]:
                     if len(node.path) == 1:
                         yield node.path[0], node.at
                 else:
-                    work.extend(reversed(children_of(node)))
+                    work.extend(reversed(tree.operands(node)))

@@ -117,6 +117,21 @@ Expression = (
 )  # fmt: skip
 
 
+def operands(node: Expression) -> tuple[Expression, ...]:
+    """Return what a node operates on; the count of a replication and the indices of a selection are not."""
+    if isinstance(node, Binary):
+        return (node.left, node.right)
+    if isinstance(node, Unary):
+        return (node.operand,)
+    if isinstance(node, Conditional):
+        return (node.condition, node.yes, node.no)
+    if isinstance(node, Concatenation | Replication):
+        return node.parts
+    if isinstance(node, Call):
+        return node.arguments
+    return ()
+
+
 class Range(NamedTuple):
     """`[msb:lsb]`."""
 

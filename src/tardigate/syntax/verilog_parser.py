@@ -17,7 +17,7 @@ from tardigate.syntax.tree import Module, PlainPorts, Run
 from tardigate.syntax.verilog_tree_maker import TreeMaker
 
 if TYPE_CHECKING:
-    from tardigate.syntax.verilog_reader import Cuts
+    from tardigate.syntax.cuts import Cuts
 
 FRIENDLY = {
     "IDENT": "a name", "NUMBER": "a number", "STRING": "a text in quotes", "SYSTEM": "a system function",

@@ -5,7 +5,6 @@ Takes files, gives a `Unit` each, whose modules are parsed one by one when asked
 
 from __future__ import annotations
 
-from bisect import bisect_right
 from itertools import pairwise
 from typing import NamedTuple
 
@@ -17,6 +16,7 @@ from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.placed import PlacedText
 from tardigate.syntax import words
+from tardigate.syntax.cuts import Cuts
 from tardigate.syntax.outline import ModuleText, outline, used_names
 from tardigate.syntax.plain import NAME, Plain, classify_names, find_plain, refine
 from tardigate.syntax.preprocess import Preprocessed
@@ -159,15 +159,3 @@ def _plain_header(unit: Unit, module: ModuleText) -> tuple[int, int, PlainPorts]
         return None
     word = int(found.word_of[first + 3])
     return int(found.at[first + 2]), int(found.at[stop - 1]) + 1, PlainPorts(word, word + len(names))
-
-
-class Cuts(NamedTuple):
-    """The map from a coarse text back to the placed text: `coarse[i]` is what stands at `placed[i]`."""
-
-    coarse: list[int]
-    placed: list[int]
-
-    def where(self, offset: int) -> int:
-        """Return the offset in the placed text."""
-        at = max(0, bisect_right(self.coarse, offset) - 1)
-        return self.placed[at] + offset - self.coarse[at]

@@ -1,0 +1,117 @@
+"""Names of a module's nets and part instances, made when asked for.
+
+Takes the numbers of names in a file, gives columns that read like sequences of text and can be searched.
+"""
+
+from __future__ import annotations
+
+from abc import abstractmethod
+from collections.abc import Sequence
+from typing import overload
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tardigate.netlist.flat import CONSTANTS
+from tardigate.netlist.variables import RANGED, Variables
+from tardigate.syntax.intern import Interned
+
+
+class Column(Sequence[str]):
+    """Names by number."""
+
+    @abstractmethod
+    def one(self, index: int) -> str:
+        """Make the name with a number."""
+
+    @abstractmethod
+    def positions(self, text: str) -> list[int]:
+        """Return where `text` stands, or bits or members of what is called so."""
+
+    @overload
+    def __getitem__(self, index: int) -> str: ...
+    @overload
+    def __getitem__(self, index: slice) -> list[str]: ...
+    def __getitem__(self, index: int | slice) -> str | list[str]:
+        if isinstance(index, slice):
+            return [self.one(i) for i in range(*index.indices(len(self)))]
+        return self.one(index)
+
+
+class NetNames(Column):
+    """The names of a module's local nets, made when asked for: `a`, `bus[3]`, `assign:12.0` for a result."""
+
+    def __init__(self, variables: Variables) -> None:
+        self._variables = variables
+        self._first_result = CONSTANTS + int(variables.width.sum())
+
+    def __len__(self) -> int:
+        return self._variables.nets
+
+    def one(self, index: int) -> str:
+        """Make a name."""
+        variables = self._variables
+        if index < CONSTANTS:
+            return ("1'b0", "1'b1", "1'bx", "1'bz")[index]
+        if index >= self._first_result:
+            result = index - self._first_result
+            return f"assign:{variables.text.span(variables.results[result]).line}.{result}"
+        at = int(np.searchsorted(variables.base, np.int32(index), "right")) - 1  # of one type: no copy
+        name = variables.text_of(at)
+        if not variables.flags[at] & RANGED:
+            return name
+        msb, lsb = int(variables.msb[at]), int(variables.lsb[at])
+        step = 1 if msb >= lsb else -1
+        return f"{name}[{lsb + step * (index - int(variables.base[at]))}]"
+
+    def positions(self, text: str) -> list[int]:
+        """Return the local nets that are called `text`, or are bits of the vector that is."""
+        variables = self._variables
+        found = self._bits_of(text, None)
+        name, bracket, index = text.rpartition("[")
+        if bracket and index[:-1].lstrip("-").isdigit() and index[-1] == "]":
+            found += self._bits_of(name, int(index[:-1]))
+        if text.startswith("assign:"):
+            found += [at for at in range(self._first_result, variables.nets) if self[at] == text]
+        return found
+
+    def _bits_of(self, name: str, index: int | None) -> list[int]:
+        variables = self._variables
+        found: list[int] = []
+        for at in np.flatnonzero(variables.name == variables.names.find(name)).tolist():
+            bits = variables.bits(at)
+            if index is None:
+                found += bits
+            elif variables.flags[at] & RANGED:
+                found += [bit for bit in bits if self[bit].endswith(f"[{index}]")]
+        return found
+
+
+class InstanceNames(Column):
+    """The names of a module's part instances, made when asked for.
+
+    `numbers` int32[instances]: a name's number in the file, -1 for none, or -2 - i for `others[i]`.
+    """
+
+    def __init__(self, names: Interned, numbers: NDArray[np.int32], others: list[str]) -> None:
+        self._names, self._numbers, self._others = names, numbers, others
+
+    def __len__(self) -> int:
+        return len(self._numbers)
+
+    def one(self, index: int) -> str:
+        """Make a name."""
+        number = int(self._numbers[index])
+        if number == -1:
+            return ""
+        return self._names.text(number) if number >= 0 else self._others[-2 - number]
+
+    def positions(self, text: str) -> list[int]:
+        """Return the instances that are called `text`, or are in the array that is."""
+        numbers = [
+            -2 - at for at, name in enumerate(self._others) if name == text or name.startswith(f"{text}[")
+        ]
+        named = self._names.find(text)
+        wanted = [*numbers, named] if named >= 0 else numbers
+        found: list[int] = np.flatnonzero(np.isin(self._numbers, wanted)).tolist() if wanted else []
+        return found
