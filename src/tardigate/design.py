@@ -24,7 +24,7 @@ from functools import cached_property
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
-from tardigate.analysis.model import Grade, Times
+from tardigate.analysis.model import GRADES, Grade, Times
 from tardigate.graph.export import to_networkx
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS
@@ -170,6 +170,7 @@ class Design:
 
     def settle(self, grade: Grade = "span", *, sources: Names = ()) -> Settled:
         """Return when every net settles and stirs after the sources (default: all) change at 0."""
+        _check_grade(grade)
         return Settled(self, grade, times_of(self.graph, grade, self._picker.sources(_names(sources))))
 
     def slowest(
@@ -235,6 +236,7 @@ def read(
     first); `include`: folders for `include` directives; `define`: macros; `grade`: what missing delays are
     judged by. Raises InputRefusedError.
     """
+    _check_grade(grade)
     several = [parts] if isinstance(parts, str | Path) else parts
     return Design(
         load(
@@ -263,6 +265,11 @@ def read_text(
     file = SourceFile("design.v", verilog.encode())
     described = (SourceFile("design.parts", parts.encode()),) if parts else ()
     return Design(load(Request((file,), described, top, condition=condition, grade=grade)))
+
+
+def _check_grade(grade: str) -> None:
+    if grade not in GRADES:
+        raise ValueError(f"grade {grade!r} is none of {', '.join(GRADES)}")
 
 
 def _names(names: Names) -> tuple[str, ...]:

@@ -28,10 +28,11 @@ from tardigate.parts.kind import Kind, Origin
 from tardigate.parts.library import Library
 from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
-from tardigate.source.diagnostic import Diagnostic
+from tardigate.source.diagnostic import Diagnostic, did_you_mean
 from tardigate.source.files import SourceFile, read_file
 from tardigate.syntax.preprocess import Preprocessed, PreprocessOptions, preprocess
 from tardigate.syntax.verilog_reader import Unit, read_unit
+from tardigate.syntax.words import GATES
 
 
 class Request(NamedTuple):
@@ -68,6 +69,7 @@ class Loaded(NamedTuple):
     names: Names
     library: Library
     modules: int
+    module_names: tuple[str, ...]
     warnings: tuple[Diagnostic, ...]
     missing: tuple[Kind, ...]
     undescribed: tuple[Undescribed, ...]
@@ -87,7 +89,8 @@ def load(request: Request) -> Loaded:
     used = distinct(built.flat.inst_kind)
     missing = tuple(built.flat.kinds[k] for k in used if built.flat.kinds[k].origin == Origin.MISSING)
     return Loaded(
-        request, built.top, built.flat, names, library, built.modules, collector.warnings(), missing,
+        request, built.top, built.flat, names, library, built.modules,
+        tuple(module.name for unit in units for module in unit.modules), collector.warnings(), missing,
         built.undescribed, built.units_assumed,
     )  # fmt: skip
 
@@ -96,15 +99,21 @@ def graph_of(loaded: Loaded) -> Graph:
     """Return the graph. Raises InputRefusedError for undescribed modules, missing delays and loops."""
     collector = Collector()
     for stranger in loaded.undescribed:
-        collector.tell("N301", stranger.place, name=stranger.name, count=stranger.count)
+        known = [*GATES, *loaded.library.part_names(), *loaded.module_names]
+        hint = did_you_mean(stranger.name, known) if collector.room("N301") else None
+        collector.tell("N301", stranger.place, name=stranger.name, count=stranger.count, hint=hint)
     if loaded.missing:
-        kinds = ", ".join(f"`{kind.name}` ({kind.inputs} in)" for kind in loaded.missing)
-        collector.tell("N302", count=len(loaded.missing), kinds=kinds)
+        collector.tell("N302", count=len(loaded.missing), kinds=tuple(map(_without_delay, loaded.missing)))
     collector.refuse()
     graph = build_graph(loaded.flat, collector)
     collector.refuse()
     refuse_missing(loaded.flat, graph, loaded.request.grade, collector)
     return graph
+
+
+def _without_delay(kind: Kind) -> str:
+    words = kind.words if kind.group == "part" and kind.words else f"{kind.inputs} in"
+    return f"`{kind.name}` ({words})"
 
 
 def times_of(graph: Graph, grade: Grade, sources: NDArray[np.integer] | None = None) -> Times:

@@ -251,7 +251,7 @@ endmodule
     assert instances(text) == ["assign & assign:&:5: out=y, in1=w, in2=a", "not g: out=w, in=a"]
 
 
-@pytest.mark.parametrize("net", ["wand", "wor", "tri", "triand", "trior", "tri0", "tri1"])
+@pytest.mark.parametrize("net", ["wand", "wor", "triand", "trior"])
 def test_4_6_wired_nets_may_have_several_drivers(net: str, told: Codes) -> None:
     text = (
         f"module board(input a, b, output y);\n{net} w;\nbuf (w, a);\nbuf (w, b);\nbuf (y, w);\nendmodule\n"

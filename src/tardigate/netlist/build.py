@@ -33,6 +33,7 @@ from tardigate.parts.library import Library
 from tardigate.parts.source_delay import SourceDelay, Triple
 from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
+from tardigate.source.faults import InputRefusedError
 from tardigate.syntax import tree
 from tardigate.syntax.verilog_reader import Unit
 
@@ -57,6 +58,8 @@ def build(
     modules = collect(units, library.describes, collector, bulk)
     collector.refuse()
     found = find_top(modules, top, collector)
+    if found is None:
+        _tell_unreadable(modules, collector)
     collector.refuse()
     assert found is not None
     find_ring(modules, [found], collector)
@@ -72,6 +75,18 @@ def build(
         collector.refuse()
         raise
     return Built(found, flat, len({t.module for t in templates}), shop.strangers.resolved(), shop.assumed)
+
+
+def _tell_unreadable(modules: Modules, collector: Collector) -> None:
+    """Tell what is wrong with modules that do not parse: that may be why there is not one top."""
+    for name in modules.names():
+        if not modules.described(name):
+            try:
+                modules.tree(name)
+            except InputRefusedError as refused:
+                for diagnostic in refused.diagnostics:
+                    if diagnostic.code == "V001":
+                        collector.add(diagnostic)
 
 
 class _Shop:

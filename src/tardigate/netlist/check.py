@@ -9,7 +9,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from tardigate.netlist.flat import CONSTANTS, OPEN, Flat
+from tardigate.netlist.flat import CONSTANTS, FLOATING, OPEN, Flat
 from tardigate.netlist.names import Names
 from tardigate.parts.kind import Way
 from tardigate.source.collector import Collector
@@ -31,12 +31,12 @@ def check_structure(flat: Flat, names: Names, collector: Collector, *, complete:
     """Tell what is wrong; without `complete` (undescribed instances) nets without driver are passed over."""
     instance, cell = pin_table(flat)
     way = np.concatenate([*(kind.ways for kind in flat.kinds), np.zeros(0, np.uint8)])[cell]
-    lets_go = np.array([kind.three_state for kind in flat.kinds], bool)
     net = flat.pin_net
     _open_inputs(flat, names, collector, np.flatnonzero((way == Way.INPUT) & (net == OPEN)), instance)
     drives = np.flatnonzero((way == Way.OUTPUT) & (net != OPEN))
     drivers = np.bincount(net[drives], minlength=flat.nets)
-    held = np.bincount(net[drives][~lets_go[flat.inst_kind[instance[drives]]]], minlength=flat.nets)
+    holds = ~_lets_go(flat, instance)[instance[drives]]
+    held = np.bincount(net[drives][holds], minlength=flat.nets)
     inputs = np.array([port.net for port in flat.ports if port.way == Way.INPUT], np.int64)
     both = np.array([port.net for port in flat.ports if port.way == Way.INOUT], np.int64)
     np.add.at(drivers, inputs, 1)
@@ -48,6 +48,15 @@ def check_structure(flat: Flat, names: Names, collector: Collector, *, complete:
         _tell_clash(flat, names, collector, clashing, instance[drives[net[drives] == clashing]])
     if complete:
         _undriven(flat, names, collector, drivers, way, both)
+
+
+def _lets_go(flat: Flat, instance: NDArray[np.int32]) -> NDArray[np.bool_]:
+    """Tell which part instances may let go of their nets: three-state parts, and `s ? a : 1'bz`."""
+    three_state = np.array([kind.three_state for kind in flat.kinds], bool)[flat.inst_kind]
+    chooses = np.array([kind.name == "assign ?:" for kind in flat.kinds], bool)[flat.inst_kind]
+    chooses[np.setdiff1d(np.flatnonzero(chooses), instance[flat.pin_net == FLOATING])] = False
+    lets_go: NDArray[np.bool_] = three_state | chooses
+    return lets_go
 
 
 def _open_inputs(

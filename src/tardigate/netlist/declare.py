@@ -31,7 +31,7 @@ MOST_BITS = 1 << 25
 """Bits of all nets of one module."""
 
 WAYS = {"input": Way.INPUT, "output": Way.OUTPUT, "inout": Way.INOUT}
-_WIRED = ("tri", "wand", "wor", "triand", "trior", "tri0", "tri1")
+_WIRED = ("wand", "wor", "triand", "trior")
 _DRIVEN = ("supply0", "supply1", "tri0", "tri1")
 
 

@@ -30,6 +30,7 @@ from tardigate.netlist.variables import DRIVEN, WIRED, Variables
 from tardigate.netlist.wiring import Wiring
 from tardigate.parts.kind import Kind, Way
 from tardigate.parts.source_delay import SourceDelay
+from tardigate.source.diagnostic import Related
 from tardigate.syntax import tree
 
 _DELAYS = {"bufif0": 3, "bufif1": 3, "notif0": 3, "notif1": 3}
@@ -119,6 +120,7 @@ class Elaborator:
         start = np.concatenate(([0], np.cumsum(columns.count)))
         names = InstanceNames(self.unit.scan.names, columns.name, self.instances.others)
         self.children.sort(key=lambda child: child.place)
+        self._tell_same_names(columns)
         if self.strangers:
             self.workshop.undescribed(self.strangers, self._driven(ports, columns))
         return Template(
@@ -126,6 +128,20 @@ class Elaborator:
             self.variables.net_places(), columns.kind, start, columns.pins, names, columns.place,
             tuple(self.children), self._nets_with(WIRED), self._nets_with(DRIVEN),
         )  # fmt: skip
+
+    def _tell_same_names(self, columns: Block) -> None:
+        """Tell of two instances with one name (clause 4.11; N115)."""
+        below = [(self.declarer.lookup.find(child.name), child.place) for child in self.children]
+        named = np.flatnonzero(columns.name >= 0)
+        numbers = np.concatenate((columns.name[named], np.array([n for n, _ in below], np.int32)))
+        places = np.concatenate((columns.place[named], np.array([at for _, at in below], np.int64)))
+        order = np.argsort(numbers, kind="stable")
+        same = np.flatnonzero((numbers[order[1:]] == numbers[order[:-1]]) & (numbers[order[1:]] >= 0))
+        for at in same.tolist():
+            first, second = sorted(int(place) for place in places[order[at : at + 2]])
+            name = self.unit.scan.names.text(int(numbers[order[at]]))
+            related = (Related(self.wiring.span(first, len(name)), "first one here"),)
+            self.collector.tell("N115", self.wiring.span(second, len(name)), name=name, related=related)
 
     def _nets_with(self, flag: int) -> NDArray[np.int32]:
         """Return the local nets whose variables have a flag."""

@@ -18,6 +18,9 @@ from tardigate.parts.kind import Kind, Way
 CONSTANTS = 4
 """Nets 0, 1, 2, 3 stand for the constants 0, 1, x, z."""
 
+FLOATING = 3
+"""The net of the constant z."""
+
 OPEN = -1
 """The net number of a pin that is connected to nothing."""
 

@@ -5,14 +5,17 @@ Takes numbers, gives hierarchical names (`alu.u3.carry[2]`) and spans, and finds
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 
 import numpy as np
 
 from tardigate.netlist.flat import CONSTANTS, Flat
 from tardigate.netlist.template import Template
+from tardigate.source.placed import PlacedText
 from tardigate.source.span import Span
 
+_WORD = re.compile(rb"\\[^ \t\r\n\f\v]+|[A-Za-z0-9_$]+")
 CONSTANT_NAMES = ("1'b0", "1'b1", "1'bx", "1'bz")
 
 
@@ -63,7 +66,8 @@ class Names:
         raw = int(self._flat.net_raw[net])
         scope = int(np.searchsorted(self._flat.scope_net, raw, "right")) - 1
         template = self._template(scope)
-        return template.text.span(int(template.net_place[raw - int(self._flat.scope_net[scope])]))
+        local = raw - int(self._flat.scope_net[scope])
+        return _word_span(template.text, int(template.net_place[local]))
 
     def _template(self, scope: int) -> Template:
         return self._flat.templates[int(self._flat.scope_template[scope])]
@@ -86,4 +90,10 @@ class Names:
         """Return where a part instance is written."""
         scope, local = self._inst(inst)
         template = self._template(scope)
-        return template.text.span(int(template.inst_place[local]))
+        return _word_span(template.text, int(template.inst_place[local]))
+
+
+def _word_span(text: PlacedText, at: int) -> Span:
+    """Return the span of the name that begins at an offset, or of the sign there."""
+    found = _WORD.match(text.data, at)
+    return text.span(at, found.end() if found else at + 1)

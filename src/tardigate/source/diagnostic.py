@@ -61,7 +61,12 @@ class Diagnostic:
 
 
 def printable(value: object, longest: int = 120) -> str:
-    """Return a value as text that is safe in one line: no control characters, cut in the middle when long."""
+    """Return a value as text that is safe in one line: no control characters, cut in the middle when long.
+
+    Of a tuple each member is cut by itself.
+    """
+    if isinstance(value, tuple):
+        return ", ".join(printable(member, longest) for member in value)
     text = "".join(c if c.isprintable() else "�" for c in str(value))
     if len(text) <= longest:
         return text

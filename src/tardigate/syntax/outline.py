@@ -13,10 +13,12 @@ from numpy.typing import NDArray
 
 from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
+from tardigate.source.diagnostic import did_you_mean
 from tardigate.source.placed import PlacedText
 from tardigate.syntax.plain import NAME
 from tardigate.syntax.scan import OTHER, WORD, Scan
 
+_PARTS_HINT = "This looks like a parts file: give it with `--parts`."
 _BLOCKS = {
     "module": "endmodule", "macromodule": "endmodule", "primitive": "endprimitive", "config": "endconfig",
 }  # fmt: skip
@@ -98,7 +100,9 @@ def _outside(scan: Scan, first: int, stop: int, text: PlacedText, collector: Col
         at = int(scan.at[place])
         if data[at : at + 2] != b"(*":
             end = int(scan.word_stop[scan.word_of[place]]) if scan.kind[place] == WORD else at + 1
-            collector.tell("V003", text.span(at, end), found=data[at:end].decode("latin-1"))
+            word = data[at:end].decode("latin-1")
+            hint = _PARTS_HINT if word == "family" else did_you_mean(word, [*_BLOCKS])
+            collector.tell("V003", text.span(at, end), found=word, hint=hint)
             return
         close = data.find(b"*)", at + 2)
         if close < 0:
