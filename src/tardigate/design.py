@@ -262,6 +262,7 @@ def read_text(
     grade: Grade = "span",
 ) -> Design:
     """Read a design from a text, its parts from another; see `read`."""
+    _check_grade(grade)
     file = SourceFile("design.v", verilog.encode())
     described = (SourceFile("design.parts", parts.encode()),) if parts else ()
     return Design(load(Request((file,), described, top, condition=condition, grade=grade)))
