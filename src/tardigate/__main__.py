@@ -2,6 +2,6 @@
 
 import sys
 
-from tardigate.cli.main import run
+from tardigate.cli.entry import run
 
 sys.exit(run())

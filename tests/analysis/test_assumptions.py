@@ -13,6 +13,7 @@ from tardigate.parts.kind import Kind, Origin
 
 def test_each_assumption_is_counted(make_kind: Callable[..., Kind], make_flat: Callable[..., Flat]) -> None:
     no_min = make_kind("buf", "A B > Y", ("A", "+", "Y", (nan, 2, 3)), ("B", "+", "Y", (nan, 2, 3)))
+    no_min = no_min._replace(unknown_function=True)
     default = make_kind("not", "A > Y", ("A", "-", "Y", (1, 2, 3)), origin=Origin.DEFAULT)
     wire = make_kind("assign", "A > Y", ("A", "+", "Y", (0, 0, 0)), origin=Origin.WIRE)
     register = make_kind("ff", "D C > Q", ("C", "rr", "Q", (1, 2, 5)), launches="C", sinks="D")
@@ -31,6 +32,8 @@ def test_each_assumption_is_counted(make_kind: Callable[..., Kind], make_flat: C
         "clock_pins_at_zero": 1,
         "wires_at_zero": 9,
         "on_family_default": 2,
+        "unknown_functions": 2,
+        "tied_inputs": 1,
         "assigned_wires": 1,
         "never_changing_nets": 2,
     }
@@ -38,3 +41,20 @@ def test_each_assumption_is_counted(make_kind: Callable[..., Kind], make_flat: C
     assert counts("span") == stated | minima
     assert counts("min") == stated | minima
     assert counts("max") == stated
+
+
+def test_clocks_that_come_through_logic_are_counted(
+    make_kind: Callable[..., Kind], make_flat: Callable[..., Flat]
+) -> None:
+    buffer = make_kind("buf", "A > Y", ("A", "+", "Y", (1, 2, 3)))
+    register = make_kind("ff", "D C > Q", ("C", "rr", "Q", (1, 2, 5)), launches="C", sinks="D")
+    flat = make_flat(
+        "d c > q",
+        ("b", buffer, "c k"),
+        ("r1", register, "d c p"),
+        ("r2", register, "p k q"),
+        ("r3", register, "p 1 o"),
+    )
+    graph = build(flat)
+    found = {a.key: a.count for a in find_assumptions(flat, graph, "span", sweep(graph, "span"))}
+    assert found["clocks_through_logic"] == 1

@@ -11,8 +11,12 @@ from tardigate.source.diagnostic import Diagnostic
 
 
 class Answer(NamedTuple):
-    """Makes the lines of the view (or gives text to be printed as it is) and the body of the JSON object."""
+    """Makes the lines of the view (or gives text to be printed as it is) and the body of the JSON object.
+
+    `remark` is a line for standard error, which JSON leaves out.
+    """
 
     view: Callable[[], list[Text] | str]
     body: Callable[[], dict[str, Any]]
     warnings: tuple[Diagnostic, ...] = ()
+    remark: str | None = None

@@ -21,9 +21,16 @@ def explain(options: Options, look: Look) -> Answer:
     try:
         entry = look_up(options.code.upper())
     except KeyError:
-        hint = did_you_mean(options.code.upper(), every_code())
-        raise InputRefusedError((Diagnostic.of("U105", word=options.code, hint=hint),)) from None
+        raise InputRefusedError((Diagnostic.of("U105", word=options.code, hint=_near(options.code)),)) from None
     return Answer(lambda: explain_view(entry, look), lambda: _body([entry]))
+
+
+def _near(word: str) -> str | None:
+    """Return the hint that names a code that the word begins, or the nearest one, of the same letter first."""
+    code, codes = word.upper(), every_code()
+    of_letter = [known for known in codes if known[0] == code[:1]]
+    begun = [known for known in of_letter if known.startswith(code)]
+    return did_you_mean(code, begun[:1] or of_letter or codes)
 
 
 def _body(entries: list[Entry]) -> dict[str, Any]:

@@ -40,7 +40,11 @@ def run(words: Sequence[str] | None = None) -> int:
 
 
 def _act(words: list[str], screen: Screen) -> None:
-    options = read_options(words)
+    try:
+        options = read_options(words)
+    except SystemExit:
+        screen.text("")  # the help has been printed; whether it arrived is known once it is flushed
+        raise
     screen.adopt(options)
     answer = _command(options.command)(options, screen.look())
     screen.answer(answer, None if options.command == "survey" else MOST_WARNINGS)

@@ -165,9 +165,22 @@ def _add_trail(parser: ArgumentParser) -> None:
     add = parser.add_argument
     add("--count", type=_trail_count, default=3, metavar="K", help="how many trails (default: 3)")
     add("--fastest", action="store_true", help="the fastest instead of the slowest")
-    ends = "port, net, part instance or pin (`alu.u3.A`), `*` for any text; may be given several times"
-    add("--from", dest="from_names", action="append", metavar="NAME", help=f"where trails begin: {ends}")
-    add("--to", dest="to_names", action="append", metavar="NAME", help="where trails end: likewise")
+    add(
+        "--from",
+        dest="from_names",
+        action="append",
+        metavar="NAME",
+        help="where trails begin: port, net, part instance or pin (`alu.u3.A`), `*` for any text; may be given"
+        " several times. A net stands for the register clock pins on it too, a pin for the net it is on (a"
+        " register clock pin for itself), an instance for what it drives, a register for its clock pin",
+    )
+    add(
+        "--to",
+        dest="to_names",
+        action="append",
+        metavar="NAME",
+        help="where trails end: likewise, but a register stands for its data and control pins",
+    )
 
 
 def _add_look(parser: ArgumentParser) -> None:

@@ -18,6 +18,7 @@ from tardigate.cli.options import VERSION, Colour, Options
 from tardigate.report.diagnostic_view import diagnostic_lines
 from tardigate.report.looks import NARROWEST, WIDEST, Look
 from tardigate.source.diagnostic import Diagnostic, printable
+from tardigate.source.faults import InputRefusedError
 
 PIPED_WIDTH = 100
 """Columns to lay out for where no terminal says how many it has."""
@@ -34,9 +35,8 @@ class Screen:
         """Return what to lay out for on a stream (standard output for None)."""
         stream = stream or sys.stdout
         encoding = (getattr(stream, "encoding", None) or "ascii").lower()
-        return Look(
-            min(WIDEST, max(NARROWEST, self._width or _width_of(stream))), not encoding.startswith("utf")
-        )
+        plain = not encoding.startswith("utf") or os.environ.get("TERM") == "dumb"
+        return Look(min(WIDEST, max(NARROWEST, self._width or _width_of(stream))), plain)
 
     def adopt(self, options: Options) -> None:
         """Follow what the options say about the look."""
@@ -50,6 +50,8 @@ class Screen:
         if answer.warnings:
             lines = diagnostic_lines(answer.warnings, self.look(sys.stderr), most_warnings)
             self._print([*lines, Text()], sys.stderr)
+        if answer.remark:
+            self.remark(answer.remark)
         view = answer.view()
         if isinstance(view, str):
             self.text(view)
@@ -67,8 +69,8 @@ class Screen:
         self.text(json_text(self.command, body, diagnostics, VERSION))
 
     def refuse(self, diagnostics: Sequence[Diagnostic]) -> None:
-        """Print why the input is refused."""
-        if self.json:
+        """Print why the input is refused; on standard error where standard output cannot be written."""
+        if self.json and not any(diagnostic.code == "U109" for diagnostic in diagnostics):
             self.object({}, diagnostics)
         else:
             self._print(diagnostic_lines(diagnostics, self.look(sys.stderr)), sys.stderr)
@@ -111,13 +113,24 @@ def _width_of(stream: TextIO) -> int:
     columns = os.environ.get("COLUMNS", "")
     if columns.isdecimal() and int(columns):
         return int(columns)
-    try:
-        return os.get_terminal_size(stream.fileno()).columns or PIPED_WIDTH
-    except (OSError, ValueError):
-        return PIPED_WIDTH
+    for terminal in (stream, sys.stderr):  # who pipes a report mostly reads it on the same terminal
+        try:
+            return os.get_terminal_size(terminal.fileno()).columns or PIPED_WIDTH
+        except (AttributeError, OSError, ValueError):  # None stands for a stream that was closed
+            continue
+    return PIPED_WIDTH
 
 
-def _write(text: str, stream: TextIO) -> None:
+def _write(text: str, stream: TextIO | None) -> None:
+    """Write text as far as the encoding can say it. Raises InputRefusedError (U109), BrokenPipeError."""
+    if stream is None:
+        raise InputRefusedError((Diagnostic.of("U109", reason="it is closed"),))
     encoding = getattr(stream, "encoding", None) or "ascii"
-    stream.write(text.encode(encoding, "replace").decode(encoding))
-    stream.flush()
+    try:
+        stream.write(text.encode(encoding, "replace").decode(encoding))
+        stream.flush()
+    except BrokenPipeError:
+        raise
+    except (OSError, ValueError) as error:
+        reason = getattr(error, "strerror", None) or str(error)
+        raise InputRefusedError((Diagnostic.of("U109", reason=reason),)) from None

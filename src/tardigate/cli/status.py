@@ -28,16 +28,25 @@ def status_of(action: Callable[[], None], screen: Screen) -> Status:
     """Run `action` and return the status it ends with; tell on the screen why when it did not go well."""
     try:
         return _told(action, screen)
-    except BrokenPipeError:
-        # The reader of our output has seen enough. Python flushes once more at its end: into nothing.
-        sys.stdout = open(os.devnull, "w", encoding="utf-8")  # noqa: SIM115
+    except BrokenPipeError:  # the reader of our output has seen enough
+        _flush_into_nothing()
         return Status.HOLDS
+    except InputRefusedError:  # even why it is refused cannot be told
+        _flush_into_nothing()
+        return Status.REFUSED
+
+
+def _flush_into_nothing() -> None:
+    """Give Python, which flushes once more at its end, an output that takes it."""
+    sys.stdout = open(os.devnull, "w", encoding="utf-8")  # noqa: SIM115
 
 
 def _told(action: Callable[[], None], screen: Screen) -> Status:
     try:
         action()
     except InputRefusedError as refusal:
+        if any(diagnostic.code == "U109" for diagnostic in refusal.diagnostics):
+            _flush_into_nothing()
         screen.refuse(refusal.diagnostics)
         return Status.REFUSED
     except KeyboardInterrupt:

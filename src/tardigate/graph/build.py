@@ -10,9 +10,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tardigate.graph.check import refuse_loops
-from tardigate.graph.expand import Batch, ClockPins, Hops, batches, expand_arcs, expand_hops, find_clock_pins
+from tardigate.graph.expand import ClockPins, Hops, expand_arcs, expand_hops, find_clock_pins
 from tardigate.graph.levels import IN_LOOP, find_levels
 from tardigate.graph.model import Graph
+from tardigate.netlist.batches import Batch, batches
 from tardigate.netlist.flat import CONSTANTS, Flat
 from tardigate.parts.kind import Way
 from tardigate.source.arrays import distinct

@@ -7,14 +7,13 @@ open pin or a constant net are left out. Does not check anything.
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
 
-from tardigate.netlist.flat import CONSTANTS, Flat
-from tardigate.parts.kind import Kind
+from tardigate.netlist.batches import Batch
+from tardigate.netlist.flat import CONSTANTS
 from tardigate.source.arrays import distinct
 
 Ints = NDArray[np.int32]
@@ -44,31 +43,6 @@ class Arcs(NamedTuple):
     instance: Ints
     pin_in: Ints
     pin_out: Ints
-
-
-@dataclass(frozen=True, slots=True)
-class Batch:
-    """The part instances of one kind, the first row of its delays, and `nets` int32[pins, members]."""
-
-    kind: Kind
-    first_row: int
-    members: Ints
-    nets: Ints
-
-
-def batches(flat: Flat) -> list[Batch]:
-    """Return the part instances kind by kind, in order of kind, in order of instance within."""
-    narrow = np.uint16 if len(flat.kinds) <= 1 << 16 else np.int32  # 16 bits are sorted by digits
-    order = np.argsort(flat.inst_kind.astype(narrow), kind="stable").astype(np.int32)
-    start = np.concatenate(([0], np.cumsum(np.bincount(flat.inst_kind, minlength=len(flat.kinds)))))
-    row, found = 0, []
-    for number, kind in enumerate(flat.kinds):
-        members = order[start[number] : start[number + 1]]
-        if len(members):
-            pins = flat.pin_start[members] + np.arange(len(kind.pins))[:, None]
-            found.append(Batch(kind, row, members, flat.pin_net[pins]))
-        row += kind.hops
-    return found
 
 
 def find_clock_pins(groups: Sequence[Batch]) -> ClockPins:

@@ -135,6 +135,9 @@ class Elaborator:
         named = np.flatnonzero(columns.name >= 0)
         numbers = np.concatenate((columns.name[named], np.array([n for n, _ in below], np.int32)))
         places = np.concatenate((columns.place[named], np.array([at for _, at in below], np.int64)))
+        ordered = np.sort(numbers)
+        if not ((ordered[1:] == ordered[:-1]) & (ordered[1:] >= 0)).any():
+            return
         order = np.argsort(numbers, kind="stable")
         same = np.flatnonzero((numbers[order[1:]] == numbers[order[:-1]]) & (numbers[order[1:]] >= 0))
         for at in same.tolist():

@@ -69,6 +69,7 @@ class Kind(NamedTuple):
     words: str = ""
     register: bool = False
     three_state: bool = False
+    unknown_function: bool = False
 
     @property
     def inputs(self) -> int:

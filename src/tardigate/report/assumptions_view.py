@@ -19,12 +19,26 @@ WORDS = {
         "register clock pin taken as clocked at 0",
         "register clock pins taken as clocked at 0, all together",
     ),
+    "clocks_through_logic": (
+        "register clock pin not clocked straight from an input port; the delay of its clock is not counted",
+        "register clock pins not clocked straight from an input port; the delay of their clock is not counted",
+    ),
     "wires_at_zero": ("net taken as a wire of 0 ns", "nets taken as wires of 0 ns"),
     "minima_at_zero": ("hop whose missing min is taken as 0", "hops whose missing min is taken as 0"),
     "parts_with_minima_at_zero": ("part instance with such a hop", "part instances with such a hop"),
     "on_family_default": (
         "part instance with the family's default delay",
         "part instances with the family's default delay",
+    ),
+    "unknown_functions": (
+        "part instance without function: both edges pass both ways",
+        "part instances without function: both edges pass both ways",
+    ),
+    "tied_inputs": (
+        "input tied to a constant; trails through the other pins of its part are kept even where the"
+        " constant stops them",
+        "inputs tied to a constant; trails through the other pins of their parts are kept even where the"
+        " constant stops them",
     ),
     "assigned_wires": (
         "assignment without operator taken as a wire",

@@ -1,4 +1,4 @@
-"""Numbers to text: times in one unit for a whole report, and frequencies.
+"""Numbers to text: times in one unit for a whole report.
 
 Takes femtoseconds, gives decimal text. Does not choose what is shown.
 """
@@ -18,8 +18,6 @@ MOST_DECIMALS = 3
 
 _LIMITS = (("fs", 10**3), ("ps", 10**6), ("ns", 10**11), ("us", 10**14), ("ms", 10**17))
 """A unit serves times below its limit in fs; seconds serve the rest."""
-
-_HERTZ = (("GHz", 10**9), ("MHz", 10**6), ("kHz", 10**3), ("Hz", 1))
 
 
 class Scale(NamedTuple):
@@ -56,15 +54,6 @@ def scale_of(times: Iterable[float]) -> Scale:
             break
         decimals += 1
     return Scale(unit, decimals)
-
-
-def frequency(period: float) -> str:
-    """Return 1 / `period` (fs, above 0) with its unit, to four figures or whole hertz, rounded down."""
-    hertz = Fraction(10**15) / Fraction(period)
-    unit, per_unit = next((pair for pair in _HERTZ if hertz >= pair[1]), _HERTZ[-1])
-    value = hertz / per_unit
-    decimals = max(0, 4 - len(str(math.floor(value))))
-    return f"{_decimal(math.floor(value * 10**decimals), decimals)} {unit}"
 
 
 def _decimal(steps: int, decimals: int) -> str:

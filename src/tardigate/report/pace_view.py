@@ -14,7 +14,7 @@ from tardigate.report.axis import Axis, with_unit
 from tardigate.report.columns import GAP, Cell, Column, lay_out
 from tardigate.report.looks import STYLES, Look
 from tardigate.report.model import PaceRecord, SinkRecord, SinksRecord
-from tardigate.report.numbers import Scale, frequency, scale_of
+from tardigate.report.numbers import Scale, scale_of
 from tardigate.report.prose import (
     caution_lines,
     counted,
@@ -74,7 +74,7 @@ def _between(record: PaceRecord, scale: Scale, look: Look) -> list[Text]:
         named(trail.source.name, look),
         " to ",
         named(trail.sink.name, look),
-        f": at most {frequency(trail.total)}, setup times not yet counted.",
+        ".",
     )
 
 

@@ -12,7 +12,7 @@ from itertools import islice
 
 import numpy as np
 
-from tardigate.analysis.select import Ints, both_edges, clock_vertices, sink_nets
+from tardigate.analysis.select import Ints, both_edges, clock_vertices, clock_vertices_on, sink_nets
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS, Flat
 from tardigate.netlist.names import Names, positions
@@ -36,21 +36,26 @@ class Picker:
     def sources(self, names: tuple[str, ...]) -> Ints | None:
         """Return vertices where trails may begin, ascending; None for no names.
 
-        A register stands for its clock pins, another part instance for what it drives. Raises
-        InputRefusedError (U104).
+        A net stands for itself and for the register clock pins on it, a port or a pin for its net, but a
+        register's clock pin for itself; a register for its clock pins, another part instance for what it
+        drives. Raises InputRefusedError (U104).
         """
-        return self._vertices(names, self._from_instance, self._from_pin)
+        return self._vertices(names, self._from_instance, self._from_pin, self._from_net)
 
     def sinks(self, names: tuple[str, ...]) -> Ints | None:
         """Return vertices where trails may end, ascending; None for no names.
 
-        A register stands for its data and control pins, another part instance for what it drives. Raises
-        InputRefusedError (U104).
+        A port or a pin stands for its net, a register for its data and control pins, another part instance
+        for what it drives. Raises InputRefusedError (U104).
         """
-        return self._vertices(names, self._to_instance, self._net_of_pin)
+        return self._vertices(names, self._to_instance, self._net_of_pin, _edges_of)
 
     def _vertices(
-        self, names: tuple[str, ...], of_instance: Callable[[int], Ints], of_pin: Callable[[int, int], Ints]
+        self,
+        names: tuple[str, ...],
+        of_instance: Callable[[int], Ints],
+        of_pin: Callable[[int, int], Ints],
+        of_net: Callable[[int], Ints],
     ) -> Ints | None:
         if not names:
             return None
@@ -59,12 +64,12 @@ class Picker:
         for name in names:
             # A name is one thing only (IEEE 1364-2005 clause 4.11); one with `*` means ports and instances,
             # or else pins, or else nets: `alu.*` is what is in there, not what comes in from outside.
-            of_name = self._of_ports(name)
+            of_name = [of_net(net) for net in self._ports(name)]
             if "*" in name or not of_name:
                 pins = list(self._pins(name))
                 of_name += [of_instance(instance) for instance, pin in pins if pin is None]
                 of_name = of_name or [of_pin(instance, pin) for instance, pin in pins if pin is not None]
-            of_name = of_name or [both_edges([net]) for net in self._nets(name)]
+            of_name = of_name or [of_net(net) for net in self._nets(name)]
             if not of_name:
                 faults.append(self._unknown(name))
             found += of_name
@@ -73,9 +78,9 @@ class Picker:
         vertices = distinct(np.concatenate(found))
         return vertices[vertices >= 2 * CONSTANTS]
 
-    def _of_ports(self, name: str) -> list[Ints]:
+    def _ports(self, name: str) -> list[int]:
         fits = _fits(name)
-        return [both_edges([port.net]) for port in self._flat.ports if fits(port.name)]
+        return [port.net for port in self._flat.ports if fits(port.name)]
 
     def _scopes(self, name: str) -> Iterator[tuple[int, str]]:
         """Yield the scopes whose path may begin the name, with their path."""
@@ -165,11 +170,16 @@ class Picker:
         points = np.flatnonzero((graph.clock_pin_instance == instance) & (graph.clock_pin_pin == pin))
         if len(points):
             return np.intersect1d(both_edges(points + graph.nets), graph.sources)
-        return self._net_of_pin(instance, pin)
+        return self._from_net(self._pin_net(instance, pin))
+
+    def _from_net(self, net: int) -> Ints:
+        return np.concatenate([_edges_of(net), clock_vertices_on(self._flat, self._graph, [net])])
 
     def _net_of_pin(self, instance: int, pin: int) -> Ints:
-        net = int(self._flat.pin_net[self._flat.pin_start[instance] + pin])
-        return both_edges([net] if net >= CONSTANTS else [])
+        return _edges_of(self._pin_net(instance, pin))
+
+    def _pin_net(self, instance: int, pin: int) -> int:
+        return int(self._flat.pin_net[self._flat.pin_start[instance] + pin])
 
     def _unknown(self, name: str) -> Diagnostic:
         if any(path == f"{name}." for _, path in self._scopes(f"{name}.")):
@@ -184,6 +194,10 @@ class Picker:
             template = self._flat.templates[self._flat.scope_template[scope]]
             yield from (path + below for below in template.inst_names if below)
             yield from (path + below for below in template.net_names)
+
+
+def _edges_of(net: int) -> Ints:
+    return both_edges([net] if net >= CONSTANTS else [])
 
 
 def _those(column: Sequence[str], path: str, name: str, fits: Fits) -> list[int]:
