@@ -43,7 +43,7 @@ def tardigate(
     """`tardigate("pace", "board.v")`, in a folder that holds `board.v`."""
     (tmp_path / "board.v").write_text(BOARD)
     monkeypatch.chdir(tmp_path)
-    for name in ("COLUMNS", "NO_COLOR", "FORCE_COLOR", "TARDIGATE_DEBUG"):
+    for name in ("COLUMNS", "NO_COLOR", "FORCE_COLOR", "TARDIGATE_DEBUG", "TERM"):
         monkeypatch.delenv(name, raising=False)
 
     def ended(*words: str) -> Ended:

@@ -1,4 +1,4 @@
-"""Times keep their value, take one unit, and frequencies are never told too high."""
+"""Times keep their value and take one unit."""
 
 from __future__ import annotations
 
@@ -9,11 +9,10 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from tardigate.parts.units import FEMTOSECONDS, LONGEST
-from tardigate.report.numbers import MOST_DECIMALS, frequency, scale_of
+from tardigate.report.numbers import MOST_DECIMALS, scale_of
 
 whole_times = st.integers(-int(LONGEST), int(LONGEST)).map(float)
 times = st.floats(-LONGEST, LONGEST)
-HERTZ = {"Hz": 1, "kHz": 10**3, "MHz": 10**6, "GHz": 10**9}
 
 
 @pytest.mark.parametrize(
@@ -62,22 +61,3 @@ def test_texts_are_exact_unless_the_decimals_run_out(given_fs: list[float]) -> N
 def test_all_times_of_a_report_have_their_point_in_the_same_place(given_fs: list[float]) -> None:
     scale = scale_of(given_fs)
     assert {len(scale.text(time).partition(".")[2]) for time in given_fs} == {scale.decimals}
-
-
-@given(st.floats(1e-3, LONGEST))
-def test_a_frequency_is_never_higher_than_the_period_allows_and_close_below(period: float) -> None:
-    number, unit = frequency(period).split()
-    told = Fraction(number) * HERTZ[unit]
-    exact = Fraction(10**15) / Fraction(period)
-    assert told <= exact
-    assert exact - told <= max(exact / 1000, Fraction(1))
-
-
-@pytest.mark.parametrize(
-    ("period_ns", "text"),
-    # 1/27 ns = 37.037 MHz and the three of Brown & Vranesic, Fundamentals of Digital Logic, section 5.15
-    # (the book's figures are from memory); the book rounds, here they are rounded down.
-    [(27, "37.03 MHz"), (2.7, "370.3 MHz"), (6.4, "156.2 MHz"), (5.2, "192.3 MHz"), (0.25, "4.000 GHz")],
-)
-def test_published_periods_as_frequencies(period_ns: float, text: str) -> None:
-    assert frequency(period_ns * 1e6) == text

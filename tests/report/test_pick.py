@@ -22,9 +22,15 @@ endmodule
 module passing(input i, output [1:0] o);
   pair deep (i, i, o);
 endmodule
-module board(input a, input [1:0] b, input ck, output [1:0] s, t, output r);
+module gating(input i, e, output o);
+  wire clock;
+  and #1 u1 (clock, i, e);
+  FF f2 (.D(e), .CK(clock), .Q(o));
+endmodule
+module board(input a, input [1:0] b, input ck, output [1:0] s, t, output r, g);
   pair left (b[0], a, s);
   passing right (b[1], t);
+  gating gated (ck, a, g);
   FF f1 (.D(s[0]), .CK(ck), .Q(r));
 endmodule
 """
@@ -94,6 +100,14 @@ def test_a_register_is_left_at_its_clock_pin_and_reached_at_its_data_pin(found: 
     assert _words(found, found.picker.sinks(("f1",))) == {"s[0]"}
     assert _words(found, found.picker.sinks(("f1.CK",))) == {"ck"}
     assert _words(found, found.picker.sinks(("f1.Q",))) == {"r"}
+
+
+def test_a_net_as_source_stands_for_the_register_clock_pins_on_it_too(found: Found) -> None:
+    for name in ("ck", "c*"):
+        assert _words(found, found.picker.sources((name,))) == {"ck", "clock of f1"}
+        assert _words(found, found.picker.sinks((name,))) == {"ck"}
+    for name in ("gated.clock", "gated.u1.out", "gated.u1"):
+        assert _words(found, found.picker.sources((name,))) == {"gated.clock", "clock of gated.f2"}
 
 
 def test_only_edges_that_launch_begin_a_trail_at_a_clock_pin(found: Found) -> None:

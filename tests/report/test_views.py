@@ -16,7 +16,7 @@ from rich.text import Text
 from tardigate.analysis.assumptions import Key
 from tardigate.report.assumptions_view import WORDS, assumption_words
 from tardigate.report.looks import GLYPHS, NARROWEST, STYLES, WIDEST, Look
-from tardigate.report.model import PaceRecord, SinksRecord, SurveyRecord, TrailRecord, TrailsRecord
+from tardigate.report.model import HopRecord, PaceRecord, SinksRecord, SurveyRecord, TrailRecord, TrailsRecord
 from tardigate.report.numbers import scale_of
 from tardigate.report.pace_view import pace_view
 from tardigate.report.survey_view import survey_view
@@ -40,6 +40,11 @@ def _plain(lines: list[Text]) -> str:
         line.rstrip()
         console.print(line, soft_wrap=True, highlight=False)
     return file.getvalue()
+
+
+def _with_pins(trail: TrailRecord, from_pin: str, to_pin: str) -> TrailRecord:
+    hops = [hop for hop in trail.hops if isinstance(hop, HopRecord)]
+    return trail._replace(hops=tuple(hop._replace(from_pin=from_pin, to_pin=to_pin) for hop in hops))
 
 
 @same_fixtures
@@ -117,6 +122,35 @@ def test_the_first_sentence_of_pace_answers_the_question(make_pace: Callable[...
         "`sequencer` settles in 48.6 ns: the last to settle is `STROBE` (fall),"
         " through 7 hops from `START` (rise)."
     )
+
+
+def test_pace_promises_no_frequency(make_pace: Callable[..., PaceRecord]) -> None:
+    said = pace_view(make_pace(), Look(160))[1].plain
+    assert said == "From register to register the slowest trail takes 36.75 ns, from `START` to `STROBE`."
+
+
+@same_fixtures
+@given(st.integers(NARROWEST, WIDEST), st.booleans())
+def test_pins_keep_their_names_at_every_width(
+    make_trail: Callable[..., TrailRecord], width: int, plain: bool
+) -> None:
+    look = Look(width, plain)
+    trail = _with_pins(make_trail(LONG), "in1", "out")
+    for number, line in enumerate(waterfalls([trail], scale_of([1e6]), look)[0][2:]):
+        begin, end = f"in1{look.edge(number % 2)}", f"out{look.edge(1 - number % 2)}"
+        assert f"{begin}{look.glyph('to')}{end}" in line.plain.replace(" ", "")
+
+
+def test_the_bar_gives_way_before_the_pins_do(make_trail: Callable[..., TrailRecord]) -> None:
+    record = _with_pins(make_trail(), "SELECT_LOW", "DATA_OUT")
+
+    def first(width: int) -> str:
+        return waterfalls([record], scale_of([1.25e6, 48.6e6]), Look(width))[0][2].plain
+
+    assert "SELECT_LOW↑ → DATA_OUT↓" in first(80)
+    assert "SELECT_LOW↑ → DATA_OUT↓" in first(68)
+    assert "SEL…_LOW↑→DATA_OUT↓" in first(64)
+    assert "S…OW↑→D…UT↓" in first(48)
 
 
 def test_pace_says_when_nothing_ever_changes(make_pace: Callable[..., PaceRecord]) -> None:

@@ -36,7 +36,7 @@ def _save(text: str, path: str) -> None:
     """Write to a file that is not there yet, or to a device, which has nothing that could be lost."""
     device = os.path.exists(path) and not os.path.isfile(path)
     try:
-        file = open(path, "w" if device else "x", encoding="utf-8")  # noqa: SIM115 - closed two lines below
+        file = open(path, "w" if device else "x", encoding="utf-8")  # noqa: SIM115 - closed below
     except FileExistsError:
         raise InputRefusedError((Diagnostic.of("U108", path=path),)) from None
     except (OSError, ValueError) as error:

@@ -21,12 +21,14 @@ def explain(options: Options, look: Look) -> Answer:
     try:
         entry = look_up(options.code.upper())
     except KeyError:
-        raise InputRefusedError((Diagnostic.of("U105", word=options.code, hint=_near(options.code)),)) from None
+        raise InputRefusedError(
+            (Diagnostic.of("U105", word=options.code, hint=_near(options.code)),)
+        ) from None
     return Answer(lambda: explain_view(entry, look), lambda: _body([entry]))
 
 
 def _near(word: str) -> str | None:
-    """Return the hint that names a code that the word begins, or the nearest one, of the same letter first."""
+    """Return the hint that names the first code that the word begins, or else the nearest of its letter."""
     code, codes = word.upper(), every_code()
     of_letter = [known for known in codes if known[0] == code[:1]]
     begun = [known for known in of_letter if known.startswith(code)]

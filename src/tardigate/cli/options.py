@@ -170,9 +170,9 @@ def _add_trail(parser: ArgumentParser) -> None:
         dest="from_names",
         action="append",
         metavar="NAME",
-        help="where trails begin: port, net, part instance or pin (`alu.u3.A`), `*` for any text; may be given"
-        " several times. A net stands for the register clock pins on it too, a pin for the net it is on (a"
-        " register clock pin for itself), an instance for what it drives, a register for its clock pin",
+        help="where trails begin: port, net, part instance or pin (`alu.u3.A`), `*` for any text; may be"
+        " given several times. A net stands for the register clock pins on it too, a pin for the net it is on"
+        " (a register clock pin for itself), an instance for what it drives, a register for its clock pin",
     )
     add(
         "--to",

@@ -7,7 +7,8 @@ from __future__ import annotations
 
 import os
 import sys
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
 from typing import Any, TextIO
 
 from rich.console import Console
@@ -18,10 +19,17 @@ from tardigate.cli.options import VERSION, Colour, Options
 from tardigate.report.diagnostic_view import diagnostic_lines
 from tardigate.report.looks import NARROWEST, WIDEST, Look
 from tardigate.source.diagnostic import Diagnostic, printable
-from tardigate.source.faults import InputRefusedError
 
 PIPED_WIDTH = 100
 """Columns to lay out for where no terminal says how many it has."""
+
+
+class UnwrittenError(Exception):
+    """Standard output cannot be written; the diagnostic (U109) is for standard error."""
+
+    def __init__(self, reason: str) -> None:
+        self.diagnostic = Diagnostic.of("U109", reason=reason)
+        super().__init__(reason)
 
 
 class Screen:
@@ -69,11 +77,15 @@ class Screen:
         self.text(json_text(self.command, body, diagnostics, VERSION))
 
     def refuse(self, diagnostics: Sequence[Diagnostic]) -> None:
-        """Print why the input is refused; on standard error where standard output cannot be written."""
-        if self.json and not any(diagnostic.code == "U109" for diagnostic in diagnostics):
+        """Print why the input is refused."""
+        if self.json:
             self.object({}, diagnostics)
         else:
-            self._print(diagnostic_lines(diagnostics, self.look(sys.stderr)), sys.stderr)
+            self.complain(diagnostics)
+
+    def complain(self, diagnostics: Sequence[Diagnostic]) -> None:
+        """Print diagnostics on standard error."""
+        self._print(diagnostic_lines(diagnostics, self.look(sys.stderr)), sys.stderr)
 
     def remark(self, words: str) -> None:
         """Print a line on standard error."""
@@ -92,10 +104,11 @@ class Screen:
         console = self._console(stream, look.width)
         for line in lines:
             line.rstrip()
-        with console.capture() as capture:
-            console.print(Text("\n").join(lines), soft_wrap=True)
-        shown = capture.get()
-        _write(shown.encode("ascii", "replace").decode() if look.plain else shown, stream)
+        with _writing(stream):  # `console` writes nothing and flushes even that
+            with console.capture() as capture:
+                console.print(Text("\n").join(lines), soft_wrap=True)
+            shown = capture.get()
+            _write(shown.encode("ascii", "replace").decode() if look.plain else shown, stream)
 
     def _console(self, stream: TextIO, width: int) -> Console:
         return Console(
@@ -122,15 +135,25 @@ def _width_of(stream: TextIO) -> int:
 
 
 def _write(text: str, stream: TextIO | None) -> None:
-    """Write text as far as the encoding can say it. Raises InputRefusedError (U109), BrokenPipeError."""
-    if stream is None:
-        raise InputRefusedError((Diagnostic.of("U109", reason="it is closed"),))
+    """Write text as far as the encoding can say it."""
     encoding = getattr(stream, "encoding", None) or "ascii"
-    try:
+    with _writing(stream):
+        if stream is None:
+            raise OSError("it is closed")
         stream.write(text.encode(encoding, "replace").decode(encoding))
         stream.flush()
+
+
+@contextmanager
+def _writing(stream: TextIO | None) -> Iterator[None]:
+    """Turn what goes wrong with standard output into UnwrittenError; of standard error nobody can be told.
+
+    A reader that has gone away (BrokenPipeError) is another matter, for either.
+    """
+    try:
+        yield
     except BrokenPipeError:
         raise
-    except (OSError, ValueError) as error:
-        reason = getattr(error, "strerror", None) or str(error)
-        raise InputRefusedError((Diagnostic.of("U109", reason=reason),)) from None
+    except OSError as error:
+        if stream is not sys.stderr:
+            raise UnwrittenError(error.strerror or str(error)) from None

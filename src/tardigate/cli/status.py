@@ -10,7 +10,7 @@ import sys
 from collections.abc import Callable
 from enum import IntEnum
 
-from tardigate.cli.screen import Screen
+from tardigate.cli.screen import Screen, UnwrittenError
 from tardigate.source.faults import InputRefusedError
 
 
@@ -31,8 +31,9 @@ def status_of(action: Callable[[], None], screen: Screen) -> Status:
     except BrokenPipeError:  # the reader of our output has seen enough
         _flush_into_nothing()
         return Status.HOLDS
-    except InputRefusedError:  # even why it is refused cannot be told
+    except UnwrittenError as unwritten:
         _flush_into_nothing()
+        screen.complain((unwritten.diagnostic,))
         return Status.REFUSED
 
 
@@ -45,14 +46,12 @@ def _told(action: Callable[[], None], screen: Screen) -> Status:
     try:
         action()
     except InputRefusedError as refusal:
-        if any(diagnostic.code == "U109" for diagnostic in refusal.diagnostics):
-            _flush_into_nothing()
         screen.refuse(refusal.diagnostics)
         return Status.REFUSED
     except KeyboardInterrupt:
         screen.remark("interrupted")
         return Status.INTERRUPTED
-    except BrokenPipeError:
+    except (BrokenPipeError, UnwrittenError):
         raise
     except SystemExit as ended:  # --help, once it is printed
         return Status(ended.code if isinstance(ended.code, int) else 0)

@@ -21,7 +21,8 @@ WORDS = {
     ),
     "clocks_through_logic": (
         "register clock pin not clocked straight from an input port; the delay of its clock is not counted",
-        "register clock pins not clocked straight from an input port; the delay of their clock is not counted",
+        "register clock pins not clocked straight from an input port; the delay of their clock is not"
+        " counted",
     ),
     "wires_at_zero": ("net taken as a wire of 0 ns", "nets taken as wires of 0 ns"),
     "minima_at_zero": ("hop whose missing min is taken as 0", "hops whose missing min is taken as 0"),

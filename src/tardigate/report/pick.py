@@ -154,16 +154,16 @@ class Picker:
 
     def _from_instance(self, instance: int) -> Ints:
         clocked = clock_vertices(self._graph, [instance])
-        return clocked if len(clocked) else self._driven(instance)
+        return clocked if len(clocked) else self._driven(instance, self._from_net)
 
     def _to_instance(self, instance: int) -> Ints:
         nets = sink_nets(self._flat, [instance])
-        return both_edges(nets) if len(nets) else self._driven(instance)
+        return both_edges(nets) if len(nets) else self._driven(instance, _edges_of)
 
-    def _driven(self, instance: int) -> Ints:
+    def _driven(self, instance: int, of_net: Callable[[int], Ints]) -> Ints:
         kind = self._flat.kinds[self._flat.inst_kind[instance]]
         outputs = np.flatnonzero(kind.ways != Way.INPUT).tolist()
-        return np.concatenate([both_edges([]), *(self._net_of_pin(instance, pin) for pin in outputs)])
+        return np.concatenate([both_edges([]), *(of_net(self._pin_net(instance, pin)) for pin in outputs)])
 
     def _from_pin(self, instance: int, pin: int) -> Ints:
         graph = self._graph

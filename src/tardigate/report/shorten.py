@@ -49,7 +49,7 @@ def shorten(name: str, room: int, cut: str = "…") -> str:
     if cells(name) <= room:
         return name
     cut = take(cut, room)
-    last = name[name.rfind(".") :]
+    last = name[max(0, name.rfind(".")) :]
     left = room - cells(cut) - cells(last)
     if name != last and left >= 0:
         return take(name, left) + cut + last

@@ -16,10 +16,19 @@ from tardigate.report.looks import STYLES, Look
 from tardigate.report.model import FoldRecord, HopRecord, TrailRecord
 from tardigate.report.numbers import Scale
 from tardigate.report.prose import counted
-from tardigate.report.shorten import cells
+from tardigate.report.shorten import cells, shorten
 
 NET_FROM, PLACE_FROM = 100, 116
 """Widths from which the driven net and the place in the source are shown."""
+
+LEAST_BAR = 10
+"""Cells that the bars keep before the names of pins are shortened to make room."""
+
+PIN_ROOMS = (None, 8, 4)
+"""Cells for the name of a pin, tried in this order until a row fits; None: all that it takes."""
+
+PINS = 2
+"""The column of the pins."""
 
 Row = HopRecord | FoldRecord
 
@@ -27,11 +36,7 @@ Row = HopRecord | FoldRecord
 def waterfalls(trails: Sequence[TrailRecord], scale: Scale, look: Look) -> list[list[Text]]:
     """Return the lines of each trail: axis, rule, rows; all with the same columns on the same axis."""
     rows = [row for trail in trails for row in trail.hops]
-    columns, pick = _columns(look)
-    pins = _pins_texts(rows, look)
-    table = [[_cells(row, text, scale, look)[i] for i in pick] for row, text in zip(rows, pins, strict=True)]
-    least = max(16, look.width // 4)
-    head, *lines = lay_out(columns, table, look.width - least - GAP, look)
+    head, *lines = _laid_out(rows, scale, look)
     used = cells(head.plain) + GAP
     axis = Axis(max((t.total for t in trails), default=0.0), max(1, look.width - used), scale.unit, look)
     top = [
@@ -44,6 +49,20 @@ def waterfalls(trails: Sequence[TrailRecord], scale: Scale, look: Look) -> list[
         at += len(trail.hops)
         falls.append([*(line.copy() for line in top), *_barred(trail, mine, axis)])
     return falls
+
+
+def _laid_out(rows: Sequence[Row], scale: Scale, look: Look) -> list[Text]:
+    """Return head and rows without bars; where they are too wide the bars give way first, then the pins."""
+    columns, pick = _columns(look)
+    table = [[_cells(row, scale, look)[i] for i in pick] for row in rows]
+    lines: list[Text] = []
+    for room in PIN_ROOMS:
+        for cells_of_row, text in zip(table, _pins_texts(rows, look, room), strict=True):
+            cells_of_row[PINS] = text
+        lines = lay_out(columns, table, look.width - max(16, look.width // 4) - GAP, look)
+        if cells(lines[0].plain) <= look.width - LEAST_BAR - GAP:
+            break
+    return lines
 
 
 def _barred(trail: TrailRecord, lines: list[Text], axis: Axis) -> list[Text]:
@@ -65,7 +84,7 @@ def _columns(look: Look) -> tuple[list[Column], list[int]]:
     columns = [
         Column("part", least=10),
         Column("kind", style="quiet", least=4),
-        Column("pins", least=9),
+        Column("pins"),
         Column("hop", "right"),
         Column("over", "right"),
         Column("drives", least=8),
@@ -75,24 +94,30 @@ def _columns(look: Look) -> tuple[list[Column], list[int]]:
     return [columns[i] for i in pick], pick
 
 
-def _cells(row: Row, pins: str, scale: Scale, look: Look) -> list[Cell]:
+def _cells(row: Row, scale: Scale, look: Look) -> list[Cell]:
+    """Return the cells of a row, but for its pins."""
     delay, over = scale.text(row.delay), scale.text(row.over)
     if isinstance(row, FoldRecord):
         told = f"{look.glyph('dot')} {counted(row.hops, 'other hop')}"
         return [(told, "quiet"), "", "", (delay, "quiet"), (over, "quiet"), "", ""]
     # The file's own name is enough to tell it by here; JSON has the path.
     place = f"{PurePath(row.place.path).name}:{row.place.line}" if row.place else ""
-    return [row.instance, row.kind, pins, delay, over, row.net, place]
+    return [row.instance, row.kind, "", delay, over, row.net, place]
 
 
-def _pins_texts(rows: Sequence[Row], look: Look) -> list[str]:
-    """Return `A↑ → Y↓` for each hop, arrows below one another."""
+def _pins_texts(rows: Sequence[Row], look: Look, room: int | None) -> list[str]:
+    """Return `A↑ → Y↓` for each hop, arrows below one another; `A↑→Y↓` where names have only `room` cells."""
     ends = [
-        (f"{row.from_pin}{look.edge(row.from_edge)}", f"{row.to_pin}{look.edge(row.to_edge)}")
+        (_pin(row.from_pin, row.from_edge, look, room), _pin(row.to_pin, row.to_edge, look, room))
         if isinstance(row, HopRecord)
         else ("", "")
         for row in rows
     ]
-    wide = min(12, max((cells(begin) for begin, _ in ends), default=0))
-    to = look.glyph("to")
-    return [f"{begin.ljust(wide)} {to} {end}" if end else "" for begin, end in ends]
+    wide = min(12, max((cells(begin) for begin, _ in ends), default=0)) if room is None else 0
+    to = f" {look.glyph('to')} " if room is None else look.glyph("to")
+    return [f"{begin.ljust(wide)}{to}{end}" if end else "" for begin, end in ends]
+
+
+def _pin(name: str, edge: int, look: Look, room: int | None) -> str:
+    name = look.safe(name)
+    return (shorten(name, room, look.glyph("cut")) if room else name) + look.edge(edge)
