@@ -23,7 +23,6 @@ from tardigate.netlist.check import check_structure
 from tardigate.netlist.flat import Flat
 from tardigate.netlist.names import Names
 from tardigate.netlist.strangers import Undescribed
-from tardigate.parts.draft import UndescribedModule, draft_text
 from tardigate.parts.kind import Kind, Origin
 from tardigate.parts.library import Library
 from tardigate.source.arrays import distinct
@@ -158,6 +157,8 @@ def assumptions_of(loaded: Loaded, graph: Graph, grade: Grade, times: Times) -> 
 
 def draft_of(loaded: Loaded) -> str:
     """Return a parts file skeleton for all that has no delay yet."""
+    from tardigate.parts.draft import UndescribedModule, draft_text  # few runs need it
+
     strangers = [
         UndescribedModule(s.name, tuple((pin, s.ways.get(pin)) for pin in s.pins), s.pins)
         for s in loaded.undescribed

@@ -36,7 +36,7 @@ def test_every_option_reaches_the_record() -> None:
         json=True,
         colour="never",
         width=90,
-        count=7,
+        trails=7,
         fastest=True,
         from_names=("a", "b.*"),
         to_names=("u1.Y",),

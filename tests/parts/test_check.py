@@ -118,3 +118,31 @@ def test_a_constant_output_needs_no_time(told: Told) -> None:
 )
 def test_families(told: Told, text: str, code: str) -> None:
     assert {line.split()[0] for line in told(text)} == {code}
+
+
+@pytest.mark.parametrize(
+    "body",
+    [
+        "inputs A; outputs Y = A; times ns { tpd A => Y 1; }",
+        "inputs A, G; outputs Y = A when G; times ns { tpd A => Y 1; ten G => Y 1; tdis G => Y 1; }",
+        "inputs D, CK, E; outputs Q; register posedge CK { Q = E & D; } times ns { tpd CK => Q 1; }",
+        "inputs A, B; outputs Y = A; times ns { tpd A => Y 1; } checks ns { tw B high 1; }",
+        "inputs A, B; outputs Y; times ns { tpd A => Y when B 1; }",
+        "inputs A[1:0]; outputs Y = A[0]; times ns { tpd A[0] => Y 1; }",
+        "inputs A;",
+    ],
+)
+def test_a_pin_that_is_used_is_not_warned_of(told: Told, body: str) -> None:
+    assert told(part(body)) == []
+
+
+@pytest.mark.parametrize(
+    "body",
+    [
+        "inputs A,\nB; outputs Y = A; times ns { tpd A => Y 1; }",
+        "inputs A,\nB; outputs Y = A; times ns { tpd A, B => Y 1; }",
+        "inputs A,\nB[3:0]; outputs Y; times ns { tpd A => Y 1; }",
+    ],
+)
+def test_a_pin_that_nothing_uses_is_warned_of(told: Told, body: str) -> None:
+    assert told(part(body)) == ["P034 0:4"]

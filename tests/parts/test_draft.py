@@ -2,10 +2,12 @@
 
 from collections.abc import Callable
 
+import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
 from tardigate.parts.draft import UndescribedModule, draft_text
+from tardigate.parts.dump import dump_kind
 from tardigate.parts.gates import BUFFERS, GATES, OPERATORS, THREE_STATE
 from tardigate.parts.kind import Kind, Origin, Way
 from tardigate.parts.library import Library
@@ -32,7 +34,9 @@ def operator(name: str, inputs: int) -> Kind:
 
 GATE_KINDS = st.builds(gate, st.sampled_from(sorted(GATES)), st.integers(1, 12))
 OPERATOR_KINDS = st.builds(operator, st.sampled_from(sorted(OPERATORS)), st.integers(1, 40))
-NAMES = st.text(st.characters(codec="ascii", min_codepoint=33, max_codepoint=126), min_size=1, max_size=8)
+NAMES = st.text(
+    st.characters(codec="ascii", min_codepoint=33, max_codepoint=126), min_size=1, max_size=8
+).filter(lambda name: name not in ("D", "d"))  # no register is guessed without
 PINS = st.lists(st.tuples(NAMES, st.sampled_from([*Way, None])), unique_by=lambda pin: pin[0], max_size=6)
 MODULES = st.lists(
     st.builds(lambda name, pins: UndescribedModule(name, tuple(pins)), NAMES, PINS),
@@ -77,3 +81,40 @@ def test_vectors_and_pins_by_order_are_declared() -> None:
 def test_equal_kinds_are_written_once(library: Callable[..., Library]) -> None:
     text = draft_text([gate("nand", 2), library("family F { }").gate_kind("nand", 2)], [])
     assert text.count("tPLH  nand(2)") == 1
+
+
+def test_a_register_is_guessed_from_the_names_of_pins() -> None:
+    pins = (("clr_n", Way.INPUT), ("d", None), ("clk", None), ("q", None), ("q_n", None))
+    text = draft_text([], [UndescribedModule("DFF", pins, {"d": 4, "q": 4, "q_n": 4})])
+    kind = read(text.replace("-:-:-", "1:2:3")).part_kind("DFF")
+    assert dump_kind(kind).splitlines()[-1] == "  sinks d[3] d[2] d[1] d[0]"
+    assert kind.origin == Origin.PARTS
+    assert {kind.pins[tail] for tail in kind.hop_from} == {"clk"}
+    assert kind.launches.all()
+    assert kind.hops == 16
+
+
+@pytest.mark.parametrize(
+    ("pins", "widths"),
+    [
+        ((("CK", Way.OUTPUT), ("D", None), ("Q", None)), {}),
+        ((("CK", None), ("D", None), ("Q", Way.INPUT)), {}),
+        ((("CK", None), ("CLK", None), ("D", None), ("Q", None)), {}),
+        ((("CK", None), ("D", None), ("Q", None), ("TC", Way.OUTPUT)), {}),
+        ((("CK", None), ("D", None), ("Q", None)), {"D": 2}),
+        ((("CK", None), ("D", None), ("Q", None)), {"CK": 2}),
+        ((("EN", None), ("D", None), ("Q", None)), {}),
+    ],
+)
+def test_no_register_is_guessed_where_a_pin_speaks_against_it(
+    pins: tuple[tuple[str, Way | None], ...], widths: dict[str, int]
+) -> None:
+    assert not read(draft_text([], [UndescribedModule("X", pins, widths)])).part_kind("X").register
+
+
+def test_comments_are_at_most_100_columns_wide() -> None:
+    register = UndescribedModule("DFF", (("D", None), ("CK", None), ("Q", None), ("EN", None)))
+    box = UndescribedModule("BOX", (("A", None), ("Y", Way.OUTPUT)))
+    comments = [line for line in draft_text([], [register, box]).splitlines() if "//" in line]
+    assert len(comments) > 8
+    assert max(map(len, comments)) <= 100

@@ -208,3 +208,92 @@ def test_a_deep_expression_needs_no_recursion(library: Read) -> None:
     function = "~(" * 5000 + "A" + ")" * 5000
     read = library(family(f"inputs A; output Y = {function}; times ns {{ tpd A => Y 1; }}"))
     assert lines(read, "P")[1:] == ["A rise -> Y rise 1:1:1", "A fall -> Y fall 1:1:1"]
+
+
+@pytest.mark.parametrize(
+    ("body", "unknown"),
+    [
+        ("inputs A; output Y; times ns { tpd A => Y 1; }", True),
+        ("inputs A; output Y; times ns { tpd posedge A => Y 1; }", True),
+        ("inputs A; output Y; times ns { tpd A -=> Y 1; }", False),
+        ("inputs A; output Y; times ns { tPLH negedge A -=> Y 1; }", False),
+        ("inputs A; output Y = ~A; times ns { tpd A => Y 1; }", False),
+        ("inputs A; outputs X = A, Y; times ns { tpd A => X, Y 1; }", True),
+        ("inputs D, CK; output Q; register posedge CK { Q = D; } times ns { tpd CK => Q 1; }", False),
+        (
+            "inputs D, CK; output Y; state S; register posedge CK { S = D; } times ns { tpd CK => Y 1; }",
+            False,
+        ),
+    ],
+)
+def test_kinds_of_unknown_function_are_marked(library: Read, body: str, unknown: bool) -> None:
+    assert library(family(body)).part_kind("P").unknown_function is unknown
+
+
+def test_an_output_that_only_the_default_times_is_of_unknown_function(library: Read) -> None:
+    read = library(family("inputs A; output Y;", "default ns { tpd 1; }"))
+    assert read.part_kind("P").unknown_function
+
+
+@pytest.mark.parametrize(
+    ("function", "rows", "expected"),
+    [
+        ("0", "tPZL A => Y 1; tPLZ A => Y 2;", ["A rise -> Y fall 1:1:1", "A fall -> Y rise 2:2:2"]),
+        ("1", "tPZH A => Y 1; tPHZ A => Y 2;", ["A rise -> Y rise 1:1:1", "A fall -> Y fall 2:2:2"]),
+        ("0", "ten A => Y 1; tdis A => Y 2;", ["A rise -> Y fall 1:1:1", "A fall -> Y rise 2:2:2"]),
+    ],
+)
+def test_an_open_output_moves_between_two_states(
+    library: Read, function: str, rows: str, expected: list[str]
+) -> None:
+    read = library(family(f"inputs A; output Y = {function} when A; times ns {{ {rows} }}"))
+    assert lines(read, "P") == ["part P PARTS three-state", *expected]
+
+
+def test_a_level_that_only_lets_go_is_never_driven(library: Read) -> None:
+    rows = "tpd A => Y 1; tPZL A => Y 2; tPLZ A => Y 3;"
+    found = lines(library(family(f"inputs A; output Y = A when ~A; times ns {{ {rows} }}")), "P")
+    assert found[3:] == ["A fall -> Y fall 2:2:2", "A rise -> Y rise 3:3:3"]
+
+
+def test_pairs_that_cannot_make_the_change_are_left_out(library: Read) -> None:
+    part = """inputs D, CK, PRE; outputs Q, QN = ~Q; register posedge CK { Q = D; set PRE; }
+      times ns { tPLH CK, PRE => Q, QN 1; tPHL CK, PRE => Q, QN 2; }"""
+    assert [line for line in lines(library(family(part)), "P") if line.startswith("PRE")] == [
+        "PRE rise -> Q rise 1:1:1",
+        "PRE rise -> QN fall 2:2:2",
+    ]
+
+
+def test_what_has_no_number_is_named(library: Read) -> None:
+    text = """family F { conditions { c1; c5; }
+      gates ns { tpd nand 1 | -; }
+      part P { inputs A, B; output Y = A & B; times ns {
+        tpd A => Y 1 | -;
+        tpd B => Y 1 | 2; } }
+      part Q { inputs A, B; output Y = A & B; times ns {
+        tpd A => Y - | 1;
+        tPLH B => Y 1 | 1; tPHL B => Y - | 2; } } }"""
+    cold, hot = library(text, condition="c1"), library(text, condition="c5")
+    assert cold.part_kind("P").words == "0.parts:3"
+    assert hot.part_kind("P").words == "tpd A => Y has no number under condition c5, 0.parts:4"
+    words = "tpd A => Y has no number under condition c1, 0.parts:7, and 1 more row"
+    assert cold.part_kind("Q").words == words
+    assert hot.part_kind("Q").words == "0.parts:6"
+    assert hot.gate_kind("nand", 2).words == "tpd nand has no number under condition c5, 0.parts:2"
+    plain = library(family("inputs A; output Y = A; times ns { tpd A => Y -; }"))
+    assert plain.part_kind("P").words == "tpd A => Y has no number, 0.parts:1"
+
+
+def test_what_has_no_row_is_named(library: Read) -> None:
+    rest = "default ns { tPLH 1; }"
+    read = library(family("inputs A; output Y = A; times ns { tPLH A => Y 1; }", rest))
+    assert read.part_kind("P").words == "no row gives tPHL A => Y, 0.parts:1"
+
+
+def test_many_aliases_are_known(library: Read) -> None:
+    names = ", ".join(f"A{i}" for i in range(3000))
+    rest = f"alias {names} = P; equivalent P, {names};"
+    read = library(family("inputs A; output Y = A; times ns { tpd A => Y 1; }", rest))
+    assert len(read.part_names()) == 3001
+    assert read.part_kind("A2999") is read.part_kind("P")

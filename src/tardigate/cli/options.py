@@ -6,8 +6,7 @@ Takes words, gives `Options`. Does not open the files that are named.
 from __future__ import annotations
 
 from argparse import ArgumentParser, ArgumentTypeError, Namespace, RawDescriptionHelpFormatter
-from dataclasses import dataclass
-from typing import Any, Literal, NoReturn
+from typing import Any, Literal, NamedTuple, NoReturn
 
 from tardigate.report.looks import NARROWEST
 from tardigate.source.diagnostic import Diagnostic, did_you_mean
@@ -42,8 +41,7 @@ tardigate itself.
 """
 
 
-@dataclass(frozen=True, slots=True)
-class Options:
+class Options(NamedTuple):
     """What the command line asks for; what a command has no option for stands at its default."""
 
     command: str
@@ -57,7 +55,7 @@ class Options:
     json: bool = False
     colour: Colour = "auto"
     width: int | None = None
-    count: int = 3
+    trails: int = 3
     fastest: bool = False
     from_names: tuple[str, ...] = ()
     to_names: tuple[str, ...] = ()
@@ -163,7 +161,14 @@ def _add_design(parser: ArgumentParser) -> None:
 
 def _add_trail(parser: ArgumentParser) -> None:
     add = parser.add_argument
-    add("--count", type=_trail_count, default=3, metavar="K", help="how many trails (default: 3)")
+    add(
+        "--count",
+        dest="trails",
+        type=_trail_count,
+        default=3,
+        metavar="K",
+        help="how many trails (default: 3)",
+    )
     add("--fastest", action="store_true", help="the fastest instead of the slowest")
     add(
         "--from",

@@ -25,7 +25,7 @@ def trail(options: Options, look: Look) -> Answer:
     graph = graph_of(loaded)
     picker = Picker(loaded.flat, loaded.names, graph)
     sources, sinks = picker.sources(options.from_names), picker.sinks(options.to_names)
-    trails = trails_of(loaded, graph, options.grade, options.count, not options.fastest, sources, sinks)
+    trails = trails_of(loaded, graph, options.grade, options.trails, not options.fastest, sources, sinks)
     records = Records(loaded.flat, loaded.names, graph)
     most = None if options.json else MOST_HOPS
     places = options.json or look.width >= PLACE_FROM

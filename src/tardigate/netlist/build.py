@@ -203,7 +203,7 @@ class _Shop:
 
     def outputs(self, instances: Block, children: Sequence[Child]) -> Iterable[NDArray[np.int32]]:
         """Yield the local nets at outputs of part instances and of modules below."""
-        start = np.cumsum(instances.count) - instances.count
+        start = np.cumsum(instances.counts) - instances.counts
         for number in distinct(instances.kind).tolist():
             rows = start[instances.kind == number]
             for pin in np.flatnonzero(self.kinds.kinds[number].ways != Way.INPUT).tolist():

@@ -6,7 +6,7 @@ Takes instances one by one or in bulk, in any order, gives the columns of a temp
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -14,12 +14,12 @@ from numpy.typing import NDArray
 from tardigate.parts.kind import Kind
 
 
-@dataclass(slots=True)
 class Kinds:
     """The kinds in use, numbered as they are met."""
 
-    kinds: list[Kind] = field(default_factory=list)
-    _numbers: dict[int, int] = field(default_factory=dict)
+    def __init__(self) -> None:
+        self.kinds: list[Kind] = []
+        self._numbers: dict[int, int] = {}
 
     def number(self, kind: Kind) -> int:
         """Return the number of a kind; the same object always has the same."""
@@ -29,28 +29,27 @@ class Kinds:
         return number
 
 
-@dataclass(frozen=True, slots=True)
-class Block:
-    """Instances in columns: `pins` int32 holds the nets of all, `count` int64 of each."""
+class Block(NamedTuple):
+    """Instances in columns: `pins` int32 holds the nets of all, `counts` int64 says how many each has."""
 
     kind: NDArray[np.int32]
     place: NDArray[np.int64]
     name: NDArray[np.int32]
-    count: NDArray[np.int64]
+    counts: NDArray[np.int64]
     pins: NDArray[np.int32]
 
 
-@dataclass(slots=True)
 class Instances:
-    """The part instances of one module."""
+    """The part instances of one module; `others` are names that do not stand in its file."""
 
-    others: list[str] = field(default_factory=list)
-    _blocks: list[Block] = field(default_factory=list)
-    _kind: list[int] = field(default_factory=list)
-    _place: list[int] = field(default_factory=list)
-    _name: list[int] = field(default_factory=list)
-    _count: list[int] = field(default_factory=list)
-    _pins: list[int] = field(default_factory=list)
+    def __init__(self) -> None:
+        self.others: list[str] = []
+        self._blocks: list[Block] = []
+        self._kind: list[int] = []
+        self._place: list[int] = []
+        self._name: list[int] = []
+        self._count: list[int] = []
+        self._pins: list[int] = []
 
     def add(self, kind: int, place: int, name: int, pins: Sequence[int]) -> None:
         """Add one instance; `name` is a number in the file, -1 for none, or what `other_name` gave."""
@@ -80,7 +79,7 @@ class Instances:
             return single
         kind, place, name, count, pins = (
             np.concatenate([getattr(block, column) for block in blocks])
-            for column in ("kind", "place", "name", "count", "pins")
+            for column in ("kind", "place", "name", "counts", "pins")
         )
         if (place[1:] >= place[:-1]).all():
             return Block(kind, place, name, count, pins)

@@ -56,13 +56,14 @@ class Connector:
             found[: len(instance.connections)] = instance.connections
             return found
         for connection in named:
-            span = self.wiring.span(connection.at, len(connection.pin))
             at = interface.find(connection.pin)
             if at < 0:
+                span = self.wiring.span(connection.at, len(connection.pin))
                 interface.tell_unknown(connection.pin, span, self.wiring.collector)
                 return None
             before = found[at]
             if before is not None:
+                span = self.wiring.span(connection.at, len(connection.pin))
                 first = Related(self.wiring.span(before.at, len(before.pin)), "first connected here")
                 self.wiring.collector.tell("N162", span, pin=connection.pin, related=(first,))
                 return None

@@ -117,7 +117,7 @@ class Elaborator:
 
     def _made(self, parameters: str, ports: tuple[TemplatePort, ...]) -> Template:
         columns = self.instances.columns()
-        start = np.concatenate(([0], np.cumsum(columns.count)))
+        start = np.concatenate(([0], np.cumsum(columns.counts)))
         names = InstanceNames(self.unit.scan.names, columns.name, self.instances.others)
         self.children.sort(key=lambda child: child.place)
         self._tell_same_names(columns)

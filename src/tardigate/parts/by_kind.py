@@ -10,7 +10,7 @@ from collections.abc import Iterable
 from typing import NamedTuple
 
 from tardigate.parts.kind import Origin
-from tardigate.parts.kind_maker import MISSING, Delay, given
+from tardigate.parts.kind_maker import MISSING, UNKNOWN, Delay, given
 from tardigate.parts.model import Entry
 
 LIKE = {"ZH": "LH", "ZL": "HL", "HZ": "HL", "LZ": "LH"}
@@ -22,14 +22,23 @@ class ByKind:
 
     def __init__(self) -> None:
         self.entries: dict[tuple[str, str], list[tuple[Entry, Delay]]] = {}
+        self.empty: dict[tuple[str, str], list[tuple[Entry, Delay]]] = {}
 
-    def add(self, entries: Iterable[Entry], column: int, origin: Origin, told: str = "") -> None:
+    def add(
+        self, entries: Iterable[Entry], column: int, origin: Origin, told: str = "", condition: str = ""
+    ) -> None:
         """Take entries with the delays of one column; a row of nothing but `-` counts as not there."""
+        under = f" under condition {condition}" if condition else ""
         for entry in entries:
             triple = entry.columns[column]
+            key = (entry.name, entry.transition)
             if given(triple):
                 delay = Delay(triple, origin, f"{told}{entry.place}")
-                self.entries.setdefault((entry.name, entry.transition), []).append((entry, delay))
+                self.entries.setdefault(key, []).append((entry, delay))
+            else:
+                words = f"{entry.symbol} {entry.name} has no number{under}, {entry.place}"
+                missing = Delay(UNKNOWN, Origin.MISSING, words)
+                self.empty.setdefault(key, []).append((entry, missing))
 
     def find(self, name: str, inputs: int, transition: str) -> Delay | None:
         """Return the delay of an entry, or None."""
@@ -41,13 +50,22 @@ class ByKind:
         return None if found is None else found[1]
 
     def _nearest(self, name: str, inputs: int, transition: str) -> tuple[Entry, Delay] | None:
-        anyhow = None
-        for entry, delay in self.entries.get((name, transition), ()):
-            if entry.low <= inputs <= entry.high:
-                return entry, delay
-            if entry.high == 0:
-                anyhow = (entry, delay)
-        return anyhow
+        return _nearest(self.entries.get((name, transition), ()), inputs)
+
+    def why_missing(self, name: str, inputs: int, transition: str) -> Delay:
+        """Return the unknown delay that says which row has no number, if there is such a row."""
+        found = _nearest(self.empty.get((name, transition), ()), inputs)
+        return MISSING if found is None else found[1]
+
+
+def _nearest(entries: Iterable[tuple[Entry, Delay]], inputs: int) -> tuple[Entry, Delay] | None:
+    anyhow = None
+    for entry, delay in entries:
+        if entry.low <= inputs <= entry.high:
+            return entry, delay
+        if entry.high == 0:
+            anyhow = (entry, delay)
+    return anyhow
 
 
 class Choice(NamedTuple):
@@ -59,4 +77,5 @@ class Choice(NamedTuple):
 
     def delay(self, table: ByKind, name: str, inputs: int, transition: str) -> Delay:
         """Return the delay that wins for a gate or operator; without any, one of unknown numbers."""
-        return table.find(name, inputs, transition) or self.default.find("", 0, transition) or MISSING
+        found = table.find(name, inputs, transition) or self.default.find("", 0, transition)
+        return found or table.why_missing(name, inputs, transition)

@@ -75,31 +75,36 @@ def check_aliases(families: Iterable[Family], parts: Mapping[str, Part], collect
             collector.tell("P016", place.span(), hint=hint, what=f"alias `{name}`", name=target)
 
 
-def resolve(name: str, families: Iterable[Family], parts: Mapping[str, Part]) -> Part | None:
-    """Return the part that a name or alias stands for."""
+def resolve(names: Sequence[str], families: Iterable[Family], parts: Mapping[str, Part]) -> dict[str, Part]:
+    """Return the parts that names or aliases stand for; a name that stands for none is left out."""
     aliases = {alias: to for family in families for alias, (to, _) in family.aliases.items()}
-    for _ in range(len(aliases) + 1):
-        if name in parts or name not in aliases:
-            break
-        name = aliases[name]
-    return parts.get(name)
+    ends: dict[str, Part | None] = dict(parts)
+    for name in names:
+        chain: dict[str, None] = {}
+        at = name
+        while at not in ends and at not in chain and at in aliases:
+            chain[at] = None
+            at = aliases[at]
+        ends.update(dict.fromkeys([*chain, name], ends.get(at)))
+    return {name: part for name in names if (part := ends[name]) is not None}
 
 
 def check_equivalents(families: Sequence[Family], parts: Mapping[str, Part], collector: Collector) -> None:
     """Tell equivalents that are not described, or whose pins are others than those of the first."""
-    for family in families:
-        for group in family.equivalents:
-            first: Part | None = None
-            for name, place in group:
-                part = resolve(name, families, parts)
-                if part is None:
-                    hint = did_you_mean(name, list(parts))
-                    collector.tell("P016", place.span(), hint=hint, what="`equivalent`", name=name)
-                    continue
-                first = first or part
-                if _shape(part) != _shape(first):
-                    related = (Related(first.place.span(), f"`{first.name}`"),)
-                    collector.tell("P021", place.span(), related=related, name=name, first=first.name)
+    groups = [group for family in families for group in family.equivalents]
+    known = resolve([name for group in groups for name, _ in group], families, parts)
+    for group in groups:
+        first: Part | None = None
+        for name, place in group:
+            part = known.get(name)
+            if part is None:
+                hint = did_you_mean(name, list(parts))
+                collector.tell("P016", place.span(), hint=hint, what="`equivalent`", name=name)
+                continue
+            first = first or part
+            if _shape(part) != _shape(first):
+                related = (Related(first.place.span(), f"`{first.name}`"),)
+                collector.tell("P021", place.span(), related=related, name=name, first=first.name)
 
 
 def _shape(part: Part) -> list[tuple[str, int, int, int]]:

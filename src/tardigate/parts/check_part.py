@@ -7,14 +7,13 @@ times. Does not build anything.
 from __future__ import annotations
 
 from tardigate.parts.function import NEGATIVE, POSITIVE
-from tardigate.parts.kind import Edge
+from tardigate.parts.kind import Edge, Way
 from tardigate.parts.match import Matched, match
-from tardigate.parts.model import Part, Place, Register, Row
+from tardigate.parts.model import SYMBOLS, Part, Place, Register, Row
 from tardigate.parts.needs import NOBODY, Need, function_of
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Related
 
-SYMBOLS = {"LH": "tPLH", "HL": "tPHL", "ZH": "tPZH", "ZL": "tPZL", "HZ": "tPHZ", "LZ": "tPLZ"}
 WORDS = {POSITIVE: "follows it", NEGATIVE: "inverts it", POSITIVE | NEGATIVE: "goes both ways with it"}
 MOVES = {Edge.RISE: "rise", Edge.FALL: "fall"}
 
@@ -33,6 +32,8 @@ def check_part(part: Part, has_default: bool, collector: Collector) -> None:
     if not has_default and not own.all():
         _missing(part, matched, own)
         _uncovered(part, matched, own)
+    if not own.all():
+        _unused(part, matched, own)
     for diagnostic in own.all():
         collector.add(diagnostic)
 
@@ -121,6 +122,28 @@ def _idle(part: Part, matched: Matched, told: set[int], collector: Collector) ->
             told.add(id(row))
             ends = part.bit_names[tail], part.bit_names[head]
             collector.tell("P013", row.place.span(), symbol=row.symbol, tail=ends[0], head=ends[1])
+
+
+def _unused(part: Part, matched: Matched, collector: Collector) -> None:
+    """Warn of input pins that nothing uses; a part without outputs only hangs on its nets."""
+    network = part.network
+    used = {need.tail for need, _ in matched.timed} | {need.tail for need in matched.missing}
+    roots = [*part.functions.values(), *part.enables.values()]
+    roots += [row.when for row in part.rows] + [check.when for check in part.checks]
+    for register in part.registers:
+        used.add(register.clock)
+        roots += [*register.stores.values(), register.clear, register.set]
+    for check in part.checks:
+        used.update((*check.bits, check.reference))
+    for root in roots:
+        used |= network.support(root) if root >= 0 else frozenset()
+    first = 0
+    drives = any(pin.way != Way.INPUT for pin in part.pins)
+    for pin in part.pins:
+        idle = used.isdisjoint(range(first, first + pin.width))
+        if idle and drives and pin.way == Way.INPUT and pin.place is not None:
+            collector.tell("P034", pin.place.span(), part=part.name, name=pin.name)
+        first += pin.width
 
 
 def _missing(part: Part, matched: Matched, collector: Collector) -> None:

@@ -11,6 +11,7 @@ from collections.abc import Mapping, Sequence
 from types import MappingProxyType
 from typing import NamedTuple
 
+from tardigate.parts.draft_guess import Guess, guessed
 from tardigate.parts.gates import BUFFERS, THREE_STATE
 from tardigate.parts.kind import Kind, Way
 from tardigate.syntax.parts_reader import reserved_words
@@ -20,8 +21,19 @@ LETTING_GO = ("tPZH", "tPZL", "tPHZ", "tPLZ")
 EMPTY = "-:-:-"
 
 HEAD = """\
-// Parts without delays yet. Replace each `-` by a number in ns, as min:typ:max; leave the `-` where the data
-// sheet gives none. One number alone stands for all three, and `tpd` for tPLH and tPHL alike.
+// Parts without delays yet. Replace each `-` by a number in ns, as min:typ:max. A min that the
+// data sheet does not give may stay `-`; typ and max are needed where the grade asks for them.
+// One number alone stands for all three, and `tpd` for tPLH and tPHL alike.
+"""
+
+GUESSED = """\
+    // Guessed from the names of the pins: a register that stores at the rising edge of its clock.
+    // Compare it with the data sheet: a latch or a falling edge is written otherwise.
+"""
+
+OTHERS = """\
+    // Say what these do: an enable belongs to what is stored, Q = EN ? D : Q; a clear or set that
+    // acts at once is a line of the register, clear ~CLR; with a row of times of its own.
 """
 
 
@@ -86,6 +98,9 @@ def _named(module: UndescribedModule) -> UndescribedModule:
 
 def _part(module: UndescribedModule) -> list[str]:
     """Return the lines of a part: a row for each pin that may drive, from all that may be driven."""
+    guess = guessed(module.pins, module.widths)
+    if guess is not None:
+        return _register(module, guess)
     ins = [name for name, way in module.pins if way == Way.INPUT]
     outs = [name for name, way in module.pins if way == Way.OUTPUT]
     both = [name for name, way in module.pins if way == Way.INOUT]
@@ -101,8 +116,9 @@ def _part(module: UndescribedModule) -> list[str]:
             lines.append(_declared(module, word, names))
     if outs or unsure:
         lines.append(
-            "    // Give each output its function (output Y = ~(A & B)), or else an edge passes both ways."
+            "    // Give each output its function, as in output Y = ~(A & B); without one, every edge of an"
         )
+        lines.append("    // input may cause either edge of the output.")
         lines.append("    // A register: register posedge CK { Q = D; }, with rows from CK alone.")
     heads = outs + both
     tails = ins + both + unsure
@@ -114,6 +130,27 @@ def _part(module: UndescribedModule) -> list[str]:
     ]
     lines += ["    times ns {", *rows, "    }", "  }"] if rows else ["  }"]
     return lines
+
+
+def _register(module: UndescribedModule, guess: Guess) -> list[str]:
+    """Return the lines of a register, guessed from the names of its pins."""
+    clock, data, out = (spelled(name) for name in (guess.clock, guess.data, guess.out))
+    heads = [out, *map(spelled, guess.inverted)]
+    others = [name for name, _ in module.pins if name not in guess.named()]
+    lines = [
+        f"  part {spelled(module.name)} {{",
+        *GUESSED.splitlines(),
+        _declared(module, "inputs", [guess.data, guess.clock]),
+    ]
+    if others:
+        lines += [*OTHERS.splitlines(), _declared(module, "inputs", others)]
+    lines.append(_declared(module, "outputs", [guess.out]))
+    for name in guess.inverted:
+        lines.append(_declared(module, "output", [name]).removesuffix(";") + f" = ~{out};")
+    lines += [f"    register posedge {clock} {{ {out} = {data}; }}", "    times ns {"]
+    lines += [f"      {symbol}  {clock} *> {', '.join(heads)}  {EMPTY};" for symbol in PLAIN]
+    lines += ["    }", "    checks ns {", f"      tsu  {data} before {clock}  {EMPTY};"]
+    return [*lines, f"      th   {data} after {clock}  {EMPTY};", "    }", "  }"]
 
 
 def _declared(module: UndescribedModule, word: str, names: Sequence[str]) -> str:

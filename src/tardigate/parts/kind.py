@@ -51,7 +51,9 @@ class Kind(NamedTuple):
 
     `sinks` (int32) are the pins where trails end: data and control pins of registers. `register` says that
     the part holds state. `words` is one line for the reader: where the delays stand (`parts file:line`).
-    `three_state`: outputs that can let go of their net (several may drive one net).
+    Of a kind without delays (origin `MISSING`) they say what is missing, where that is known.
+    `three_state`: outputs that can let go of their net (several may drive one net). `unknown_function`: an
+    output lets both edges pass both ways because nothing says what it does.
     """
 
     name: str

@@ -56,6 +56,7 @@ def make_kind(
     register: bool = False,
     three_state: bool = False,
     words: str = "",
+    unknown_function: bool = False,
 ) -> Kind:
     """Make a kind; `words` stand in where the hops give none."""
     origin = max((hop.delay.origin for hop in hops), default=Origin.PARTS)
@@ -76,4 +77,5 @@ def make_kind(
         told,
         register,
         three_state,
+        unknown_function,
     )

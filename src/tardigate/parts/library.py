@@ -40,15 +40,14 @@ class Library:
         self._choice = _choice(families, columns)
         self._parts: dict[str, Part] = {}
         self._column: dict[str, int] = {}
+        self._condition: dict[str, str] = {}
         for family, column in zip(families, columns, strict=True):
             for part in family.parts:
                 self._parts.setdefault(part.name, part)
                 self._column.setdefault(part.name, column)
-        for family in families:
-            for alias in family.aliases:
-                part_of = resolve(alias, families, self._parts)
-                if part_of is not None:
-                    self._parts.setdefault(alias, part_of)
+                self._condition.setdefault(part.name, _named(family, column))
+        aliases = [alias for family in families for alias in family.aliases]
+        self._parts.update(resolve(aliases, families, self._parts))
         self._kinds: dict[tuple[object, ...], Kind] = {}
 
     @classmethod
@@ -103,7 +102,8 @@ class Library:
         chosen = {p.name: value & (1 << p.width) - 1 for p, value in values.items() if value is not None}
         key = ("part", part.name, *chosen.items())
         if key not in self._kinds:
-            self._kinds[key] = part_kind(part, self._column[part.name], chosen, self._choice)
+            column, condition = self._column[part.name], self._condition[part.name]
+            self._kinds[key] = part_kind(part, column, chosen, self._choice, condition)
         return self._kinds[key]
 
     def gate_kind(self, gate: str, inputs: int, outputs: int = 1, delay: SourceDelay | None = None) -> Kind:
@@ -146,10 +146,15 @@ def _hashable(delay: SourceDelay | None) -> object:
     return None if delay is None else (repr(delay.values), delay.words)
 
 
+def _named(family: Family, column: int) -> str:
+    return family.conditions[column].name if family.conditions else ""
+
+
 def _choice(families: Sequence[Family], columns: Sequence[int]) -> Choice:
     choice = Choice(ByKind(), ByKind(), ByKind())
     for family, column in zip(families, columns, strict=True):
-        choice.gates.add(family.gates, column, Origin.PARTS)
-        choice.operators.add(family.operators, column, Origin.PARTS)
+        condition = _named(family, column)
+        choice.gates.add(family.gates, column, Origin.PARTS, condition=condition)
+        choice.operators.add(family.operators, column, Origin.PARTS, condition=condition)
         choice.default.add(family.default, column, Origin.DEFAULT, "default of ")
     return choice

@@ -15,7 +15,10 @@ from tardigate.parts.needs import DISABLING, ENABLING, NOBODY, Need, function_of
 
 
 class Matched(NamedTuple):
-    """`timed`: changes, each with a row; `missing`: those without; `idle`: rows and a pair they time not."""
+    """`timed`: changes, each with a row; `missing`: those without; `idle`: rows that time nothing.
+
+    A row is idle when it times none of its pairs; beside it stands its first pair.
+    """
 
     timed: list[tuple[Need, Row]]
     missing: list[Need]
@@ -33,25 +36,24 @@ def match(part: Part, values: Values) -> Matched:
         given = rows.get(head, {})
         if function_of(part, head) >= 0:
             needs = needs_of(part, head, values)
-            _known(part, head, needs, given, values, matched)
+            _known(part, needs, given, values, matched)
         else:
             _unknown(part, head, given, matched)
+    used = {id(row) for _, row in matched.timed}
+    matched.idle.extend([(row, row.pairs[0]) for row in part.rows if row.pairs and id(row) not in used])
     return matched
 
 
 def _known(
-    part: Part, head: int, needs: dict[int, list[Need]], given: dict[int, list[Row]], values: Values,
+    part: Part, needs: dict[int, list[Need]], given: dict[int, list[Row]], values: Values,
     matched: Matched,
 ) -> None:  # fmt: skip
-    for tail in needs | given:
-        served: set[int] = set()
-        for need in needs.get(tail, ()):
+    for tail, some in needs.items():
+        for need in some:
             fitting = [row for row in given.get(tail, ()) if _fits(part, need, row, values)]
             matched.timed.extend([(need, row) for row in fitting])
-            served.update(id(row) for row in fitting)
             if not fitting:
                 matched.missing.append(need)
-        matched.idle.extend([(row, (tail, head)) for row in given.get(tail, ()) if id(row) not in served])
 
 
 def _fits(part: Part, need: Need, row: Row, values: Values) -> bool:
@@ -84,15 +86,8 @@ def _unknown(part: Part, head: int, given: dict[int, list[Row]], matched: Matche
                         timed[need] = None
                         matched.timed.append((need, row))
         matched.missing.extend([need for need in wanted if need not in timed])
-        matched.idle.extend(
-            [(row, (tail, head)) for row in rows if row.edge is not None and not _any(matched, row)]
-        )
     if not given:
         matched.missing.extend(_everything(part, head))
-
-
-def _any(matched: Matched, row: Row) -> bool:
-    return any(other is row for _, other in matched.timed)
 
 
 def _moves(tail: int, head: int, tail_edge: Edge, row: Row, launches: bool) -> list[Need]:

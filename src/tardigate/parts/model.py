@@ -16,6 +16,11 @@ from tardigate.parts.source_delay import Triple
 from tardigate.source.files import SourceFile
 from tardigate.source.span import Span
 
+SYMBOLS: Mapping[str, str] = {
+    "LH": "tPLH", "HL": "tPHL", "ZH": "tPZH", "ZL": "tPZL", "HZ": "tPHZ", "LZ": "tPLZ",
+}  # fmt: skip
+"""The letter symbol (JEDEC JESD99) of each transition of an output."""
+
 Columns = tuple[Triple, ...]
 """One triple (min, typ, max; fs, or the unit that is named) a condition."""
 

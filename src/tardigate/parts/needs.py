@@ -8,7 +8,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 from typing import NamedTuple
 
-from tardigate.parts.function import NEGATIVE, POSITIVE, Values
+from tardigate.parts.function import NEGATIVE, POSITIVE, Network, Values
 from tardigate.parts.gates import OPPOSITE
 from tardigate.parts.kind import Edge, Way
 from tardigate.parts.model import Part, Register
@@ -68,12 +68,11 @@ def needs_of(part: Part, head: int, values: Values) -> dict[int, list[Need]]:
         for need in some:
             found.setdefault(need.tail, {})[need] = None
     enable = part.enables.get(head, NOBODY)
+    levels = _driven(network, root, enable, values)
     for bit, polarity in network.polarities(enable, values).items() if enable >= 0 else ():
-        register = stored.get(bit)
-        if bit < 0:
-            continue
-        for need in _enable_needs(bit, head, polarity, enable, register):
-            found.setdefault(need.tail, {})[need] = None
+        for need in _enable_needs(bit, head, polarity, enable, stored.get(bit)) if bit >= 0 else ():
+            if levels.intersection(need.transition):
+                found.setdefault(need.tail, {})[need] = None
     return {tail: list(needs) for tail, needs in found.items()}
 
 
@@ -127,6 +126,15 @@ def _forced(tail: int, head: int, active: int, polarity: int, level: Edge, latch
 
 def _moving(edge: Edge) -> str:
     return "LH" if edge == Edge.RISE else "HL"
+
+
+def _driven(network: Network, root: int, enable: int, values: Values) -> frozenset[str]:
+    """Return the levels, of `HL`, that an output can have while it drives: an open collector has one."""
+    tables = network.tables([root, enable], values) if root >= 0 and enable >= 0 else None
+    if tables is None:
+        return frozenset("HL")
+    high, drives = tables.of[root], tables.of[enable]
+    return frozenset(("H" if high & drives else "") + ("L" if ~high & drives else ""))
 
 
 ENABLING = (("ZH", Edge.RISE), ("ZL", Edge.FALL))

@@ -11,10 +11,10 @@ from collections.abc import Mapping
 from tardigate.parts.by_kind import Choice
 from tardigate.parts.function import Values
 from tardigate.parts.kind import Kind, Origin
-from tardigate.parts.kind_maker import MISSING, Delay, KindHop, given, make_kind
-from tardigate.parts.match import match
-from tardigate.parts.model import Part
-from tardigate.parts.needs import sink_bits
+from tardigate.parts.kind_maker import MISSING, UNKNOWN, Delay, KindHop, given, make_kind
+from tardigate.parts.match import Matched, match
+from tardigate.parts.model import SYMBOLS, Part
+from tardigate.parts.needs import NOBODY, Need, function_of, sink_bits
 
 
 def parameter_values(part: Part, chosen: Mapping[str, int]) -> Values:
@@ -30,34 +30,58 @@ def parameter_values(part: Part, chosen: Mapping[str, int]) -> Values:
     return values
 
 
-def part_kind(part: Part, column: int, parameters: Mapping[str, int], choice: Choice) -> Kind:
-    """Make the kind of a part under the condition of `column`."""
+def part_kind(
+    part: Part, column: int, parameters: Mapping[str, int], choice: Choice, condition: str = ""
+) -> Kind:
+    """Make the kind of a part under the condition of `column`, whose name is `condition`."""
     values = parameter_values(part, parameters)
     matched = match(part, values)
-    hops: list[KindHop] = []
-    for need, row in matched.timed:
-        triple = row.columns[column]
-        delay = Delay(triple, Origin.PARTS, str(part.place)) if given(triple) else None
-        hops.append(
-            KindHop(
-                need.tail, need.head, need.tail_edge, need.head_edge,
-                delay or _default(choice, need.transition), need.launches,
-            )
-        )  # fmt: skip
-    for need in matched.missing:
-        delay = _default(choice, need.transition)
-        hops.append(KindHop(need.tail, need.head, need.tail_edge, need.head_edge, delay, need.launches))
     pins = [bit for pin in part.pins for bit in pin.bits]
+    words = _missing_words(part, matched, column, condition)
+    hops = [
+        _hop(need, Delay(row.columns[column], Origin.PARTS, str(part.place)), choice, words)
+        for need, row in matched.timed
+    ]
+    hops += [_hop(need, MISSING, choice, words) for need in matched.missing]
     ways = [pin.way for pin in part.pins for _ in range(pin.width)]
     lets_go = bool(part.enables) or any("Z" in row.transitions[0] for row in part.rows)
     return make_kind(
         part.name, "part", pins, ways, hops, sinks=sink_bits(part, values), register=bool(part.registers),
-        three_state=lets_go, words=str(part.place),
+        three_state=lets_go, words=str(part.place), unknown_function=_unspoken(part, matched),
     )  # fmt: skip
 
 
-def _default(choice: Choice, transition: str) -> Delay:
-    return choice.default.find("", 0, transition) or MISSING
+def _hop(need: Need, own: Delay, choice: Choice, words: str) -> KindHop:
+    """Return the hop of a change: with its own delay, or else the default's, or else an unknown one."""
+    delay = own if given(own.triple) else choice.default.find("", 0, need.transition)
+    missing = Delay(UNKNOWN, Origin.MISSING, words)
+    return KindHop(need.tail, need.head, need.tail_edge, need.head_edge, delay or missing, need.launches)
+
+
+def _missing_words(part: Part, matched: Matched, column: int, condition: str) -> str:
+    """Say which rows give no number under the condition: the first, its place, and how many there are."""
+    empty = {id(row): (need, row) for need, row in reversed(matched.timed) if not given(row.columns[column])}
+    if empty:
+        need, row = min(empty.values(), key=lambda pair: pair[1].place.start)
+        under = f" under condition {condition}" if condition else ""
+        others = f", and {more} more row{'s' * (more > 1)}" if (more := len(empty) - 1) else ""
+        return f"{_change(part, need, row.symbol)} has no number{under}, {row.place}{others}"
+    if matched.missing:
+        need = matched.missing[0]
+        return f"no row gives {_change(part, need, SYMBOLS[need.transition])}, {part.place}"
+    return ""
+
+
+def _change(part: Part, need: Need, symbol: str) -> str:
+    return f"{symbol} {part.bit_names[need.tail]} => {part.bit_names[need.head]}"
+
+
+def _unspoken(part: Part, matched: Matched) -> bool:
+    """Say whether a change passes that no function, no register and no polarity of a row tells of."""
+    needs = [need for need, row in matched.timed if not row.polarity]
+    polar = {pair for row in part.rows if row.polarity for pair in row.pairs}
+    needs += [need for need in matched.missing if (need.tail, need.head) not in polar]
+    return any(not need.launches and function_of(part, need.head) == NOBODY for need in needs)
 
 
 def has_default(choice: Choice) -> bool:

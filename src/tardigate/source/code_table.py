@@ -8,15 +8,15 @@ sample that the tests run.
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
 from functools import cache
+from types import MappingProxyType
+from typing import NamedTuple
 
 FILES = {"U": "use", "V": "verilog", "P": "parts", "N": "netlist", "G": "graph"}
 """First letter of a code → the file of its entry: use of the tool, Verilog, parts file, netlist, graph."""
 
 
-@dataclass(frozen=True, slots=True)
-class Entry:
+class Entry(NamedTuple):
     """One code. `text` is what `explain` prints; samples map file names to texts, `arguments` to words."""
 
     code: str
@@ -24,8 +24,8 @@ class Entry:
     headline: str
     hint: str
     text: str
-    faulty: Mapping[str, str] = field(default_factory=dict)
-    mended: Mapping[str, str] = field(default_factory=dict)
+    faulty: Mapping[str, str] = MappingProxyType({})
+    mended: Mapping[str, str] = MappingProxyType({})
 
 
 @cache

@@ -8,7 +8,8 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable, Mapping
-from typing import TYPE_CHECKING
+from types import MappingProxyType
+from typing import TYPE_CHECKING, NamedTuple
 
 from tardigate.source.diagnostic import Diagnostic, did_you_mean
 from tardigate.source.placed import PlacedText
@@ -17,18 +18,48 @@ if TYPE_CHECKING:
     from lark import Lark
     from lark.exceptions import UnexpectedInput
 
-FRIENDLY: Mapping[str, str] = {
-    "NAME": "a name",
-    "ESCAPED": "a name",
-    "NUMBER": "a number",
-    "SIZED": "a sized number",
-    "STRING": "a text in quotes",
-    "$END": "the end of the file",
-}
-"""What terminals that are no fixed word are called; a parser's own names are added by the caller."""
+END = "$END"
+"""Lark's terminal for the end of the text."""
 
 MOST = 6
 """Things that could stand there which are listed; of more, only the first and that there are others."""
+
+CLOSING = ("`}`", "`;`", "`)`")
+"""What is missing most often, listed first."""
+
+
+NO_NAMES: Mapping[str, str] = MappingProxyType({})
+
+
+class Before(NamedTuple):
+    """A token before the fault: its terminal, its text and its offset in the parsed text."""
+
+    kind: str
+    text: str
+    start: int
+
+
+class Trouble(NamedTuple):
+    """A fault as a language's adviser sees it.
+
+    `found` is what stands there (empty at the end of the text) from offset `start` of `data` on; `before` the
+    tokens before it; `accepted` the terminals that could stand there.
+    """
+
+    found: str
+    start: int
+    data: bytes
+    before: list[Before]
+    accepted: frozenset[str]
+
+
+class Advice(NamedTuple):
+    """What a language knows better: a hint, names for terminals, all that is wanted, all that is found."""
+
+    hint: str | None = None
+    names: Mapping[str, str] = NO_NAMES
+    wanted: str | None = None
+    found: str | None = None
 
 
 def explain(
@@ -37,32 +68,51 @@ def explain(
     text: PlacedText,
     code: str,
     where: Callable[[int], int] = lambda offset: offset,
-    friendly: Mapping[str, str] = FRIENDLY,
+    friendly: Mapping[str, str] = NO_NAMES,
+    advise: Callable[[Trouble], Advice] | None = None,
 ) -> Diagnostic:
     """Make the diagnostic `code` (words: `found`, `wanted`) of an error that `parser.parse` raised.
 
-    `where` maps an offset in the parsed text to one in `text`; both count bytes. Raises `error` itself when
-    it is none of lark's complaints about its input.
+    `where` maps an offset in the parsed text to one in `text`; both count bytes. `friendly` names terminals
+    that are no fixed word. Raises `error` itself when it is none of lark's complaints about its input.
     """
     from lark.exceptions import UnexpectedCharacters, UnexpectedEOF, UnexpectedToken
 
     if not isinstance(error, UnexpectedToken | UnexpectedCharacters | UnexpectedEOF):
         raise error
     accepted = _accepted(error)
-    wanted = _wanted(accepted, parser, friendly)
     token = getattr(error, "token", None)
     if isinstance(error, UnexpectedCharacters):
         start = where(error.pos_in_stream or 0)
-        return Diagnostic.of(code, text.span(start), found=f"`{_character(text, start)}`", wanted=wanted)
-    if token is None or token.type in ("$END", "<EOF>"):
-        last = max(0, len(text.data.rstrip()) - 1)
-        return Diagnostic.of(code, text.span(last), found="the end of the file", wanted=wanted)
-    start = where(token.start_pos or 0)
-    span = text.span(start, start + max(1, len(token)))
-    hint = did_you_mean(str(token), _words(accepted, parser)) if re.match(r"\w", token) else None
+        word = _character(text, start)
+    elif token is None or token.type in (END, "<EOF>"):
+        start, word = max(0, len(text.data.rstrip()) - 1), ""
+    else:
+        start, word = where(token.start_pos or 0), str(token)
+    advice = Advice()
+    if advise is not None:
+        end = start if word else len(text.data)
+        advice = advise(Trouble(word, end, text.data, _before(parser, text, end), frozenset(accepted)))
+    wanted = advice.wanted or _wanted(accepted, parser, {**friendly, **advice.names})
+    found = advice.found or (f"`{word}`" if word else "the end of the file")
+    hint = advice.hint
+    if hint is None and token is not None and word:
+        hint = _hint(word, text, start, accepted, parser)
+    return Diagnostic.of(
+        code, text.span(start, start + max(1, len(word))), hint=hint, found=found, wanted=wanted
+    )
+
+
+def _hint(word: str, text: PlacedText, start: int, accepted: set[str], parser: Lark) -> str | None:
+    """Return a word that is near and could stand there, or that a `;` is missing."""
+    hint = None
+    if re.match(r"\w", word):
+        words = _words(accepted, parser)
+        alike = [known for known in words if known.lower() == word.lower()]
+        hint = f"Did you mean `{alike[0]}`?" if alike else did_you_mean(word, words)
     if hint is None and _opens_line(text, start) and any(_fixed(name, parser) == ";" for name in accepted):
         hint = "Perhaps a `;` is missing at the end of the line before."
-    return Diagnostic.of(code, span, hint=hint, found=f"`{token}`", wanted=wanted)
+    return hint
 
 
 def _accepted(error: UnexpectedInput) -> set[str]:
@@ -71,6 +121,12 @@ def _accepted(error: UnexpectedInput) -> set[str]:
     if interactive is not None:
         return set(interactive.accepts())
     return set(getattr(error, "expected", None) or getattr(error, "allowed", None) or ())
+
+
+def _before(parser: Lark, text: PlacedText, end: int) -> list[Before]:
+    """Return the tokens before an offset; the text up to there is known to be made of tokens."""
+    part = text.data[:end].decode("latin-1")
+    return [Before(token.type, str(token), token.start_pos or 0) for token in parser.lex(part)]
 
 
 def _opens_line(text: PlacedText, start: int) -> bool:
@@ -102,15 +158,15 @@ def _wanted(accepted: set[str], parser: Lark, friendly: Mapping[str, str]) -> st
     signs, words, others = set(), set(), set()
     for name in accepted:
         fixed = _fixed(name, parser)
-        if name in friendly:
-            others.add(friendly[name])
-        elif fixed is None:
-            others.add(name.lower().replace("_", " "))
-        elif not fixed[:1].isalpha():
-            signs.add(f"`{fixed}`")
+        shown = friendly.get(name) or f"`{fixed}`"
+        if name in friendly and not shown.startswith("`"):
+            others.add(shown)
+        elif not shown[1:2].isalpha():
+            signs.add(shown)
         elif not named:
-            words.add(f"`{fixed}`")
-    listed = sorted(others) + sorted(words) + sorted(signs)
+            words.add(shown)
+    listed = [sign for sign in CLOSING if sign in signs]
+    listed += [*sorted(others), *sorted(words), *sorted(signs.difference(CLOSING))]
     if not listed:
         return "nothing"
     if len(listed) > MOST:

@@ -19,17 +19,24 @@ from tardigate.syntax.parts_tree import Expr, PinDecl, PinRef, Word
 SYNTAX = "P001"
 """The code of text that the grammar does not know."""
 
+BYTE_ORDER_MARK = b"\xef\xbb\xbf"
+"""What some editors write before a text in UTF-8."""
+
 
 def read_families(file: SourceFile, collector: Collector) -> tuple[tree.Family, ...] | None:
     """Return the families of a parts file; what the grammar does not know is told, and gives None."""
     reader = _reader()
     text = file.data.decode("latin-1")  # a byte a character: offsets stay those of the file
+    if file.data.startswith(BYTE_ORDER_MARK):
+        text = " " * len(BYTE_ORDER_MARK) + text[len(BYTE_ORDER_MARK) :]
     try:
         families: list[tree.Family] = reader.read(text)
     except Exception as error:
         from tardigate.syntax.lark_errors import explain  # only on the way to a refusal
+        from tardigate.syntax.parts_advice import FRIENDLY, advise
 
-        collector.add(explain(error, reader.lark, PlacedText.whole(file), SYNTAX))
+        placed = PlacedText.whole(file, text.encode("latin-1"))
+        collector.add(explain(error, reader.lark, placed, SYNTAX, friendly=FRIENDLY, advise=advise))
         return None
     return tuple(family._replace(file=file) for family in families)
 
@@ -236,7 +243,10 @@ class _Maker:
         return tree.Load(pins or (), tree.Quantity(number, unit), cells, time_unit, load_unit)
 
     more = staticmethod(_all)
-    cells = staticmethod(_all)
+
+    @staticmethod
+    def cells(children: list[Any]) -> tuple[tree.Cell, ...]:
+        return tuple(children[::2])  # a `|` between any two
 
     @staticmethod
     def cell(children: list[Any]) -> tree.Cell:

@@ -7,7 +7,7 @@ Does not check what the text says, nor where in a module a directive stands.
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from types import MappingProxyType
 from typing import NamedTuple
 
 from tardigate.source.collector import Collector
@@ -25,12 +25,11 @@ from tardigate.syntax.placing import Use
 _BYTE_ORDER_MARK = b"\xef\xbb\xbf"
 
 
-@dataclass(frozen=True, slots=True)
-class PreprocessOptions:
+class PreprocessOptions(NamedTuple):
     """Folders that `include` searches after the including file's own, in order; macros defined beforehand."""
 
     include_dirs: tuple[str, ...] = ()
-    defines: Mapping[str, str] = field(default_factory=dict)
+    defines: Mapping[str, str] = MappingProxyType({})
 
 
 class Preprocessed(NamedTuple):
