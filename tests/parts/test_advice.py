@@ -54,7 +54,7 @@ def test_every_terminal_has_a_name_for_readers(name: str, friendly: dict[str, st
         (part("inputs A each 3;"), "pF"),
         (part("outputs Y = {A, B} when C; inputs A each 3;"), "pF"),
         (family("wires ns { load 3 each fanout; }"), "pF"),
-        (family('wires ns { net "a" 3 ; }').replace(" ;", " cm at 1;"), "ns"),
+        (family('wires ns { net "a" 3 cm at 1; }'), "ns"),
         (family('wires ns { net "a" 3 cm at 1 ns/; }'), "cm"),
         (family("conditions { v5 4.5..5.5; }"), "V"),
     ],
@@ -72,6 +72,10 @@ def test_a_unit_is_asked_for(text: str, unit: str) -> None:
         ("family F { gates ns {\n tpd nand 1;\n part R { } }", "`gates ns` (line 1)"),
         ("family F { part R {\n inputs A;", "`part R` (line 1)"),
         ("family F {\nfamily G { }", "`family F` (line 1)"),
+        (
+            "family F { part R {\n register posedge A { latch = {{B, C}, D};\n times ns { } } }",
+            "`register posedge A` (line 2)",
+        ),
     ],
 )
 def test_a_block_that_is_not_closed_is_named(text: str, block: str) -> None:
@@ -104,6 +108,10 @@ def test_a_block_that_is_not_closed_is_named(text: str, block: str) -> None:
 )
 def test_what_to_write_instead(text: str, hint: str) -> None:
     assert fault(text).hint.startswith(hint)
+
+
+def test_a_text_out_of_place_is_not_called_unfinished() -> None:
+    assert "ends on the line" not in fault(family('part "P" { }')).hint
 
 
 def test_what_closes_is_listed_first_and_at_most_six_things() -> None:

@@ -60,7 +60,7 @@ def _sign(trouble: Trouble) -> tuple[str, str | None]:
         return here if here in ("/*", "--") else "", "Comments begin with `//`."
     if here[:1] == ">" and data[start - 1 : start] == b"-":
         return "->", "Write `=>`."
-    if here[:1] == '"':
+    if trouble.found == '"':
         return "", "A text in quotes ends on the line on which it begins."
     if here in ("&&", "||") or here[:1] == "!":
         return here if here in ("&&", "||") else "", "Functions are of bits: write `~`, `&` and `|`."
@@ -121,8 +121,7 @@ def _open_blocks(before: list[Before]) -> tuple[list[Before], list[Before]]:
     statement: list[Before] = []
     for token in before:
         if token.kind == "LBRACE":
-            text = " ".join(word.text for word in statement if word.kind != "STRING")
-            blocks.append(statement[0]._replace(text=text))
+            blocks.append(_block(token, statement))
             if blocks[-1].kind in BLOCKS:
                 statement = []
         elif token.kind == "RBRACE":
@@ -133,3 +132,11 @@ def _open_blocks(before: list[Before]) -> tuple[list[Before], list[Before]]:
         else:
             statement.append(token)
     return blocks, statement
+
+
+def _block(brace: Before, statement: list[Before]) -> Before:
+    """Return what a `{` opens: the block that the statement begins, or the brace itself where it joins bits."""
+    if not statement or any(word.kind == "EQUAL" for word in statement):
+        return brace
+    text = " ".join(word.text for word in statement if word.kind != "STRING")
+    return statement[0]._replace(text=text)
