@@ -111,8 +111,7 @@ def graph_of(loaded: Loaded) -> Graph:
 
 
 def _without_delay(kind: Kind) -> str:
-    words = kind.words if kind.group == "part" and kind.words else f"{kind.inputs} in"
-    return f"`{kind.name}` ({words})"
+    return f"`{kind.name}` ({kind.words or f'{kind.inputs} in'})"
 
 
 def times_of(graph: Graph, grade: Grade, sources: NDArray[np.integer] | None = None) -> Times:

@@ -7,7 +7,6 @@ import pytest
 import tardigate
 from tardigate.source.diagnostic import Diagnostic
 
-
 HALF = "module half(input i, output o); buf #1 (o, i); endmodule"
 
 

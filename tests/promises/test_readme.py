@@ -21,7 +21,14 @@ SETUP = re.findall(r"```sh\n(.*?)```", README, re.DOTALL)
 
 def shell(command: str) -> subprocess.CompletedProcess[str]:
     path = f"{Path(sys.executable).parent}{os.pathsep}{os.environ['PATH']}"
-    environment = {**os.environ, "PATH": path, "NO_COLOR": "1", "COLUMNS": "100", "TERM": "xterm", "PYTHONIOENCODING": "utf-8"}
+    environment = {
+        **os.environ,
+        "PATH": path,
+        "NO_COLOR": "1",
+        "COLUMNS": "100",
+        "TERM": "xterm",
+        "PYTHONIOENCODING": "utf-8",
+    }
     return subprocess.run(
         ["bash", "-c", command], cwd=ROOT, env=environment, capture_output=True, text=True, check=False,
         encoding="utf-8",

@@ -135,7 +135,7 @@ def _open_blocks(before: list[Before]) -> tuple[list[Before], list[Before]]:
 
 
 def _block(brace: Before, statement: list[Before]) -> Before:
-    """Return what a `{` opens: the block that the statement begins, or the brace itself where it joins bits."""
+    """Return what a `{` opens: the block that begins there, or the brace where it joins bits."""
     if not statement or any(word.kind == "EQUAL" for word in statement):
         return brace
     text = " ".join(word.text for word in statement if word.kind != "STRING")
