@@ -1,6 +1,6 @@
 // Table of fold lengths on a shared three-state bus, the adder behind it and the comparison with the position.
 
-`ifndef TABLE_REGISTER                       // -D TABLE_REGISTER=OVRG8F tries the faster grade
+`ifndef TABLE_REGISTER                       // -D TABLE_REGISTER=OVRG8F tries the faster version
 `define TABLE_REGISTER OVRG8
 `endif
 

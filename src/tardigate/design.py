@@ -24,6 +24,7 @@ from functools import cached_property
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
+from tardigate.analysis.check import refuse_missing
 from tardigate.analysis.model import GRADES, Grade, Times
 from tardigate.graph.export import to_networkx
 from tardigate.graph.model import Graph
@@ -33,6 +34,7 @@ from tardigate.pipeline import Loaded, Request, draft_of, graph_of, load, times_
 from tardigate.report.model import HopRecord, SinkRecord, TrailRecord
 from tardigate.report.pick import Picker
 from tardigate.report.records import Records
+from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.files import SourceFile
 
@@ -90,12 +92,12 @@ class SinkTimes:
     @property
     def settles_ns(self) -> float | None:
         """The later edge."""
-        return max((t for t in (self.settles_rise_ns, self.settles_fall_ns) if t is not None), default=None)
+        return _last((self.settles_rise_ns, self.settles_fall_ns))
 
     @property
     def stirs_ns(self) -> float | None:
         """The earlier edge."""
-        return min((t for t in (self.stirs_rise_ns, self.stirs_fall_ns) if t is not None), default=None)
+        return _first((self.stirs_rise_ns, self.stirs_fall_ns))
 
 
 class Settled:
@@ -123,12 +125,25 @@ class Settled:
         return tuple(_sink(record) for record in self.design._records.register_pins(self.times, None).shown)
 
     def net(self, name: str) -> SinkTimes:
-        """Return the times of a net, port or pin. Raises InputRefusedError (U104) for an unknown name."""
+        """Return the times of a net, port or pin; of a vector, those of all its bits together.
+
+        Raises InputRefusedError (U104) for an unknown name.
+        """
         vertices = self.design._picker.sinks((name,))
         assert vertices is not None
         if not len(vertices):
             return SinkTimes(name, None, None, None, None)
-        return _sink(self.design._records.net(name, self.times, int(vertices[0]) // 2))
+        records = [
+            _sink(self.design._records.net(name, self.times, net))
+            for net in sorted({v // 2 for v in vertices.tolist()})
+        ]
+        return SinkTimes(
+            name,
+            _last(record.settles_rise_ns for record in records),
+            _last(record.settles_fall_ns for record in records),
+            _first(record.stirs_rise_ns for record in records),
+            _first(record.stirs_fall_ns for record in records),
+        )
 
 
 class Design:
@@ -170,7 +185,7 @@ class Design:
 
     def settle(self, grade: Grade = "span", *, sources: Names = ()) -> Settled:
         """Return when every net settles and stirs after the sources (default: all) change at 0."""
-        _check_grade(grade)
+        self._check(grade)
         return Settled(self, grade, times_of(self.graph, grade, self._picker.sources(_names(sources))))
 
     def slowest(
@@ -194,9 +209,15 @@ class Design:
     def _trails(
         self, count: int, slow: bool, grade: Grade, sources: Names, sinks: Names
     ) -> tuple[Trail, ...]:
+        self._check(grade)
         begin, end = self._picker.sources(_names(sources)), self._picker.sinks(_names(sinks))
         found = trails_of(self.loaded, self.graph, grade, count, slow, begin, end)
         return tuple(_trail(self._records.trail(trail, None, True)) for trail in found)
+
+    def _check(self, grade: Grade) -> None:
+        """Raise ValueError for an unknown grade, InputRefusedError (G102) for one that lacks numbers."""
+        _check_grade(grade)
+        refuse_missing(self.loaded.flat, self.graph, grade, Collector())
 
     def networkx(self) -> networkx.MultiDiGraph[Any]:
         """Return the flat graph: nodes are (net, edge), edges are hops with names and delays in ns.
@@ -266,6 +287,14 @@ def read_text(
     file = SourceFile("design.v", verilog.encode())
     described = (SourceFile("design.parts", parts.encode()),) if parts else ()
     return Design(load(Request((file,), described, top, condition=condition, grade=grade)))
+
+
+def _last(times: Iterable[float | None]) -> float | None:
+    return max((time for time in times if time is not None), default=None)
+
+
+def _first(times: Iterable[float | None]) -> float | None:
+    return min((time for time in times if time is not None), default=None)
 
 
 def _check_grade(grade: str) -> None:

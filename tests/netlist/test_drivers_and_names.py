@@ -79,3 +79,32 @@ def test_a_syntax_error_is_told_before_the_doubt_that_it_causes() -> None:
 def test_an_unknown_grade_is_refused() -> None:
     with pytest.raises(ValueError, match="grade 'mx'"):
         tardigate.read_text("module m(input a, output y); buf #1 (y, a); endmodule", grade="mx")  # type: ignore[arg-type]
+
+
+TYP_MISSING = "family F { gates ns { tpd not 1:-:3; } }"
+
+
+def test_a_number_that_a_grade_needs_is_never_taken_as_0() -> None:
+    design = tardigate.read_text("module m(input a, output y); not (y, a); endmodule", parts=TYP_MISSING)
+    assert design.settle("max").outputs()[0].settles_ns == 3.0
+    for ask in (lambda: design.settle("typ"), lambda: design.slowest(grade="typ")):
+        with pytest.raises(tardigate.InputRefusedError) as refused:
+            ask()
+        assert [d.code for d in refused.value.diagnostics] == ["G102"]
+    with pytest.raises(ValueError, match="grade 'mx'"):
+        design.slowest(grade="mx")  # type: ignore[arg-type]
+
+
+def test_the_times_of_a_vector_are_those_of_all_its_bits() -> None:
+    verilog = "module m(input a, output [1:0] y); buf #1 (y[0], a); buf #5 (y[1], a); endmodule"
+    found = tardigate.read_text(verilog).settle().net("y")
+    assert (found.settles_ns, found.stirs_ns) == (5.0, 1.0)
+
+
+def test_negative_pieces_of_a_constant_are_cut_to_their_width() -> None:
+    """IEEE 1364-2005 clause 5.1.14: `{4'd3, -4'sd1}` is 8'b0011_1111."""
+    verilog = (
+        "module m(input a, output y); parameter P = {4'd3, -4'sd1}; wire [P:0] w; buf #1 (y, a); endmodule"
+    )
+    template = tardigate.read_text(verilog).loaded.flat.templates[0]
+    assert template.parameters == "P=63"

@@ -37,7 +37,7 @@ commands:
 `tardigate COMMAND --help` tells the options of a command.
 `tardigate --version` tells the version.
 Exit status: 0 it holds, 2 the input is wrong or incomplete, 3 a fault of
-tardigate itself.
+tardigate itself, 130 interrupted.
 """
 
 

@@ -168,7 +168,7 @@ def _joined(at: int, parts: list[Value], times: int) -> Value:
     for part in parts:
         if part.width is None:
             raise NotConstantError("only sized numbers may be joined", at)
-        value = value << part.width | part.value
+        value = value << part.width | part.value & ((1 << part.width) - 1)
         width += part.width
     if times < 0 or width * times > LARGEST:
         raise NotConstantError("the value is too large", at)

@@ -28,7 +28,7 @@ from tardigate.netlist.ports import template_ports
 from tardigate.netlist.template import Child, Template, TemplatePort
 from tardigate.netlist.variables import DRIVEN, WIRED, Variables
 from tardigate.netlist.wiring import Wiring
-from tardigate.parts.kind import Kind, Way
+from tardigate.parts.kind import Way
 from tardigate.parts.source_delay import SourceDelay
 from tardigate.source.diagnostic import Related
 from tardigate.syntax import tree
@@ -326,10 +326,3 @@ class Elaborator:
         out = self.variables.new_result(place) if target is None else target
         self.instances.add(kind, place, -1, [out, *inputs])
         return out
-
-
-def kind_interface(kind: Kind, name: str) -> Interface:
-    """Return a kind's pins, bit by bit, as an interface."""
-    return Interface(
-        name, [InterfacePin(pin, Way(way), 1) for pin, way in zip(kind.pins, kind.ways, strict=True)]
-    )

@@ -21,7 +21,6 @@ _BITWISE = {"&": "&", "|": "|", "^": "^", "~^": "~^", "^~": "~^"}
 _EQUAL = {"==": "==", "===": "==", "!=": "!=", "!==": "!="}
 _SHIFTS = ("<<", ">>", "<<<", ">>>")
 _REDUCE = {op: f"reduce {op}" for op in ("&", "|", "^", "~&", "~|", "~^")} | {"^~": "reduce ~^"}
-_ARITHMETIC = ("+", "-", "*", "/", "%", "**", "<", "<=", ">", ">=")
 MOST_RESULTS = 1 << 21
 """Gates that the operators of one module may become."""
 

@@ -15,7 +15,6 @@ from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Related
 
 WORDS = {POSITIVE: "follows it", NEGATIVE: "inverts it", POSITIVE | NEGATIVE: "goes both ways with it"}
-MOVES = {Edge.RISE: "rise", Edge.FALL: "fall"}
 
 
 def check_part(part: Part, has_default: bool, collector: Collector) -> None:

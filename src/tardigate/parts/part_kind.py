@@ -82,8 +82,3 @@ def _unspoken(part: Part, matched: Matched) -> bool:
     polar = {pair for row in part.rows if row.polarity for pair in row.pairs}
     needs += [need for need in matched.missing if (need.tail, need.head) not in polar]
     return any(not need.launches and function_of(part, need.head) == NOBODY for need in needs)
-
-
-def has_default(choice: Choice) -> bool:
-    """Say whether there is a default for every plain transition."""
-    return all(choice.default.find("", 0, transition) for transition in ("LH", "HL"))

@@ -15,7 +15,7 @@ from tardigate.report.model import ClockRecord, KindRecord, ScopeRecord
 from tardigate.source.arrays import distinct
 
 ORIGINS = {
-    Origin.SOURCE: "source",
+    Origin.SOURCE: "Verilog",
     Origin.PARTS: "parts file",
     Origin.DEFAULT: "family default",
     Origin.WIRE: "wire",

@@ -108,7 +108,7 @@ def _outside(scan: Scan, first: int, stop: int, text: PlacedText, collector: Col
         if close < 0:
             collector.tell("V003", text.span(at, at + 2), found="(*")
             return
-        place = int(np.searchsorted(scan.at, close + 2))
+        place = int(np.searchsorted(scan.at, np.int32(close + 2)))
 
 
 def used_names(scan: Scan, marks: NDArray[np.uint8], module: ModuleText) -> list[str]:

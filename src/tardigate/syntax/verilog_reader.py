@@ -136,7 +136,7 @@ def _coarse(
 
 def _runs(plain: Plain, module: ModuleText) -> list[tuple[int, int]]:
     """Return the unbroken runs of plain statements inside a module."""
-    low, high = np.searchsorted(plain.first, (module.first, module.stop)).tolist()
+    low, high = np.searchsorted(plain.first, np.array((module.first, module.stop), np.int32)).tolist()
     if low == high:
         return []
     breaks = np.flatnonzero(plain.first[low + 1 : high] != plain.stop[low : high - 1]) + low + 1
