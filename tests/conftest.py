@@ -15,8 +15,7 @@ from types import ModuleType
 import numpy as np
 import pytest
 
-from tardigate.netlist.flat import CONSTANTS, OPEN, Flat, Port
-from tardigate.netlist.names import CONSTANT_NAMES
+from tardigate.netlist.flat import CONSTANT_NAMES, CONSTANTS, OPEN, Flat, Port
 from tardigate.netlist.template import Template
 from tardigate.parts.kind import Kind, Origin, Way
 from tardigate.source.files import SourceFile

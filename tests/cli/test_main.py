@@ -10,8 +10,9 @@ from pathlib import Path
 import pytest
 from jsonschema import Draft202012Validator
 
+from tardigate import __version__
 from tardigate.cli import main
-from tardigate.cli.options import COMMANDS, HELP, VERSION
+from tardigate.cli.options import COMMANDS, HELP
 from tardigate.report.explain_view import sample_words
 from tardigate.source.code_table import every_code, look_up
 from tardigate.source.faults import InternalFaultError
@@ -185,7 +186,7 @@ def test_json_tells_the_same_times_as_the_view(tardigate: Tardigate) -> None:
 
 
 def test_words_before_any_command(tardigate: Tardigate) -> None:
-    assert tardigate("--version") == (0, f"tardigate {VERSION}\n", "")
+    assert tardigate("--version") == (0, f"tardigate {__version__}\n", "")
     assert tardigate("--help")[:2] == (0, HELP)
     status, out, err = tardigate()
     assert (status, out) == (2, "")

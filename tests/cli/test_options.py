@@ -7,7 +7,8 @@ from pathlib import Path
 
 import pytest
 
-from tardigate.cli.options import COMMANDS, HELP, MOST_TRAILS, VERSION, Options, read_options
+from tardigate import __version__
+from tardigate.cli.options import COMMANDS, HELP, MOST_TRAILS, Options, read_options
 from tardigate.source.faults import InputRefusedError
 
 
@@ -84,4 +85,4 @@ def test_help_names_every_command() -> None:
 
 def test_the_version_is_the_project_s() -> None:
     project = tomllib.loads((Path(__file__).parents[2] / "pyproject.toml").read_text())["project"]
-    assert project["version"] == VERSION
+    assert project["version"] == __version__

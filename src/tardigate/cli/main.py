@@ -9,8 +9,9 @@ import gc
 import sys
 from collections.abc import Callable, Sequence
 
+from tardigate import __version__
 from tardigate.cli.answer import Answer
-from tardigate.cli.options import HELP, VERSION, Options, command_of, read_options
+from tardigate.cli.options import HELP, Options, command_of, read_options
 from tardigate.cli.screen import Screen
 from tardigate.cli.status import Status, status_of
 from tardigate.report.looks import Look
@@ -25,7 +26,7 @@ def run(words: Sequence[str] | None = None) -> int:
     first = words[0] if words else ""
     screen = Screen(command_of(words), json="--json" in words)
     if first in ("-h", "--help", "--version"):
-        told = f"tardigate {VERSION}\n" if first == "--version" else HELP
+        told = f"tardigate {__version__}\n" if first == "--version" else HELP
         return status_of(lambda: screen.text(told), screen)
     if not words:
         screen.remark("no command\n\n" + HELP.rstrip())

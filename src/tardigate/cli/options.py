@@ -12,8 +12,6 @@ from tardigate.report.looks import NARROWEST
 from tardigate.source.diagnostic import Diagnostic, did_you_mean
 from tardigate.source.faults import InputRefusedError
 
-VERSION = "0.1.0"
-
 Colour = Literal["auto", "always", "never"]
 
 MOST_TRAILS = 10_000

@@ -14,8 +14,9 @@ from typing import Any, TextIO
 from rich.console import Console
 from rich.text import Text
 
+from tardigate import __version__
 from tardigate.cli.answer import Answer
-from tardigate.cli.options import VERSION, Colour, Options
+from tardigate.cli.options import Colour, Options
 from tardigate.report.diagnostic_view import diagnostic_lines
 from tardigate.report.looks import NARROWEST, WIDEST, Look
 from tardigate.source.diagnostic import Diagnostic, printable
@@ -74,7 +75,7 @@ class Screen:
         """Print the JSON object."""
         from tardigate.report.json_form import json_text  # for those who ask for it
 
-        self.text(json_text(self.command, body, diagnostics, VERSION))
+        self.text(json_text(self.command, body, diagnostics, __version__))
 
     def refuse(self, diagnostics: Sequence[Diagnostic]) -> None:
         """Print why the input is refused."""

@@ -69,7 +69,7 @@ class Delays:
         low, middle, high = times
         if low is None or middle is None or high is None:
             return None
-        if low > high or not low <= middle <= high:
+        if not low <= middle <= high:
             self.collector.tell("N152", self.text.span(value.at))
             return None
         return (low, middle, high)

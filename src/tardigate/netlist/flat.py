@@ -21,6 +21,8 @@ CONSTANTS = 4
 FLOATING = 3
 """The net of the constant z."""
 
+CONSTANT_NAMES = ("1'b0", "1'b1", "1'bx", "1'bz")
+
 OPEN = -1
 """The net number of a pin that is connected to nothing."""
 

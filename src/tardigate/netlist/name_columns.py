@@ -12,7 +12,7 @@ from typing import overload
 import numpy as np
 from numpy.typing import NDArray
 
-from tardigate.netlist.flat import CONSTANTS
+from tardigate.netlist.flat import CONSTANT_NAMES, CONSTANTS
 from tardigate.netlist.variables import RANGED, Variables
 from tardigate.syntax.intern import Interned
 
@@ -52,7 +52,7 @@ class NetNames(Column):
         """Make a name."""
         variables = self._variables
         if index < CONSTANTS:
-            return ("1'b0", "1'b1", "1'bx", "1'bz")[index]
+            return CONSTANT_NAMES[index]
         if index >= self._first_result:
             result = index - self._first_result
             return f"assign:{variables.text.span(variables.results[result]).line}.{result}"

@@ -10,13 +10,12 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from tardigate.netlist.flat import CONSTANTS, Flat
+from tardigate.netlist.flat import CONSTANT_NAMES, CONSTANTS, Flat
 from tardigate.netlist.template import Template
 from tardigate.source.placed import PlacedText
 from tardigate.source.span import Span
 
 _WORD = re.compile(rb"\\[^ \t\r\n\f\v]+|[A-Za-z0-9_$]+")
-CONSTANT_NAMES = ("1'b0", "1'b1", "1'bx", "1'bz")
 
 
 def positions(column: Sequence[str], text: str) -> list[int]:
