@@ -8,148 +8,103 @@ from __future__ import annotations
 
 from typing import NamedTuple
 
-
-class Number(NamedTuple):
-    """A number: `value` with x and z bits 0; `unknown`, `floating` their masks; `width` None when unsized.
-
-    `signed` as clause 3.5.1 says: plain decimals and based numbers with an `s`.
-    """
-
-    value: int
-    width: int | None
-    unknown: int
-    floating: int
-    signed: bool
-    at: int
-
-
-class Decimal(NamedTuple):
-    """An unsized decimal number that is not whole, or a delay as written: `text` without underscores."""
-
-    text: str
-    at: int
-
-
-class String(NamedTuple):
-    """A string, without its quotes."""
-
-    text: str
-    at: int
-
-
-class Selection(NamedTuple):
-    """`[high]` (mode `bit`), `[high:low]` (`part`), `[high+:low]` (`up`), `[high-:low]` (`down`)."""
-
-    mode: str
-    high: Expression
-    low: Expression | None
-
-
-class Reference(NamedTuple):
-    """A name, hierarchical or not, with its selections."""
-
-    path: tuple[str, ...]
-    selections: tuple[Selection, ...]
-    at: int
-
-
-class Concatenation(NamedTuple):
-    """`{a, b}`."""
-
-    parts: tuple[Expression, ...]
-    at: int
-
-
-class Replication(NamedTuple):
-    """`{times{a, b}}`."""
-
-    times: Expression
-    parts: tuple[Expression, ...]
-    at: int
-
-
-class Unary(NamedTuple):
-    """An operator before its operand."""
-
-    operator: str
-    operand: Expression
-    at: int
-
-
-class Binary(NamedTuple):
-    """An operator between two operands."""
-
-    operator: str
-    left: Expression
-    right: Expression
-    at: int
-
-
-class Conditional(NamedTuple):
-    """`condition ? yes : no`."""
-
-    condition: Expression
-    yes: Expression
-    no: Expression
-    at: int
-
-
-class Call(NamedTuple):
-    """A call of a system function."""
-
-    name: str
-    arguments: tuple[Expression, ...]
-    at: int
-
-
-class Triplet(NamedTuple):
-    """`minimum : typical : maximum`."""
-
-    minimum: Expression
-    typical: Expression
-    maximum: Expression
-    at: int
-
-
-Expression = (
-    Number | Decimal | String | Reference | Concatenation | Replication | Unary | Binary | Conditional
-    | Call | Triplet
-)  # fmt: skip
-
-
-def operands(node: Expression) -> tuple[Expression, ...]:
-    """Return what a node operates on; the count of a replication and the indices of a selection are not."""
-    if isinstance(node, Binary):
-        return (node.left, node.right)
-    if isinstance(node, Unary):
-        return (node.operand,)
-    if isinstance(node, Conditional):
-        return (node.condition, node.yes, node.no)
-    if isinstance(node, Concatenation | Replication):
-        return node.parts
-    if isinstance(node, Call):
-        return node.arguments
-    return ()
-
-
-class Range(NamedTuple):
-    """`[msb:lsb]`."""
-
-    msb: Expression
-    lsb: Expression
-    at: int
-
-
-class Named(NamedTuple):
-    """A declared name, with the expression that follows its `=`."""
-
-    name: str
-    value: Expression | None
-    at: int
+from tardigate.syntax.cell_tree import (
+    Always as Always,
+)
+from tardigate.syntax.cell_tree import (
+    Begin as Begin,
+)
+from tardigate.syntax.cell_tree import (
+    CheckEvent as CheckEvent,
+)
+from tardigate.syntax.cell_tree import (
+    Event as Event,
+)
+from tardigate.syntax.cell_tree import (
+    If as If,
+)
+from tardigate.syntax.cell_tree import (
+    Move as Move,
+)
+from tardigate.syntax.cell_tree import (
+    Opaque as Opaque,
+)
+from tardigate.syntax.cell_tree import (
+    Path as Path,
+)
+from tardigate.syntax.cell_tree import (
+    Primitive as Primitive,
+)
+from tardigate.syntax.cell_tree import (
+    Row as Row,
+)
+from tardigate.syntax.cell_tree import (
+    Specify as Specify,
+)
+from tardigate.syntax.cell_tree import (
+    Statement as Statement,
+)
+from tardigate.syntax.cell_tree import (
+    TimingCheck as TimingCheck,
+)
+from tardigate.syntax.expression_tree import (
+    Binary as Binary,
+)
+from tardigate.syntax.expression_tree import (
+    Call as Call,
+)
+from tardigate.syntax.expression_tree import (
+    Concatenation as Concatenation,
+)
+from tardigate.syntax.expression_tree import (
+    Conditional as Conditional,
+)
+from tardigate.syntax.expression_tree import (
+    Decimal as Decimal,
+)
+from tardigate.syntax.expression_tree import (
+    Delay as Delay,
+)
+from tardigate.syntax.expression_tree import (
+    Expression as Expression,
+)
+from tardigate.syntax.expression_tree import (
+    Named as Named,
+)
+from tardigate.syntax.expression_tree import (
+    Number as Number,
+)
+from tardigate.syntax.expression_tree import (
+    Parameter as Parameter,
+)
+from tardigate.syntax.expression_tree import (
+    Range as Range,
+)
+from tardigate.syntax.expression_tree import (
+    Reference as Reference,
+)
+from tardigate.syntax.expression_tree import (
+    Replication as Replication,
+)
+from tardigate.syntax.expression_tree import (
+    Selection as Selection,
+)
+from tardigate.syntax.expression_tree import (
+    String as String,
+)
+from tardigate.syntax.expression_tree import (
+    Triplet as Triplet,
+)
+from tardigate.syntax.expression_tree import (
+    Unary as Unary,
+)
+from tardigate.syntax.expression_tree import (
+    operands as operands,
+)
 
 
 class Declaration(NamedTuple):
-    """`input`, `output`, `inout` or a type of net, over names."""
+    """`input`, `output`, `inout` or a type of net or variable (`reg`, `integer`, `real`), over names."""
 
     direction: str
     net_type: str
@@ -157,22 +112,6 @@ class Declaration(NamedTuple):
     range: Range | None
     delay: Delay | None
     names: tuple[Named, ...]
-    at: int
-
-
-class Parameter(NamedTuple):
-    """`parameter` or `localparam` (`local`)."""
-
-    local: bool
-    range: Range | None
-    names: tuple[Named, ...]
-    at: int
-
-
-class Delay(NamedTuple):
-    """`#` and its one to three values."""
-
-    values: tuple[Expression, ...]
     at: int
 
 
@@ -203,7 +142,7 @@ class Connection(NamedTuple):
 
 
 class Instance(NamedTuple):
-    """One instance of an instance statement."""
+    """One instance of an instance statement; one of a UDP may have no name."""
 
     name: str
     range: Range | None
@@ -212,7 +151,7 @@ class Instance(NamedTuple):
 
 
 class Instances(NamedTuple):
-    """An instance statement; `overrides` have an empty pin when by order."""
+    """An instance statement; `overrides` (of a UDP: delays) have an empty pin when by order."""
 
     module: str
     overrides: tuple[Connection, ...]
@@ -244,7 +183,81 @@ class Run(NamedTuple):
     at: int
 
 
-Item = Declaration | Parameter | Gates | Instances | Continuous | Run
+class Pulls(NamedTuple):
+    """`pullup` or `pulldown` (`word`) statements (clause 7.8): each gate has one terminal."""
+
+    word: str
+    gates: tuple[Gate, ...]
+    at: int
+
+
+# Generate (clause 12.4)
+
+
+class Genvars(NamedTuple):
+    """`genvar i, j;`."""
+
+    names: tuple[Named, ...]
+    at: int
+
+
+class Block(NamedTuple):
+    """A generate block: `name` empty for one without; `begun` says whether `begin` and `end` stand around."""
+
+    name: str
+    items: tuple[Item, ...]
+    begun: bool
+    at: int
+
+
+class GenerateFor(NamedTuple):
+    """`for (variable = first; condition; stepped = following) block`."""
+
+    variable: str
+    first: Expression
+    condition: Expression
+    stepped: str
+    following: Expression
+    block: Block
+    at: int
+
+
+class GenerateIf(NamedTuple):
+    """`if (condition) yes else no`; None for a `;` or nothing at all."""
+
+    condition: Expression
+    yes: Block | None
+    no: Block | None
+    at: int
+
+
+class CaseArm(NamedTuple):
+    """One arm; no labels for `default`."""
+
+    labels: tuple[Expression, ...]
+    block: Block | None
+    at: int
+
+
+class GenerateCase(NamedTuple):
+    """`case (subject) ... endcase`."""
+
+    subject: Expression
+    arms: tuple[CaseArm, ...]
+    at: int
+
+
+class Defparam(NamedTuple):
+    """`defparam u.N = 4, v.M = 5;` (clause 12.2.1); targets are hierarchical references."""
+
+    assigns: tuple[Assign, ...]
+    at: int
+
+
+Item = (
+    Declaration | Parameter | Gates | Instances | Continuous | Run | Pulls | Genvars | GenerateFor
+    | GenerateIf | GenerateCase | Defparam | Always | Opaque | Specify
+)  # fmt: skip
 
 
 class HeaderPort(NamedTuple):
