@@ -56,7 +56,7 @@ class Always(NamedTuple):
 
 
 class Opaque(NamedTuple):
-    """Procedural code in a module with a specify block, left unread: `word` is what it begins with."""
+    """Procedural code in a module with a specify block, left unread; `word` is for messages."""
 
     word: str
     at: int

@@ -63,6 +63,17 @@ class Reader:
         assert self._machine is not None
         return self._machine.words
 
+    def accepts(self, text: str) -> bool:
+        """Tell whether a text follows the grammar."""
+        from tardigate.syntax.lalr import NotInGrammarError
+
+        assert self._machine is not None
+        try:
+            self._machine.run(text)
+        except NotInGrammarError:
+            return False
+        return True
+
     def read(self, text: str) -> Any:
         """Return what the maker makes of a text. Raises lark's UnexpectedInput when it is refused."""
         from tardigate.syntax.lalr import NotInGrammarError

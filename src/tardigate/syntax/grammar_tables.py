@@ -44,6 +44,7 @@ def tables_of(built: Lark) -> dict[str, Any]:
         "words": words,
         "ignored": list(built.ignore_tokens),
         "terminals": names,
+        "fixed": {t.name: t.pattern.value for t in built.terminals if t.pattern.type == "str"},
         "unseen": sorted(set(names) - kept),
     }
 

@@ -2,7 +2,7 @@
 
 Takes tables as `grammar_tables` makes them and an object with a method for each rule, gives what its method
 for the start rule returns. It knows the grammar from the tables alone and says of a faulty text only that it
-is faulty: lark, on the same grammar, tells why.
+is faulty: `recovery`, on the same tables, tells where and what could stand there.
 """
 
 from __future__ import annotations
@@ -36,6 +36,7 @@ class Machine:
     """
 
     def __init__(self, tables: dict[str, Any], maker: object) -> None:
+        self.tables = tables
         self._states: list[dict[str, int]] = tables["states"]
         self._start, self._end = tables["start"], tables["end"]
         self._scan = re.compile(tables["pattern"])

@@ -34,6 +34,16 @@ def _reader() -> tuple[Reader, TreeMaker]:
     return Reader("verilog", maker), maker
 
 
+def accepts(text: str) -> bool:
+    """Tell whether the text of a module follows the grammar."""
+    reader, maker = _reader()
+    maker.begin(lambda at: at, {}, {})
+    try:
+        return reader.accepts(text)
+    except BadNumberError:
+        return True  # told where the whole module is parsed
+
+
 def parse(
     text: str, cuts: Cuts, runs: dict[int, Run], ports: dict[int, PlainPorts], placed: PlacedText
 ) -> Module:

@@ -5,61 +5,38 @@ One method a rule of `verilog.lark`; offsets are those of the placed text.
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from typing import Any, NamedTuple
 
 from tardigate.syntax import tree
+from tardigate.syntax.cell_maker import CellMaker
+from tardigate.syntax.expression_maker import child_of, word_of
 from tardigate.syntax.lalr import Token
-from tardigate.syntax.numbers import read_number
-from tardigate.syntax.precedence import resolve
 
 
-def _word(token: Token) -> str:
-    text = str(token)
-    return text[1:] if text[0] == "\\" else text
-
-
-def _of(children: list[Any], kind: type | tuple[type, ...]) -> Any:
-    """Return the first child of a type, or None."""
-    return next((child for child in children if isinstance(child, kind)), None)
-
-
-class TreeMaker:
-    """The callbacks. `begin` sets what one parse needs: the map of offsets and the plain stretches."""
-
-    def begin(
-        self,
-        where: Callable[[int], int],
-        runs: dict[int, tree.Run],
-        ports: dict[int, tree.PlainPorts],
-    ) -> None:
-        """Prepare for a text: `where` maps its offsets to the placed text's."""
-        self._where, self._runs, self._plain_ports = where, runs, ports
-
-    def _at(self, token: Token) -> int:
-        return self._where(token.start_pos or 0)
+class TreeMaker(CellMaker):
+    """The callbacks of modules and their items."""
 
     # Header
 
     def start(self, children: list[Any]) -> tree.Module:
         """Make the module."""
         name = children[0]
-        parameters = _of(children, _Parameters) or ()
-        ports = _of(children[1:], (_Ports, tree.PlainPorts))
-        items = tuple(c for c in children[1:] if isinstance(c, _ITEMS))
+        parameters = child_of(children, _Parameters) or ()
+        ports = child_of(children[1:], (_Ports, tree.PlainPorts))
+        items = _items(children[1:])
         return tree.Module(
-            _word(name), tuple(parameters), ports if ports is not None else (), items, self._at(name)
+            word_of(name), tuple(parameters), ports if ports is not None else (), items, self._at(name)
         )
 
     def parameter_ports(self, children: list[Any]) -> _Parameters:
         return _Parameters(children)
 
     def parameter_port(self, children: list[Any]) -> tree.Parameter:
-        named = _of(children, tree.Named)
-        return tree.Parameter(False, _of(children, tree.Range), (named,), named.at)
+        return _parameter(children, "parameter", (children[-1],))
 
-    def parameter_type(self, children: list[Any]) -> tree.Range | None:
-        return _of(children, tree.Range)  # type: ignore[no-any-return]
+    def parameter_type(self, children: list[Any]) -> _ParameterType:
+        word = next((str(c) for c in children if isinstance(c, Token) and c.type == "VARIABLE"), "")
+        return _ParameterType(child_of(children, tree.Range), word, _signed(children))
 
     def ports(self, children: list[Any]) -> _Ports:
         ports = _Ports()
@@ -86,34 +63,35 @@ class TreeMaker:
         return children[0]  # type: ignore[no-any-return]
 
     def declared_type(self, children: list[Any]) -> _Type:
-        net = next((str(c) for c in children if isinstance(c, Token) and c.type == "NET_TYPE"), "wire")
-        return _Type(net, _signed(children), _of(children, tree.Range))
+        types = ("NET_TYPE", "VARIABLE")
+        net = next((str(c) for c in children if isinstance(c, Token) and c.type in types), "wire")
+        return _Type(net, _signed(children), child_of(children, tree.Range))
 
     def declared_port(self, children: list[Any]) -> tree.HeaderPort:
         direction = children[0]
-        kind: _Type = _of(children, _Type) or _PLAIN
+        kind: _Type = child_of(children, _Type) or _PLAIN
         name = next(c for c in children[1:] if isinstance(c, Token))
         at = self._at(name)
         value = children[-1] if children[-1] is not name else None
-        named = (tree.Named(_word(name), value, at),)
+        named = (tree.Named(word_of(name), value, at),)
         declaration = tree.Declaration(str(direction), kind.net, kind.signed, kind.range, None, named, at)
-        return tree.HeaderPort(_word(name), tree.Reference((_word(name),), (), at), declaration, at)
+        return tree.HeaderPort(word_of(name), tree.Reference((word_of(name),), (), at), declaration, at)
 
     def named_port(self, children: list[Any]) -> tree.HeaderPort:
         at = self._at(children[0])
-        word = _word(children[0])
+        word = word_of(children[0])
         return tree.HeaderPort(word, tree.Reference((word,), (), at), None, at)
 
     def port_expression(self, children: list[Any]) -> tree.HeaderPort:
         if isinstance(children[0], Token):
             at = self._at(children[0])
-            inside: tree.Expression = tree.Reference((_word(children[0]),), (children[1],), at)
+            inside: tree.Expression = tree.Reference((word_of(children[0]),), (children[1],), at)
             return tree.HeaderPort("", inside, None, at)
         return tree.HeaderPort("", children[0], None, children[0].at)
 
     def renamed_port(self, children: list[Any]) -> tree.HeaderPort:
         inside = children[1] if len(children) > 1 else None
-        return tree.HeaderPort(_word(children[0]), inside, None, self._at(children[0]))
+        return tree.HeaderPort(word_of(children[0]), inside, None, self._at(children[0]))
 
     # Items
 
@@ -121,32 +99,46 @@ class TreeMaker:
         return self._runs[self._at(children[0])]
 
     def port_declaration(self, children: list[Any]) -> tree.Declaration:
-        kind: _Type = _of(children, _Type) or _PLAIN
+        kind: _Type = child_of(children, _Type) or _PLAIN
         at = self._at(children[0])
         return tree.Declaration(str(children[0]), kind.net, kind.signed, kind.range, None, children[-1], at)
 
     def net_declaration(self, children: list[Any]) -> tree.Declaration:
-        word, bounds, delay = str(children[0]), _of(children, tree.Range), _of(children, tree.Delay)
+        word, bounds, delay = str(children[0]), child_of(children, tree.Range), child_of(children, tree.Delay)
         at = self._at(children[0])
         return tree.Declaration("", word, _signed(children), bounds, delay, children[-1], at)
 
     def parameter(self, children: list[Any]) -> tree.Parameter:
-        return tree.Parameter(False, _of(children, tree.Range), children[-1], children[-1][0].at)
+        return _parameter(children, "parameter", children[-1])
 
     def localparam(self, children: list[Any]) -> tree.Parameter:
-        return tree.Parameter(True, _of(children, tree.Range), children[-1], children[-1][0].at)
+        return _parameter(children, "localparam", children[-1])
+
+    def specparam(self, children: list[Any]) -> tree.Parameter:
+        return _parameter(children, "specparam", children[-1])
+
+    def variables(self, children: list[Any]) -> tree.Declaration:
+        at = self._at(children[0])
+        return tree.Declaration("", str(children[0]), True, None, None, children[-1], at)
+
+    def events_declared(self, children: list[Any]) -> tree.Declaration:
+        return tree.Declaration("", "event", False, None, None, children[0], children[0][0].at)
 
     def continuous(self, children: list[Any]) -> tree.Continuous:
-        return tree.Continuous(_of(children, tree.Delay), children[-1], children[-1][0].at)
+        return tree.Continuous(child_of(children, tree.Delay), children[-1], children[-1][0].at)
 
     def gates(self, children: list[Any]) -> tree.Gates:
         gates = tuple(c for c in children if isinstance(c, tree.Gate))
-        return tree.Gates(str(children[0]), _of(children, tree.Delay), gates, self._at(children[0]))
+        return tree.Gates(str(children[0]), child_of(children, tree.Delay), gates, self._at(children[0]))
+
+    def pulls(self, children: list[Any]) -> tree.Pulls:
+        gates = tuple(c for c in children if isinstance(c, tree.Gate))
+        return tree.Pulls(str(children[0]), gates, self._at(children[0]))
 
     def instances(self, children: list[Any]) -> tree.Instances:
         instances = tuple(c for c in children if isinstance(c, tree.Instance))
-        overrides = tuple(_of(children, _Overrides) or ())
-        return tree.Instances(_word(children[0]), overrides, instances, self._at(children[0]))
+        overrides = tuple(child_of(children, _Overrides) or ())
+        return tree.Instances(word_of(children[0]), overrides, instances, self._at(children[0]))
 
     def nothing(self, _children: list[Any]) -> None:
         return None
@@ -154,34 +146,40 @@ class TreeMaker:
     def vectored(self, _children: list[Any]) -> None:
         return None
 
-    def strength(self, _children: list[Any]) -> None:
-        return None
+    strength = net_strength = pull_strength = vectored
 
     def declared_names(self, children: list[Any]) -> tuple[tree.Named, ...]:
         return tuple(children)
 
-    assignments = net_assignments = declared_names
+    assignments = net_assignments = specparams = defparams = declared_names
 
     def declared_name(self, children: list[Any]) -> tree.Named:
-        value = children[1] if len(children) > 1 else None
-        return tree.Named(_word(children[0]), value, self._at(children[0]))
+        dimensions = tuple(c for c in children if isinstance(c, tree.Range))
+        value = children[-1] if len(children) > 1 + len(dimensions) else None
+        return tree.Named(word_of(children[0]), value, self._at(children[0]), dimensions)
 
-    assignment = declared_name
+    assignment = specparam_assignment = declared_name
+
+    def pulse_limits(self, children: list[Any]) -> tree.Named:
+        return tree.Named(word_of(children[0]), children[1], self._at(children[0]))
 
     def net_assignment(self, children: list[Any]) -> tree.Assign:
         return tree.Assign(children[0], children[1], children[0].at)
 
+    defparam_assignment = net_assignment
+
     def gate(self, children: list[Any]) -> tree.Gate:
-        name, ranged = "", _of(children[:2], tree.Range)
+        name, ranged = "", child_of(children[:2], tree.Range)
         at = children[0].at if not isinstance(children[0], Token) else self._at(children[0])
         if isinstance(children[0], Token):
-            name = _word(children[0])
+            name = word_of(children[0])
         skip = bool(name) + (ranged is not None)
         return tree.Gate(name, ranged, tuple(children[skip:]), at)
 
     def overrides(self, children: list[Any]) -> _Overrides:
         if isinstance(children[0], Token):
-            return _Overrides([tree.Connection("", self._number(children[0]), self._at(children[0]))])
+            delay = self.short_delay(children)
+            return _Overrides([tree.Connection("", delay.values[0], delay.at)])
         return _Overrides(children)
 
     def override(self, children: list[Any]) -> tree.Connection:
@@ -189,7 +187,7 @@ class TreeMaker:
 
     def by_name(self, children: list[Any]) -> tree.Connection:
         net = children[1] if len(children) > 1 else None
-        return tree.Connection(_word(children[0]), net, self._at(children[0]))
+        return tree.Connection(word_of(children[0]), net, self._at(children[0]))
 
     named_override = by_name
 
@@ -203,90 +201,55 @@ class TreeMaker:
         connections = children[-1]
         if len(connections) == 1 and connections[0].net is None and not connections[0].pin:
             connections = ()  # `()` connects nothing
+        if len(children) == 1:
+            at = max((connection.at for connection in connections), default=-1)
+            return tree.Instance("", None, connections, connections[0].at if connections else at)
         return tree.Instance(
-            _word(children[0]), _of(children, tree.Range), connections, self._at(children[0])
+            word_of(children[0]), child_of(children, tree.Range), connections, self._at(children[0])
         )
 
-    # Delays
+    # Generate
 
-    def short_delay(self, children: list[Any]) -> tree.Delay:
-        token = children[0]
-        at = self._at(token)
-        if token.type == "NUMBER":
-            return tree.Delay((self._number(token),), at)
-        return tree.Delay((tree.Reference((_word(token),), (), at),), at)
+    def region(self, children: list[Any]) -> _Region:
+        return _Region(c for c in _items(children))
 
-    def delay(self, children: list[Any]) -> tree.Delay:
-        return tree.Delay(tuple(children), children[0].at)
+    def genvars(self, children: list[Any]) -> tree.Genvars:
+        return tree.Genvars(children[0], children[0][0].at)
 
-    def triple(self, children: list[Any]) -> tree.Expression:
-        return children[0] if len(children) == 1 else self.grouped_triple(children)
+    def begun_block(self, children: list[Any]) -> tree.Block:
+        name = children[0] if children and isinstance(children[0], Token) else None
+        items = _items(children)
+        at = self._at(name) if name is not None else items[0].at if items else -1
+        return tree.Block(word_of(name) if name is not None else "", items, True, at)
 
-    # Expressions
+    def lone_block(self, children: list[Any]) -> tree.Block | None:
+        item = children[0]
+        return None if item is None else tree.Block("", (item,), False, item.at)
 
-    def conditional(self, children: list[Any]) -> tree.Conditional:
-        condition = resolve(*children[0])
-        return tree.Conditional(condition, children[1], children[2], condition.at)
+    def generate_for(self, children: list[Any]) -> tree.GenerateFor:
+        variable, first, condition, stepped, following, block = children
+        at = self._at(variable)
+        return tree.GenerateFor(
+            word_of(variable), first, condition, word_of(stepped), following,
+            block or tree.Block("", (), False, at), at,
+        )  # fmt: skip
 
-    def resolved(self, children: list[Any]) -> tree.Expression:
-        return resolve(*children[0])
+    def generate_if(self, children: list[Any]) -> tree.GenerateIf:
+        no = children[2] if len(children) > 2 else None
+        return tree.GenerateIf(children[0], children[1], no, children[0].at)
 
-    def operands(self, children: list[Any]) -> tuple[list[Any], list[int]]:
-        if len(children) == 1:
-            return [children[0]], []
-        row, places = children[0]
-        row += (str(children[1]), children[2])
-        places.append(self._at(children[1]))
-        return row, places
+    def generate_case(self, children: list[Any]) -> tree.GenerateCase:
+        return tree.GenerateCase(children[0], tuple(children[1:]), children[0].at)
 
-    def unary(self, children: list[Any]) -> tree.Expression:
-        if len(children) == 1:
-            child = children[0]
-            if not isinstance(child, Token):
-                return child  # type: ignore[no-any-return]
-            if child.type == "STRING":
-                return tree.String(str(child)[1:-1], self._at(child))
-            return self._number(child)
-        return tree.Unary(str(children[0]), children[1], self._at(children[0]))
+    def case_arm(self, children: list[Any]) -> tree.CaseArm:
+        return tree.CaseArm(tuple(children[:-1]), children[-1], children[0].at)
 
-    def _number(self, token: Token) -> tree.Number | tree.Decimal:
-        return read_number(str(token), self._at(token))
+    def default_arm(self, children: list[Any]) -> tree.CaseArm:
+        block = children[0]
+        return tree.CaseArm((), block, block.at if block is not None else -1)
 
-    def call(self, children: list[Any]) -> tree.Call:
-        return tree.Call(str(children[0]), tuple(children[1:]), self._at(children[0]))
-
-    def grouped(self, children: list[Any]) -> tree.Expression:
-        return children[0]  # type: ignore[no-any-return]
-
-    def grouped_triple(self, children: list[Any]) -> tree.Triplet:
-        low, middle, high = children
-        return tree.Triplet(low, middle, high, low.at)
-
-    def reference(self, children: list[Any]) -> tree.Reference:
-        path = tuple(_word(c) for c in children if isinstance(c, Token))
-        selections = tuple(c for c in children if isinstance(c, tree.Selection))
-        return tree.Reference(path, selections, self._at(children[0]))
-
-    def selection(self, children: list[Any]) -> tree.Selection:
-        return tree.Selection("bit", children[0], None)
-
-    def part(self, children: list[Any]) -> tree.Selection:
-        return tree.Selection("part", children[0], children[1])
-
-    def part_up(self, children: list[Any]) -> tree.Selection:
-        return tree.Selection("up", children[0], children[-1])
-
-    def part_down(self, children: list[Any]) -> tree.Selection:
-        return tree.Selection("down", children[0], children[-1])
-
-    def range(self, children: list[Any]) -> tree.Range:
-        return tree.Range(children[0], children[1], children[0].at)
-
-    def concatenation(self, children: list[Any]) -> tree.Concatenation:
-        return tree.Concatenation(tuple(children), children[0].at)
-
-    def replication(self, children: list[Any]) -> tree.Replication:
-        return tree.Replication(children[0], tuple(children[1:]), children[0].at)
+    def defparam(self, children: list[Any]) -> tree.Defparam:
+        return tree.Defparam(children[0], children[0][0].at)
 
 
 class _Ports(list[tree.HeaderPort]):
@@ -299,6 +262,18 @@ class _Parameters(list[tree.Parameter]):
 
 class _Overrides(list[tree.Connection]):
     """The parameter overrides of an instance statement."""
+
+
+class _Region(list[tree.Item]):
+    """What stands between `generate` and `endgenerate`."""
+
+
+class _ParameterType(NamedTuple):
+    """The range or type of a parameter declaration."""
+
+    range: tree.Range | None
+    word: str
+    signed: bool
 
 
 class _Type(NamedTuple):
@@ -316,4 +291,24 @@ def _signed(children: list[Any]) -> bool:
     return any(isinstance(c, Token) and c.type == "SIGNED" for c in children)
 
 
-_ITEMS = (tree.Declaration, tree.Parameter, tree.Gates, tree.Instances, tree.Continuous, tree.Run)
+def _items(children: list[Any]) -> tuple[tree.Item, ...]:
+    """Return the items among children, those of generate regions among them."""
+    found: list[tree.Item] = []
+    for child in children:
+        if isinstance(child, _Region):
+            found += child
+        elif isinstance(child, _ITEMS):
+            found.append(child)
+    return tuple(found)
+
+
+def _parameter(children: list[Any], word: str, names: tuple[tree.Named, ...]) -> tree.Parameter:
+    kind = child_of(children, _ParameterType) or _ParameterType(child_of(children, tree.Range), "", False)
+    return tree.Parameter(word != "parameter", kind.range, names, names[0].at, word, kind.word, kind.signed)
+
+
+_ITEMS = (
+    tree.Declaration, tree.Parameter, tree.Gates, tree.Instances, tree.Continuous, tree.Run, tree.Pulls,
+    tree.Genvars, tree.GenerateFor, tree.GenerateIf, tree.GenerateCase, tree.Defparam, tree.Always,
+    tree.Opaque, tree.Specify,
+)  # fmt: skip

@@ -9,9 +9,9 @@ GATES = (
 
 SWITCHES = (
     "nmos", "pmos", "cmos", "rnmos", "rpmos", "rcmos", "tran", "tranif0", "tranif1", "rtran", "rtranif0",
-    "rtranif1", "pullup", "pulldown",
+    "rtranif1",
 )  # fmt: skip
-"""Switches and pulls (clause 7.5 to 7.8): refused."""
+"""Switches (clause 7.5 to 7.7): refused."""
 
 PLAIN_DECLARATIONS = ("input", "output", "inout", "wire")
 """Words that may begin a declaration that is read in bulk."""
@@ -19,13 +19,12 @@ PLAIN_DECLARATIONS = ("input", "output", "inout", "wire")
 PROCEDURAL = ("always", "initial", "task", "function")
 """Words that begin procedural code (clause 9 and 10)."""
 
-UNREAD = (
-    "specify", "generate", "genvar", "defparam", "integer", "real", "realtime", "time", "event", "trireg",
-    "for", "if", "case", "begin", "primitive", "table", "config",
-)  # fmt: skip
-"""Words of the standard that the reader does not understand inside a module."""
+UNREAD = ("primitive", "table", "config")
+"""Words of the standard that cannot stand inside a module, or that the reader does not understand there."""
 
 OTHERS = (
+    "specify", "generate", "genvar", "defparam", "integer", "real", "realtime", "time", "event", "trireg",
+    "for", "if", "case", "begin", "pullup", "pulldown",
     "assign", "automatic", "casex", "casez", "cell", "deassign", "default", "design", "disable", "edge",
     "else", "end", "endcase", "endconfig", "endfunction", "endgenerate", "endmodule", "endprimitive",
     "endspecify", "endtable", "endtask", "force", "forever", "fork", "highz0", "highz1", "ifnone", "incdir",
