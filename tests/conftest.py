@@ -131,9 +131,9 @@ def make_flat() -> Callable[..., Flat]:
 
 
 @cache
-def _random_text() -> ModuleType:
-    path = Path(__file__).with_name("random_verilog.py")
-    spec = importlib.util.spec_from_file_location("random_verilog", path)
+def _random_text(name: str = "random_verilog") -> ModuleType:
+    path = Path(__file__).with_name(f"{name}.py")
+    spec = importlib.util.spec_from_file_location(name, path)
     assert spec is not None
     assert spec.loader is not None
     module = importlib.util.module_from_spec(spec)
@@ -146,6 +146,12 @@ def _random_text() -> ModuleType:
 def random_verilog() -> Callable[..., str]:
     """`random_verilog(seed, size=8, wild=False)`: the text of a random design whose top is `top`."""
     return _random_text().design  # type: ignore[no-any-return]
+
+
+@pytest.fixture(scope="session")
+def random_structure() -> Callable[..., str]:
+    """`random_structure(seed, size=5, fault="", modules="")`: the text of a random design."""
+    return _random_text("random_structure").structure  # type: ignore[no-any-return]
 
 
 @pytest.fixture(scope="session")

@@ -33,6 +33,9 @@ from tardigate.syntax.preprocess import Preprocessed, PreprocessOptions, preproc
 from tardigate.syntax.verilog_reader import Unit, read_unit
 from tardigate.syntax.words import GATES
 
+FLAT_ENCODING = "latin-1"
+"""What `flat_text_of` is to be encoded in: names keep the bytes that they have in the source."""
+
 
 class Request(NamedTuple):
     """What is asked for: files and how to read them.
@@ -97,10 +100,7 @@ def load(request: Request) -> Loaded:
 def graph_of(loaded: Loaded) -> Graph:
     """Return the graph. Raises InputRefusedError for undescribed modules, missing delays and loops."""
     collector = Collector()
-    for stranger in loaded.undescribed:
-        known = [*GATES, *loaded.library.part_names(), *loaded.module_names]
-        hint = did_you_mean(stranger.name, known) if collector.room("N301") else None
-        collector.tell("N301", stranger.place, name=stranger.name, count=stranger.count, hint=hint)
+    _tell_undescribed(loaded, collector)
     if loaded.missing:
         collector.tell("N302", count=len(loaded.missing), kinds=tuple(map(_without_delay, loaded.missing)))
     collector.refuse()
@@ -108,6 +108,13 @@ def graph_of(loaded: Loaded) -> Graph:
     collector.refuse()
     refuse_missing(loaded.flat, graph, loaded.request.grade, collector)
     return graph
+
+
+def _tell_undescribed(loaded: Loaded, collector: Collector) -> None:
+    for stranger in loaded.undescribed:
+        known = [*GATES, *loaded.library.part_names(), *loaded.module_names]
+        hint = did_you_mean(stranger.name, known) if collector.room("N301") else None
+        collector.tell("N301", stranger.place, name=stranger.name, count=stranger.count, hint=hint)
 
 
 def _without_delay(kind: Kind) -> str:
@@ -163,6 +170,26 @@ def draft_of(loaded: Loaded) -> str:
         for s in loaded.undescribed
     ]
     return draft_text(loaded.missing, strangers)
+
+
+def flat_text_of(loaded: Loaded) -> str:
+    """Return the design as one flat module of Verilog, and the definitions of cells that it uses.
+
+    Where there are such, the files are read once more. Raises InputRefusedError for undescribed modules.
+    """
+    from tardigate.netlist.modules import collect  # few runs need them
+    from tardigate.netlist.write_cells import cell_texts
+    from tardigate.netlist.write_flat import write_flat
+
+    collector = Collector()
+    _tell_undescribed(loaded, collector)
+    collector.refuse()
+    described = loaded.library.describes
+    kinds = [loaded.flat.kinds[number] for number in distinct(loaded.flat.inst_kind)]
+    names = {kind.name for kind in kinds if kind.group == "part" and not described(kind.name)}
+    units = _units(loaded.request, collector) if names else []
+    cells = cell_texts(collect(units, described, collector, loaded.request.bulk), names)
+    return write_flat(loaded.flat, loaded.top, cells)
 
 
 def _units(request: Request, collector: Collector) -> list[Unit]:

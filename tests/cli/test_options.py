@@ -68,6 +68,11 @@ def test_wrong_words_are_refused(words: str) -> None:
     assert _code(*words.split()) == "U103"
 
 
+@pytest.mark.parametrize("option", ["--condition", "--top", "--grade"])
+def test_an_option_with_one_value_is_not_given_twice(option: str) -> None:
+    assert _code("pace", "a.v", option, "min", f"{option}=max") == "U111"
+
+
 def test_a_mistyped_option_or_command_is_told_its_neighbour() -> None:
     for words, near in ((["pace", "a.v", "--gade=max"], "--grade"), (["pacer"], "pace")):
         with pytest.raises(InputRefusedError) as refused:

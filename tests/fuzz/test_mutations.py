@@ -93,6 +93,19 @@ def test_mutated_hierarchies(
 
 
 @pytest.mark.parametrize("part", range(2))
+def test_mutated_structures(
+    part: int, run: Run, mutated: Mutated, random_structure: Callable[..., str]
+) -> None:
+    @FEW
+    @given(st.integers(0, 2**32 - 1), st.integers(0, 2**32 - 1))
+    def law(seed: int, change: int) -> None:
+        text = random_structure(2 * seed + part, 3).encode()
+        run(mutated(text, change), FAMILY)
+
+    law()
+
+
+@pytest.mark.parametrize("part", range(2))
 def test_mutated_samples(part: int, run: Run, mutated: Mutated) -> None:
     texts = _samples(".v")[part::2]
 

@@ -2,14 +2,18 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping, Sequence
 
 import pytest
 
 from tardigate.netlist.build import build
 from tardigate.netlist.check import check_structure
+from tardigate.netlist.constants import Value
+from tardigate.netlist.declare import Declarer
 from tardigate.netlist.dump import dump
 from tardigate.netlist.flat import Flat
+from tardigate.netlist.lookup import Lookup
+from tardigate.netlist.modules import collect
 from tardigate.netlist.names import Names
 from tardigate.parts.kind import Edge
 from tardigate.parts.library import Library
@@ -17,8 +21,9 @@ from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.files import SourceFile
+from tardigate.syntax import tree
 from tardigate.syntax.preprocess import PreprocessOptions, preprocess
-from tardigate.syntax.verilog_reader import read_unit
+from tardigate.syntax.verilog_reader import Unit, read_unit
 
 Result = tuple[Flat | None, tuple[Diagnostic, ...]]
 
@@ -63,6 +68,41 @@ def _delays(text: str) -> dict[str, list[float]]:
             edges = "".join(Edge(edge[row]).name[0].lower() for edge in (kind.from_edge, kind.to_edge))
             found[f"{names.instance(inst)} {tail}>{head} {edges}"] = kind.delays[row].tolist()
     return found
+
+
+def _module(text: str, name: str) -> tuple[tree.Module, Unit, Collector]:
+    collector = Collector()
+    source = SourceFile("board.v", text.encode())
+    unit = read_unit(preprocess(source, PreprocessOptions(), collector, None), collector)
+    return collect([unit], lambda _: False, collector, True).tree(name), unit, collector
+
+
+def _declared(
+    text: str, overrides: Mapping[str, Value], codes: Sequence[str] | None = ()
+) -> dict[str, Value]:
+    module, unit, collector = _module(text, "m")
+    values = Declarer(unit, Lookup(unit.scan.names), collector).parameters(module, overrides)
+    assert codes is None or [told.code for told in collector.all()] == list(codes)
+    return values
+
+
+def _trees(texts: Sequence[str]) -> list[tree.Expression]:
+    lines = "".join(f"localparam P{i} = {text};\n" for i, text in enumerate(texts))
+    module = _module(f"module m;\n{lines}endmodule\n", "m")[0]
+    parameters = [item for item in module.items if isinstance(item, tree.Parameter)]
+    return [named.value for item in parameters for named in item.names if named.value is not None]
+
+
+@pytest.fixture(scope="session")
+def trees() -> Callable[[Sequence[str]], list[tree.Expression]]:
+    """`trees(texts)`: constant expressions as trees."""
+    return _trees
+
+
+@pytest.fixture(scope="session")
+def declared() -> Callable[..., dict[str, Value]]:
+    """`declared(text, overrides, codes=())`: the values of the parameters of `m`; any codes if None."""
+    return _declared
 
 
 @pytest.fixture(scope="session")

@@ -140,7 +140,7 @@ def test_7_14_1_min_typ_max(delays: Delays) -> None:
 @pytest.mark.parametrize(
     ("delay", "code"),
     [
-        ("#(1, 2, 3)", "N150"), ("#(-1)", "N151"), ("#(3:2:1)", "N152"), ("#(1:3:2)", "N152"),
+        ("#(1, 2, 3)", "N150"), ("#(-1)", "N151"), ("#(3:2:1)", "N152"),
         ("#10_000_000_000", "N153"), ("#1e99", "N153"), ("#1e999999999", "N153"), ("#a", "N120"),
         ("#(1, 2, 3, 4)", "N150"), ("#()", "V001"), ("#(1'bx)", "N120"),
     ],
@@ -235,9 +235,3 @@ def test_6_1_1_net_declaration_assignment(instances: Lines) -> None:
     assert instances(text) == [
         "assign ^ assign:^:2: out=w, in1=a, in2=b", "assign assign:2: out=v, in1=w", "buf g: out=y, in=v",
     ]  # fmt: skip
-
-
-def test_a_delay_on_a_net_is_refused(told: Codes) -> None:
-    text = "module board(input a, output y);\nwire #3 w;\nbuf (w, a);\nbuf (y, w);\nendmodule\n"
-    assert told(text) == ["V008"]
-    assert "V008" in told(text.replace("w;\nbuf", "w = a;\nbuf", 1))

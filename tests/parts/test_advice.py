@@ -8,8 +8,16 @@ from tardigate.parts.library import Library
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.files import SourceFile
-from tardigate.syntax import parts_advice, verilog_parser
+from tardigate.syntax import parts_advice, verilog_advice
 from tardigate.syntax.grammar import Reader
+from tardigate.syntax.parts_reader import MOST
+
+
+def faults(text: str) -> list[tuple[int, str]]:
+    """Return the line and the message of each fault."""
+    collector = Collector()
+    Library.read([SourceFile("a.parts", text.encode())], None, collector)
+    return [(told.span.line if told.span else 0, told.message) for told in collector.all()]
 
 
 def fault(text: str) -> Diagnostic:
@@ -29,7 +37,7 @@ def part(body: str) -> str:
 
 
 @pytest.mark.parametrize(
-    ("name", "friendly"), [("parts", parts_advice.FRIENDLY), ("verilog", verilog_parser.FRIENDLY)]
+    ("name", "friendly"), [("parts", parts_advice.FRIENDLY), ("verilog", verilog_advice.FRIENDLY)]
 )
 def test_every_terminal_has_a_name_for_readers(name: str, friendly: dict[str, str]) -> None:
     lark = Reader(name, object()).lark
@@ -129,3 +137,41 @@ def test_a_byte_order_mark_is_passed_over() -> None:
     (place,) = (pin.place for pin in library.pins("P") if pin.name == "A")
     assert place is not None
     assert text.encode()[place.start : place.stop] == b"A"
+
+
+SEVERAL = """family F {
+  gates ns { tpd nand 1:2; tpd nor 1:2:3; tpd not 1,5; }
+  part A {
+    inputs A B;
+    output Y = A && B;
+    times ns { tpd A -> Y 1; tpd B => Y 1:2:3; }
+  }
+  part "x" { inputs A; output Y = A; tmies ns { tpd A => Y 1; } }
+  part C { inputs A; output Y = ~A; tmies ns { tpd A => Y 1; } }
+  alias Z C;
+}
+family G { part D { inputs A; output Y = A; } equivalent D, ; }
+"""
+
+
+def test_a_file_with_several_faults_tells_each_at_its_place() -> None:
+    assert [line for line, _ in faults(SEVERAL)] == [2, 2, 4, 5, 6, 8, 8, 9, 12]
+
+
+def test_names_that_a_faulty_file_may_describe_are_not_missed() -> None:
+    text = family("part A { inputs A B; } part B { inputs C; } alias C = A; equivalent A, C;")
+    assert len(faults(text)) == 1
+
+
+@pytest.mark.parametrize("piece", ["part A { inputs A B; } ", "{ ", "} ", "part ", "= { ", "\x00", "; "])
+def test_many_faults_are_counted(piece: str) -> None:
+    collector = Collector()
+    Library.read([SourceFile("a.parts", family(piece * 5000).encode())], None, collector)
+    assert 1 <= len(collector.all()) <= MOST
+
+
+def test_the_last_fault_counts_those_beyond() -> None:
+    collector = Collector()
+    text = family("part A { inputs A B; inputs C; }\n" * 500)
+    Library.read([SourceFile("a.parts", text.encode())], None, collector)
+    assert [told.count for told in collector.all()] == [1] * (MOST - 1) + [500 - MOST + 1]

@@ -8,6 +8,7 @@ from rich.cells import cell_len
 
 from tardigate.report.diagnostic_view import diagnostic_lines, untabbed
 from tardigate.report.looks import Look
+from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Diagnostic, Related
 from tardigate.source.span import span_in
 
@@ -97,3 +98,14 @@ def test_plain_terminals_get_ascii_and_carets_in_the_right_place() -> None:
     )
     assert all(line.isascii() for line in lines)
     assert lines[1].index("u1") == lines[2].index("^")
+
+
+def test_ten_thousand_faults_are_a_bounded_text_and_a_number() -> None:
+    collector = Collector()
+    for at in range(10_000):
+        collector.tell("V101", span_in("b.v", b"x" * 10_000, at, at + 1), name="x", hint="")
+    for width in (80, 120):
+        lines = _plain(list(collector.all()), Look(width), most=20)
+        assert len(lines) < 100
+        assert lines[-1].startswith("10000 errors;")
+        assert max(map(len, lines)) <= width

@@ -72,3 +72,8 @@ def test_every_code_of_the_table_can_be_told_without_wrapping(width: int) -> Non
     for code in every_code():
         for line in explain_view(look_up(code), Look(width)):
             assert len(line.plain) <= width, code
+
+
+def test_open_places_of_a_hint_are_marked() -> None:
+    entry = ENTRY._replace(hint="Put it behind `{before}`.")
+    assert "hint: Put it behind ‹before›." in [line.plain for line in explain_view(entry, Look(60))]

@@ -73,14 +73,16 @@ def test_a_refusal_and_a_fault_hold_to_the_schema(validator: Draft202012Validato
     refused = json.loads(json_text(None, {}, (TOLD,), "0.1.0"))
     validator.validate(refused)
     validator.validate(json.loads(json_text("pace", {"fault": "sums differ"}, (), "0.1.0")))
+    place = {"file": "board.v", "line": 1, "column": 6, "end_column": 8, "length": 2}
+    place |= {"byte_offset": 5, "byte_length": 2}
     assert refused["diagnostics"] == [
         {
             "code": "N101",
             "severity": "warning",
             "message": "it floats",
             "count": 3,
-            "place": {"file": "board.v", "line": 1, "column": 6, "length": 2},
-            "related": [{"place": {"file": "board.v", "line": 1, "column": 6, "length": 2}, "label": "here"}],
+            "place": place,
+            "related": [{"place": place, "label": "here"}],
             "hint": "drive it",
         }
     ]

@@ -98,8 +98,8 @@ def test_each_entry_is_complete(code: str) -> None:
 HINT_IS_MADE = ("N102", "N160", "P002", "P006", "P018")
 """Their hint names what is near or there, so it is made for each case."""
 
-WITHOUT_SAMPLE = ("N122", "N125", "U102", "U109")
-"""Too large for a sample, and raised below with the limit set low; U109 (a full disk) in tests/cli."""
+WITHOUT_SAMPLE = ("N122", "N125", "U102", "U109", "U110")
+"""Too large for a sample, or no text, and raised below; U109 (a full disk) in tests/cli."""
 
 
 def _codes(path: Path) -> list[str]:
@@ -117,6 +117,21 @@ def test_u102_a_file_that_is_too_large(tmp_path: Path, monkeypatch: pytest.Monke
     with pytest.raises(InputRefusedError) as refusal:
         read_file(path)
     assert [diagnostic.code for diagnostic in refusal.value.diagnostics] == ["U102"]
+
+
+@pytest.mark.parametrize(
+    "data", [BOARD.encode("utf-16"), BOARD.encode("utf-16-le"), bytes(range(256)) * 9, b"\x7fELF\x02" + bytes(90)]
+)
+def test_u110_a_file_that_is_no_text_is_told_once(
+    tmp_path: Path, capsys: pytest.CaptureFixture[str], data: bytes
+) -> None:
+    board, other = tmp_path / "board.v", tmp_path / "other"
+    board.write_text(BOARD)
+    other.write_bytes(data)
+    for words in (["pace", str(other)], ["pace", str(board), "--parts", str(other)]):
+        assert run(words) == 2
+        shown = capsys.readouterr().err
+        assert shown.count("error U110") == shown.count("error ") == 1
 
 
 def test_n122_more_gates_than_may_come_of_operators(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:

@@ -9,12 +9,14 @@ from zlib import crc32
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from lark import Tree
+from lark import Token, Tree
 from lark.exceptions import UnexpectedInput
 
 from tardigate.syntax import grammar_cache
 from tardigate.syntax.grammar import Reader
 from tardigate.syntax.lalr import NotInGrammarError
+from tardigate.syntax.parts_advice import LANGUAGE
+from tardigate.syntax.recovery import troubles
 
 SAMPLE = """// all kinds of statement
 family F "text" {
@@ -90,9 +92,30 @@ def test_tables_accept_what_lark_accepts_of_anything(reader: Reader, text: str) 
     assert by_tables == by_lark
 
 
-def test_a_refused_text_raises_what_lark_raises(reader: Reader) -> None:
-    with pytest.raises(UnexpectedInput):
-        reader.read("family {")
+@pytest.mark.usefixtures("folder")
+def test_a_refused_text_is_told_apart_without_lark(monkeypatch: pytest.MonkeyPatch) -> None:
+    Reader("parts", object())  # makes the tables
+    monkeypatch.setattr(Reader, "lark", property(lambda _: pytest.fail("lark was asked")))
+    with pytest.raises(NotInGrammarError):
+        Reader("parts", object()).read("family {")
+
+
+@settings(deadline=None)
+@given(st.data())
+def test_what_could_stand_there_is_what_lark_says(reader: Reader, data: st.DataObject) -> None:
+    pieces = SAMPLE.split(" ")
+    pieces[data.draw(st.integers(0, len(pieces) - 1))] = data.draw(st.sampled_from(WORDS))
+    found, _ = troubles(reader.scout, " ".join(pieces), LANGUAGE, 1)
+    if not found:
+        return
+    parser = reader.lark.parse_interactive()
+    for token in reader.scout.tokens(" ".join(pieces)):
+        if token.start == found[0].found.start:
+            could = parser.accepts()  # type: ignore[no-untyped-call]
+            assert found[0].accepted == could
+            assert token.kind not in could
+            break
+        parser.feed_token(Token(token.kind, token.text))
 
 
 def test_tokens_know_their_places() -> None:

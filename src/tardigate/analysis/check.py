@@ -13,6 +13,7 @@ from tardigate.analysis.model import Grade
 from tardigate.analysis.sweep import COLUMNS
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import Flat
+from tardigate.netlist.names import Names
 from tardigate.source.collector import Collector
 
 COLUMN_NAMES = ("min", "typ", "max")
@@ -29,11 +30,17 @@ def missing_numbers(graph: Graph, grade: Grade) -> NDArray[np.int64]:
 
 
 def refuse_missing(flat: Flat, graph: Graph, grade: Grade, collector: Collector) -> None:
-    """Tell G102 for each kind and pair of pins that lacks a number; raise InputRefusedError for any."""
+    """Tell G102 for each kind and pair of pins that lacks a number, at the first instance of the kind.
+
+    Raises InputRefusedError for any.
+    """
+    names = Names(flat)
     for row in missing_numbers(graph, grade).tolist():
         kind, hop = flat.kinds[graph.row_kind[row]], graph.row_hop[row]
+        user = int(np.argmax(flat.inst_kind == graph.row_kind[row]))  # first of the instances
         collector.tell(
             "G102",
+            names.place(user) if collector.room("G102") else None,
             kind=kind.name,
             column=COLUMN_NAMES[COLUMNS[grade][0]],
             pin_in=kind.pins[kind.hop_from[hop]],

@@ -5,7 +5,7 @@ Takes words, gives `Options`. Does not open the files that are named.
 
 from __future__ import annotations
 
-from argparse import ArgumentParser, ArgumentTypeError, Namespace, RawDescriptionHelpFormatter
+from argparse import Action, ArgumentParser, ArgumentTypeError, Namespace, RawDescriptionHelpFormatter
 from typing import Any, Literal, NamedTuple, NoReturn
 
 from tardigate.report.looks import NARROWEST
@@ -59,7 +59,24 @@ class Options(NamedTuple):
     to_names: tuple[str, ...] = ()
     outputs: int = 12
     output_file: str | None = None
+    flat_file: str | None = None
     code: str | None = None
+
+
+class _Once(Action):
+    """Refuses an option that is given a second time: which of the two values is meant is not guessed."""
+
+    _first: str | None = None
+
+    def __call__(
+        self, parser: ArgumentParser, namespace: Namespace, values: Any, option: str | None = None
+    ) -> None:
+        del parser
+        if self._first is not None:
+            told = Diagnostic.of("U111", option=option, first=self._first, second=values)
+            raise InputRefusedError((told,))
+        self._first = values
+        setattr(namespace, self.dest, values)
 
 
 class _Parser(ArgumentParser):
@@ -110,6 +127,12 @@ def _parser(command: str) -> _Parser:
         parser.add_argument("code", nargs="?", metavar="CODE", help="such as V101; none: list all codes")
     else:
         _add_design(parser)
+    if command == "survey":
+        parser.add_argument(
+            "--write-flat", dest="flat_file", metavar="FILE",
+            help="also write the design there as one flat module of Verilog, which read again with the same"
+            " parts files gives the same figures",
+        )  # fmt: skip
     if command == "pace":
         parser.add_argument(
             "--outputs", type=_rows, default=12, metavar="N", help="rows of outputs to show (default: 12)"
@@ -130,12 +153,19 @@ def _add_design(parser: ArgumentParser) -> None:
     add("--parts", action="append", metavar="FILE", help="parts file with delays; may be given several times")
     add(
         "--top",
+        action=_Once,
         metavar="MODULE",
         help="the module to start from (default: the one that nothing instantiates)",
     )
-    add("--condition", metavar="NAME", help="named condition of the parts files (default: the first)")
+    add(
+        "--condition",
+        action=_Once,
+        metavar="NAME",
+        help="named condition of the parts files (default: the first)",
+    )
     add(
         "--grade",
+        action=_Once,
         choices=("span", "min", "typ", "max"),
         default="span",
         help="which of min, typ, max is used; span: max for settles, min for stirs (default: span)",

@@ -24,6 +24,9 @@ from tardigate.source.diagnostic import Diagnostic, printable
 PIPED_WIDTH = 100
 """Columns to lay out for where no terminal says how many it has."""
 
+MOST_FAULTS = 20
+"""Diagnostics that are printed of an input that is refused; the others are counted."""
+
 
 class UnwrittenError(Exception):
     """Standard output cannot be written; the diagnostic (U109) is for standard error."""
@@ -85,8 +88,9 @@ class Screen:
             self.complain(diagnostics)
 
     def complain(self, diagnostics: Sequence[Diagnostic]) -> None:
-        """Print diagnostics on standard error."""
-        self._print(diagnostic_lines(diagnostics, self.look(sys.stderr)), sys.stderr)
+        """Print the first diagnostics on standard error."""
+        lines = diagnostic_lines(diagnostics, self.look(sys.stderr), MOST_FAULTS, "`--json` lists")
+        self._print(lines, sys.stderr)
 
     def remark(self, words: str) -> None:
         """Print a line on standard error."""

@@ -7,7 +7,8 @@ from typing import Any
 from tardigate.cli.answer import Answer
 from tardigate.cli.given import request_of, subject_of
 from tardigate.cli.options import Options
-from tardigate.pipeline import load
+from tardigate.cli.save import save
+from tardigate.pipeline import FLAT_ENCODING, flat_text_of, load
 from tardigate.report.looks import Look
 from tardigate.report.model import SurveyRecord
 from tardigate.report.survey import clock_records, hierarchy_records, kind_records, port_counts
@@ -15,8 +16,10 @@ from tardigate.report.survey_view import survey_view
 
 
 def survey(options: Options, look: Look) -> Answer:
-    """Tell what is in a design. Raises InputRefusedError."""
+    """Tell what is in a design. Raises InputRefusedError (U106, U108: see `save`)."""
     loaded = load(request_of(options))
+    if options.flat_file is not None:
+        save(flat_text_of(loaded), options.flat_file, FLAT_ENCODING)
     registers, clocks = clock_records(loaded.flat, loaded.names)
     record = SurveyRecord(
         subject_of(loaded),
@@ -30,7 +33,8 @@ def survey(options: Options, look: Look) -> Answer:
         tuple((stranger.name, stranger.count) for stranger in loaded.undescribed),
         loaded.warnings,
     )
-    return Answer(lambda: survey_view(record, look), lambda: _body(record), loaded.warnings)
+    remark = f"wrote {options.flat_file}" if options.flat_file is not None else None
+    return Answer(lambda: survey_view(record, look), lambda: _body(record), loaded.warnings, remark)
 
 
 def _body(record: SurveyRecord) -> dict[str, Any]:

@@ -14,13 +14,12 @@ from numpy.typing import NDArray
 
 from tardigate.netlist.columns import Block
 from tardigate.netlist.flat import CONSTANTS, OPEN
+from tardigate.netlist.implicit import spread
 from tardigate.netlist.interface import Interface
 from tardigate.netlist.lookup import Lookup
 from tardigate.netlist.variables import RANGED, Variables
 from tardigate.parts.kind import Way
 from tardigate.source.arrays import distinct
-from tardigate.syntax import tree
-from tardigate.syntax.numbers import read_number
 from tardigate.syntax.verilog_reader import Unit
 from tardigate.syntax.words import GATES
 
@@ -59,25 +58,6 @@ class Bulk:
         self.variables, self.of_name = variables, of_name
         self.gate_kind, self.part_kind = gate_kind, part_kind
 
-    def statements(self, module: tree.Module) -> NDArray[np.int64]:
-        """Return the numbers of the plain instance statements of a module."""
-        runs = [item for item in module.items if isinstance(item, tree.Run)]
-        if not runs:
-            return np.zeros(0, np.int64)
-        every = np.concatenate([np.arange(run.first, run.last) for run in runs])
-        found: NDArray[np.int64] = every[~self.plain.is_declaration[every]]
-        return found
-
-    def names(self, statements: NDArray[np.int64]) -> tuple[NDArray[np.int32], NDArray[np.int64]]:
-        """Return the names of nets that the statements use, each once, and where first, in order of place."""
-        row = _spread(self.plain.start[statements], self._count(statements))
-        row = row[self.plain.net[row] >= 0]
-        names = self.plain.net[row]
-        unknown = row[self.of_name[names] < 0]
-        names, first = np.unique(self.plain.net[unknown], return_index=True)
-        order = np.argsort(first)
-        return names[order], self.plain.at[unknown[first[order]]].astype(np.int64)
-
     def read(self, statements: NDArray[np.int64]) -> tuple[list[Block], NDArray[np.int64]]:
         """Return blocks, and the numbers of the statements that want a closer look."""
         blocks: list[Block] = []
@@ -104,7 +84,7 @@ class Bulk:
 
     def _rows(self, statements: NDArray[np.int64]) -> Rows:
         count = self._count(statements)
-        row = _spread(self.plain.start[statements], count)
+        row = spread(self.plain.start[statements], count)
         return Rows(np.cumsum(count) - count, count, row, self._nets(row))
 
     def _nets(self, row: NDArray[np.int64]) -> NDArray[np.int32]:
@@ -208,49 +188,7 @@ class Bulk:
         )
         return np.where(names >= 0, found[back], by_order)
 
-    def as_tree(self, statement: int) -> tree.Gates | tree.Instances:
-        """Return a plain statement as the grammar would have read it."""
-        plain, names, scan = self.plain, self.unit.scan.names, self.unit.scan
-        first, stop = int(plain.start[statement]), int(plain.start[statement + 1])
-        nets = [self._net_tree(row) for row in range(first, stop)]
-        name_number = int(plain.name[statement])
-        mark = int(plain.first[statement]) + (1 if name_number >= 0 else 2)
-        at, name = int(scan.at[mark]), names.text(name_number) if name_number >= 0 else ""
-        head, start = names.text(int(plain.head[statement])), int(scan.at[plain.first[statement]])
-        if head in GATES and scan.data[start] != 0x5C:
-            return tree.Gates(head, None, (tree.Gate(name, None, tuple(n for n in nets if n), at),), start)
-        connections = []
-        for row, net in zip(range(first, stop), nets, strict=True):
-            pin = int(plain.pin[row])
-            # A named connection stands at its pin, three marks before an identifier, as in the grammar.
-            place = self._pin_place(int(plain.at[row])) if pin >= 0 else int(plain.at[row])
-            connections.append(tree.Connection(names.text(pin) if pin >= 0 else "", net, place))
-        return tree.Instances(head, (), (tree.Instance(name, None, tuple(connections), at),), start)
-
-    def _pin_place(self, net_at: int) -> int:
-        mark = int(np.searchsorted(self.unit.scan.at, np.int32(net_at)))  # of one type: no copy
-        return int(self.unit.scan.at[mark - 2])
-
-    def _net_tree(self, row: int) -> tree.Expression | None:
-        name, bit, at = int(self.plain.net[row]), int(self.plain.bit[row]), int(self.plain.at[row])
-        if name == -1:
-            return None
-        if name < -1:
-            mark = int(np.searchsorted(self.unit.scan.at, np.int32(at)))
-            stop = int(self.unit.scan.word_stop[self.unit.scan.word_of[mark]])
-            return read_number(self.unit.scan.data[at:stop].decode("latin-1"), at)
-        selections: tuple[tree.Selection, ...] = ()
-        if bit >= 0:
-            selections = (tree.Selection("bit", tree.Number(bit, None, 0, 0, True, at), None),)
-        return tree.Reference((self.unit.scan.names.text(name),), selections, at)
-
 
 def gate_terminals(gate: str, count: int) -> tuple[int, int]:
     """Return how many inputs and outputs a gate with so many terminals has (clauses 7.2 to 7.4)."""
     return (1, count - 1) if gate in _ONE_INPUT else (count - 1, 1)
-
-
-def _spread(start: NDArray[np.int64], count: NDArray[np.int64]) -> NDArray[np.int64]:
-    """Return the numbers `start[i]` to `start[i] + count[i]` of all `i`, joined."""
-    spread: NDArray[np.int64] = np.arange(count.sum()) + np.repeat(start - (np.cumsum(count) - count), count)
-    return spread

@@ -71,16 +71,22 @@ class Connector:
         return found
 
     def bits(
-        self, connection: tree.Connection | None, pin: InterfacePin, copies: int, scalar: bool = False
+        self,
+        connection: tree.Connection | None,
+        pin: InterfacePin,
+        copies: int,
+        scalar: bool = False,
+        pulled: int | None = None,
     ) -> list[list[int]] | None:
         """Return the nets of a pin for each copy, most significant bit first; None after telling.
 
         A net as wide as the pin goes to every copy, one as wide as all of them is dealt out, the last copy
         getting the least significant bits. With `scalar` (gates) other widths are refused, else they are told
-        and filled up (N164).
+        and filled up (N164). An open input is on the net `pulled`, if that is given (clause 19.9).
         """
         if connection is None or connection.net is None:
-            return [[OPEN] * pin.width] * copies
+            nowhere = OPEN if pulled is None or pin.way != Way.INPUT else pulled
+            return [[nowhere] * pin.width] * copies
         net = connection.net
         if pin.way != Way.INPUT and not is_target(net):
             self.wiring.collector.tell("N165", self.wiring.span(net.at), pin=pin.name)

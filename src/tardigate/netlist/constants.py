@@ -1,213 +1,311 @@
-"""Constant expressions: parameters, ranges, counts (IEEE 1364-2005 clause 5).
+"""Constant expressions: parameters, ranges, counts, conditions (IEEE 1364-2005 clause 5).
 
-Takes a tree and the parameters' values, gives an integer. Iterative. Unsized values are integers without
-limit (the standard asks for at least 32 bits); sized ones wrap at their width.
+Takes a tree and the parameters' values, gives a value. Widths, signs and reals as clauses 5.4 and 5.5 say;
+unsized numbers grow without limit. What has no value (x, 1/0) is refused only where it is needed. Iterative.
 """
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
+from fractions import Fraction
 from typing import NamedTuple
 
+from tardigate.netlist import constant_operators as operators
+from tardigate.netlist.constant_operators import BIT, REAL, Shape, fitted, joined, shape_of
+from tardigate.netlist.constant_value import LARGEST as LARGEST
+from tardigate.netlist.constant_value import NotConstantError as NotConstantError
+from tardigate.netlist.constant_value import Value as Value
+from tardigate.netlist.constant_value import assigned, decimal, real, text_value
+from tardigate.netlist.constant_value import rounded as rounded
+from tardigate.netlist.constant_value import whole as whole
+from tardigate.netlist.constant_value import words_of as words_of
 from tardigate.syntax import tree
 
-LARGEST = 1 << 13
-"""Bits of the largest value that a constant expression may reach; its digits can still be told."""
+MIN, TYP, MAX = range(3)
 
 
-class NotConstantError(Exception):
-    """An expression is no constant: `reason` in words, `at` where."""
+class Fault(NamedTuple):
+    """Why an operand has no value: harmless where nobody needs it, as in `N == 0 ? 0 : 8 / N`."""
 
-    def __init__(self, reason: str, at: int) -> None:
-        super().__init__(reason)
-        self.reason = reason
-        self.at = at
+    reason: str
+    at: int
 
 
-class Value(NamedTuple):
-    """A constant: `width` None when unsized."""
-
-    value: int
-    width: int | None = None
-    signed: bool = True
+Result = Value | Fault
+TOO_LARGE = "the value is too large"
+_NO_FUNCTION = "`{}` is no function that a constant may use"
 
 
-def _divide(a: int, b: int) -> int:
-    quotient = abs(a) // abs(b)
-    return quotient if (a < 0) == (b < 0) else -quotient
+def evaluate(
+    expression: tree.Expression,
+    parameters: Mapping[str, Value],
+    width: int | None = 0,
+    signed: bool = True,
+    grade: int = TYP,
+) -> Value:
+    """Return the value of a constant expression. Raises NotConstantError.
+
+    `width` is what the context asks for, as an assignment does: 0 nothing, None unsized (clause 5.4.1);
+    `signed` False: so is the context. Of a `min:typ:max` the one of the `grade` counts.
+    """
+    flat = _Flat(expression, parameters, grade)
+    for at in range(len(flat.nodes) - 1, -1, -1):
+        _measure(flat, at)
+    shape = flat.shape[0]
+    if width != 0 and not shape.real:
+        shape = joined(shape, Shape(width, signed))
+    result = _settle(flat, 0, shape)
+    if isinstance(result, Fault):
+        raise NotConstantError(result.reason, result.at)
+    if result.width == 0:
+        raise NotConstantError("a value of no bit at all", expression.at)
+    return result
 
 
-def _power(a: int, b: int) -> int:
-    if b < 0:
-        return 0 if abs(a) != 1 else a if b % 2 else 1
-    if abs(a) > 1 and b * max(1, abs(a).bit_length()) > LARGEST:
-        raise OverflowError
-    return int(a**b)
+def evaluate_whole(expression: tree.Expression, parameters: Mapping[str, Value]) -> int:
+    """Return the value of an expression that must be a whole number. Raises NotConstantError."""
+    return whole(evaluate(expression, parameters), expression.at)
 
 
-def _shift_left(a: int, b: int) -> int:
-    if b < 0 or b + a.bit_length() > LARGEST:
-        raise OverflowError
-    return a << b
+class _Flat:
+    """An expression laid flat, parents before children.
 
+    `shape` is each node's own type, `result` its value as soon as it does not depend on what is around it.
+    """
 
-_BINARY: Mapping[str, Callable[[int, int], int]] = {
-    "+": lambda a, b: a + b, "-": lambda a, b: a - b, "*": lambda a, b: a * b, "/": _divide,
-    "%": lambda a, b: a - b * _divide(a, b), "**": _power,
-    "&": lambda a, b: a & b, "|": lambda a, b: a | b, "^": lambda a, b: a ^ b,
-    "~^": lambda a, b: ~(a ^ b), "^~": lambda a, b: ~(a ^ b),
-    "<<": _shift_left, "<<<": _shift_left, ">>": lambda a, b: a >> max(0, min(b, LARGEST)),
-    ">>>": lambda a, b: a >> max(0, min(b, LARGEST)),
-}  # fmt: skip
-_COMPARE: Mapping[str, Callable[[int, int], bool]] = {
-    "==": lambda a, b: a == b, "!=": lambda a, b: a != b, "===": lambda a, b: a == b,
-    "!==": lambda a, b: a != b, "<": lambda a, b: a < b, "<=": lambda a, b: a <= b, ">": lambda a, b: a > b,
-    ">=": lambda a, b: a >= b, "&&": lambda a, b: bool(a) and bool(b), "||": lambda a, b: bool(a) or bool(b),
-}  # fmt: skip
+    def __init__(self, root: tree.Expression, parameters: Mapping[str, Value], grade: int) -> None:
+        self.parameters = parameters
+        self.nodes: list[tree.Expression] = [root]
+        self.below: list[range] = []
+        at = 0
+        while at < len(self.nodes):
+            children = self._children(self.nodes[at], grade)
+            self.below.append(range(len(self.nodes), len(self.nodes) + len(children)))
+            self.nodes.extend(children)
+            at += 1
+        self.shape = [BIT] * len(self.nodes)
+        self.result: list[Result | None] = [None] * len(self.nodes)
 
-
-def evaluate(expression: tree.Expression, parameters: Mapping[str, Value]) -> Value:
-    """Return the value of a constant expression. Raises NotConstantError."""
-    values: list[Value] = []
-    work: list[tuple[tree.Expression, bool]] = [(expression, False)]
-    while work:
-        node, ready = work.pop()
-        if ready:
-            _apply(node, values, parameters)
-            continue
+    def _children(self, node: tree.Expression, grade: int) -> tuple[tree.Expression, ...]:
         if isinstance(node, tree.Reference):
-            _check_parameter(node, parameters)
-        below = _children(node)
-        if below:
-            work.append((node, True))
-            work += [(child, False) for child in reversed(below)]
+            if len(node.path) > 1 or node.path[0] not in self.parameters:
+                raise NotConstantError(f"`{'.'.join(node.path)}` is no parameter", node.at)
+            if len(node.selections) > 1:
+                raise NotConstantError("a parameter is selected from once", node.at)
+            return tuple(bound for s in node.selections for bound in (s.high, s.low) if bound is not None)
+        if isinstance(node, tree.Triplet):
+            return ((node.minimum, node.typical, node.maximum)[grade],)
+        below = tree.operands(node)
+        return (node.times, *below) if isinstance(node, tree.Replication) else below
+
+
+# From the leaves: types, and values of what its context does not touch
+
+
+def _measure(flat: _Flat, at: int) -> None:
+    """Set a node's type (table 5-22), and its value where that is self-determined."""
+    node, below = flat.nodes[at], flat.below[at]
+    shapes = [flat.shape[child] for child in below]
+    if not below:
+        unknown = isinstance(node, tree.Number) and node.unknown | node.floating
+        shape = Shape(node.width, node.signed) if isinstance(node, tree.Number) and unknown else None
+        _done(flat, at, _leaf(node, flat.parameters), shape)
+    elif isinstance(node, tree.Binary):
+        _measure_binary(flat, at, node, shapes)
+    elif isinstance(node, tree.Unary):
+        _allow(node.operator, node.at, shapes)
+        if node.operator in ("+", "-", "~"):
+            flat.shape[at] = shapes[0]
         else:
-            values.append(_leaf(node, parameters))
-    return values[0]
+            operand = _settle(flat, below[0], shapes[0])
+            done = operand if isinstance(operand, Fault) else operators.reduced(node.operator, operand)
+            _done(flat, at, done, BIT)
+    elif isinstance(node, tree.Conditional):
+        _settle(flat, below[0], shapes[0])
+        flat.shape[at] = joined(shapes[1], shapes[2])
+    elif isinstance(node, tree.Triplet):
+        flat.shape[at] = shapes[0]
+    else:
+        operands = [_settle(flat, child, shape) for child, shape in zip(below, shapes, strict=True)]
+        fault = next((operand for operand in operands if isinstance(operand, Fault)), None)
+        values = [operand for operand in operands if not isinstance(operand, Fault)]
+        _measure_closed(flat, at, values, fault)
 
 
-def _children(node: tree.Expression) -> tuple[tree.Expression, ...]:
+def _measure_binary(flat: _Flat, at: int, node: tree.Binary, shapes: list[Shape]) -> None:
+    _allow(node.operator, node.at, shapes)
+    left, right = flat.below[at]
+    if node.operator in operators.COMPARISONS:
+        shape = joined(*shapes)
+        values = [
+            _settle(flat, child, own if shape.real else shape)
+            for child, own in zip((left, right), shapes, strict=True)
+        ]
+        one, other = values
+        if isinstance(one, Fault) or isinstance(other, Fault):
+            _done(flat, at, one if isinstance(one, Fault) else other, BIT)
+        else:
+            _done(flat, at, operators.compared(node.operator, one, other), BIT)
+    elif node.operator in ("&&", "||"):
+        either = [_settle(flat, child, own) for child, own in zip((left, right), shapes, strict=True)]
+        _done(flat, at, _logical(node.operator == "||", either), BIT)
+    elif node.operator in operators.SHIFTS or node.operator == "**":
+        _settle(flat, right, shapes[1])
+        flat.shape[at] = REAL if shapes[1].real else shapes[0]
+    else:
+        flat.shape[at] = joined(*shapes)
+
+
+def _logical(decides: bool, operands: list[Result]) -> Result:
+    """Return `||` (decided by a 1) or `&&` (by a 0): either operand may decide (clause 5.1.9)."""
+    for operand in operands:
+        if isinstance(operand, Value) and bool(operand.value) == decides:
+            return Value(int(decides), 1, False)
+    fault = next((operand for operand in operands if isinstance(operand, Fault)), None)
+    return fault or Value(int(not decides), 1, False)
+
+
+def _measure_closed(flat: _Flat, at: int, values: list[Value], fault: Fault | None) -> None:
+    """Measure what takes its operands by themselves: selections, concatenations, functions."""
+    node = flat.nodes[at]
+    shapes = [flat.shape[child] for child in flat.below[at]]
+    if isinstance(node, tree.Call):
+        function = operators.FUNCTIONS.get(node.name)
+        if function is None:
+            raise NotConstantError(_NO_FUNCTION.format(node.name), node.at)
+        if len(shapes) != 1:
+            raise NotConstantError(f"`{node.name}` takes one argument", node.at)
+        if shapes[0].real and node.name in operators.WHOLE_ONLY:
+            raise NotConstantError("this is no whole number", flat.nodes[flat.below[at][0]].at)
+        _done(flat, at, fault or function(values[0]), operators.call_shape(node.name, shapes[0]))
+        return
+    for child, shape in zip(flat.below[at], shapes, strict=True):
+        if shape.real:
+            raise NotConstantError("this is no whole number", flat.nodes[child].at)
     if isinstance(node, tree.Reference):
-        return tuple(bound for s in node.selections for bound in (s.high, s.low) if bound is not None)
-    below = tree.operands(node)
-    return (node.times, *below) if isinstance(node, tree.Replication) else below
+        _done(flat, at, fault or _selected(node, flat.parameters[node.path[0]], values))
+        return
+    for child in flat.below[at][isinstance(node, tree.Replication) :]:
+        leaf = flat.nodes[child]
+        if isinstance(leaf, tree.Number) and leaf.width is None:
+            raise NotConstantError("only sized numbers may be joined", leaf.at)
+    _done(flat, at, fault or _joined(node, values))
 
 
-def _check_parameter(node: tree.Reference, parameters: Mapping[str, Value]) -> None:
-    if len(node.path) > 1 or node.path[0] not in parameters:
-        raise NotConstantError(f"`{'.'.join(node.path)}` is no parameter", node.at)
-    if len(node.selections) > 1:
-        raise NotConstantError("a parameter is selected from once", node.at)
+def _joined(node: tree.Expression, values: list[Value]) -> Result:
+    times = 1
+    if isinstance(node, tree.Replication):
+        times = rounded(values[0])
+        values = values[1:]
+    try:
+        return operators.concatenated(values, times)
+    except OverflowError:
+        return Fault(TOO_LARGE if times >= 0 else "a negative count", node.at)
 
 
-def _leaf(node: tree.Expression, parameters: Mapping[str, Value]) -> Value:
+def _selected(node: tree.Reference, value: Value, bounds: list[Value]) -> Result:
+    if isinstance(value.value, Fraction):
+        raise NotConstantError("a real has no bits to select", node.at)
+    high = rounded(bounds[0])
+    found = operators.selected(value, node.selections[0].mode, high, rounded(bounds[-1]))
+    return Fault("this selection is out of range", node.at) if found is None else found
+
+
+def _allow(operator: str, at: int, shapes: list[Shape]) -> None:
+    """Refuse reals where table 5-3 does not list an operator."""
+    if operator not in operators.FOR_REALS and any(shape.real for shape in shapes):
+        raise NotConstantError(f"`{operator}` takes no real number", at)
+
+
+def _leaf(node: tree.Expression, parameters: Mapping[str, Value]) -> Result:
     if isinstance(node, tree.Number):
         if node.unknown or node.floating:
-            raise NotConstantError("x and z have no value", node.at)
-        if node.value.bit_length() > LARGEST:
-            raise NotConstantError("the value is too large", node.at)
-        return Value(node.value, node.width, node.signed)
+            return Fault("x and z have no value", node.at)
+        return assigned(Value(node.value, None, node.signed), node.width, node.signed)
     if isinstance(node, tree.Reference):
-        return parameters[node.path[0]]
+        value = parameters[node.path[0]]
+        return value if value.bounds is None else value._replace(bounds=None)
     if isinstance(node, tree.String):
-        raise NotConstantError("a text is no number", node.at)
-    raise NotConstantError("this is no whole number", node.at)
-
-
-def _selected(node: tree.Reference, value: Value, bounds: list[Value]) -> Value:
-    """Return bits of a parameter, whose bit 0 is its least significant (clause 5.2.1)."""
-    chosen = node.selections[0]
-    high, *low = (bound.value for bound in bounds)
-    bottom = {"bit": high, "part": low[0] if low else high, "up": high}.get(chosen.mode)
-    width = {"bit": 1, "part": high - (low[0] if low else high) + 1}.get(chosen.mode, low[0] if low else 1)
-    if bottom is None:
-        bottom = high - width + 1
-    if bottom < 0 or not 0 < width <= LARGEST or bottom > LARGEST:
-        raise NotConstantError("this selection is out of range", node.at)
-    return Value((value.value >> bottom) & ((1 << width) - 1), width, False)
-
-
-def _apply(node: tree.Expression, values: list[Value], parameters: Mapping[str, Value]) -> None:
-    """Replace the values of a node's operands by its own."""
-    count = len(_children(node))
-    operands = values[-count:]
-    del values[-count:]
-    try:
-        if isinstance(node, tree.Reference):
-            result = _selected(node, parameters[node.path[0]], operands)
-        else:
-            result = _result(node, operands)
-    except ZeroDivisionError:
-        raise NotConstantError("division by zero", node.at) from None
-    except OverflowError:
-        raise NotConstantError("the value is too large", node.at) from None
-    if result.value.bit_length() > LARGEST:
-        raise NotConstantError("the value is too large", node.at)
-    values.append(result)
-
-
-def _result(node: tree.Expression, operands: list[Value]) -> Value:
-    if isinstance(node, tree.Binary):
-        return _binary(node.operator, *operands)
-    if isinstance(node, tree.Unary):
-        return _unary(node, operands[0])
-    if isinstance(node, tree.Conditional):
-        return operands[1] if operands[0].value else operands[2]
+        return text_value(node.text)
+    if isinstance(node, tree.Decimal):
+        try:
+            return real(decimal(node.text))
+        except ValueError:
+            raise NotConstantError(TOO_LARGE, node.at) from None
     if isinstance(node, tree.Call):
-        if node.name != "$clog2" or len(operands) != 1:
-            raise NotConstantError(f"`{node.name}` is not known here", node.at)
-        return Value(max(0, operands[0].value - 1).bit_length())
-    parts, times = (
-        (operands, 1) if isinstance(node, tree.Concatenation) else (operands[1:], operands[0].value)
-    )
-    return _joined(node.at, parts, times)
+        raise NotConstantError(_NO_FUNCTION.format(node.name), node.at)
+    raise NotConstantError("this is no constant", node.at)
 
 
-def _joined(at: int, parts: list[Value], times: int) -> Value:
-    value = width = 0
-    for part in parts:
-        if part.width is None:
-            raise NotConstantError("only sized numbers may be joined", at)
-        value = value << part.width | part.value & ((1 << part.width) - 1)
-        width += part.width
-    if times < 0 or width * times > LARGEST:
-        raise NotConstantError("the value is too large", at)
-    pattern = value
-    for _ in range(times - 1):
-        value = value << width | pattern
-    return Value(value if times else 0, width * times, False)
+# From the root: values in their context
 
 
-def _binary(operator: str, left: Value, right: Value) -> Value:
-    if operator in _COMPARE:
-        return Value(int(_COMPARE[operator](left.value, right.value)), 1, False)
-    value = _BINARY[operator](left.value, right.value)
-    if operator in ("<<", ">>", "<<<", ">>>", "**"):
-        width, signed = left.width, left.signed
-    else:
-        both = left.width is not None and right.width is not None
-        width = max(left.width or 0, right.width or 0) if both else None
-        signed = left.signed and right.signed
-    return wrapped(value, width, signed)
+def _done(flat: _Flat, at: int, result: Result, shape: Shape | None = None) -> None:
+    """Keep a value that no context changes the inside of."""
+    flat.result[at] = result = _bounded(result, flat.nodes[at].at)
+    flat.shape[at] = shape or (BIT if isinstance(result, Fault) else shape_of(result))
 
 
-def _unary(node: tree.Unary, operand: Value) -> Value:
-    value, width = operand.value, operand.width
-    plain = {"+": value, "-": -value, "~": ~value}.get(node.operator)
-    if plain is not None:
-        return wrapped(plain, width, operand.signed)
-    if node.operator == "!":
-        return Value(int(not value), 1, False)
-    mask = (1 << (32 if width is None else width)) - 1
-    reduced = {"&": value & mask == mask, "|": bool(value & mask), "^": bool((value & mask).bit_count() & 1)}
-    return Value(int(reduced[node.operator.strip("~")] ^ ("~" in node.operator)), 1, False)
+def _bounded(result: Result, at: int) -> Result:
+    if isinstance(result, Fault):
+        return result
+    number = result.value
+    whole_bits = number.bit_length() if isinstance(number, int) else number.numerator.bit_length()
+    if max(whole_bits, number.denominator.bit_length()) > LARGEST:
+        return Fault(TOO_LARGE, at)
+    return result
 
 
-def wrapped(value: int, width: int | None, signed: bool) -> Value:
-    """Return a value cut to its width (clause 5.4)."""
-    if width is None:
-        return Value(value, None, signed)
-    value &= (1 << width) - 1
-    if signed and width and value >> (width - 1):
-        value -= 1 << width
-    return Value(value, width, signed)
+def _settle(flat: _Flat, root: int, shape: Shape) -> Result:
+    """Return the value of a node in a context of its own: its type goes down to the leaves (5.5.2)."""
+    order: list[tuple[int, Shape]] = []
+    work = [(root, shape)]
+    while work:
+        at, wanted = work.pop()
+        order.append((at, wanted))
+        if flat.result[at] is None:
+            for child in _in_context(flat.nodes[at], flat.below[at]):
+                own = flat.shape[child]
+                work.append((child, own if wanted.real and not own.real else wanted))
+    for at, wanted in reversed(order):
+        own_result = flat.result[at]
+        if own_result is None:
+            below = [flat.result[child] for child in flat.below[at]]
+            flat.result[at] = _bounded(_applied(flat.nodes[at], below, wanted), flat.nodes[at].at)
+        elif isinstance(own_result, Value):
+            flat.result[at] = fitted(own_result, wanted)
+    result = flat.result[root]
+    assert result is not None
+    return result
+
+
+def _in_context(node: tree.Expression, below: range) -> range:
+    """Return the operands that have the type of their context (table 5-22)."""
+    if isinstance(node, tree.Conditional):
+        return below[1:]
+    alone = isinstance(node, tree.Binary) and (node.operator in operators.SHIFTS or node.operator == "**")
+    return below[:1] if alone else below
+
+
+def _applied(node: tree.Expression, below: list[Result | None], shape: Shape) -> Result:
+    """Return the value of a node whose operands have theirs."""
+    operands = [operand for operand in below if operand is not None]
+    if isinstance(node, tree.Conditional):
+        condition, yes, no = operands
+        chosen = condition if isinstance(condition, Fault) else yes if condition.value else no
+        return real(chosen.value) if shape.real and isinstance(chosen, Value) else chosen
+    values = []
+    for operand in operands:
+        if isinstance(operand, Fault):
+            return operand
+        values.append(operand)
+    try:
+        if isinstance(node, tree.Binary):
+            return operators.binary(node.operator, values[0], values[1], shape)
+        if isinstance(node, tree.Unary):
+            return operators.unary(node.operator, values[0], shape)
+    except ZeroDivisionError:
+        return Fault("division by zero", node.at)
+    except OverflowError:
+        return Fault(TOO_LARGE, node.at)
+    return values[0]

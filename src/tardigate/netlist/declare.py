@@ -6,16 +6,30 @@ Takes a module's tree and the parameters that its instance overrides, gives its 
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
+from math import prod
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
 
-from tardigate.netlist.constants import NotConstantError, Value, evaluate, wrapped
+from tardigate.netlist.constants import NotConstantError, Value, evaluate, whole
 from tardigate.netlist.flat import CONSTANTS
 from tardigate.netlist.lookup import Lookup
-from tardigate.netlist.variables import DRIVEN, NO_DIRECTION, RANGED, SIGNED, WIRED, Variables
+from tardigate.netlist.parameters import parameter_values
+from tardigate.netlist.scopes import Scope
+from tardigate.netlist.variables import (
+    DRIVEN,
+    NO_DIRECTION,
+    RANGED,
+    REGISTER,
+    SIGNED,
+    WIRED,
+    Declared,
+    Shape,
+    Variables,
+)  # fmt: skip
 from tardigate.parts.kind import Way
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Related, did_you_mean
@@ -31,6 +45,8 @@ MOST_BITS = 1 << 25
 """Bits of all nets of one module."""
 
 WAYS = {"input": Way.INPUT, "output": Way.OUTPUT, "inout": Way.INOUT}
+_WORDS = {"integer": 32, "time": 64}
+_VARIABLES = ("integer", "time", "real", "realtime", "event")
 _WIRED = ("wand", "wor", "triand", "trior")
 _DRIVEN = ("supply0", "supply1", "tri0", "tri1")
 
@@ -42,6 +58,7 @@ class _Columns:
     name: list[NDArray[np.int32]] = field(default_factory=list)
     numbers: list[NDArray[np.int64]] = field(default_factory=list)
     place: list[NDArray[np.int64]] = field(default_factory=list)
+    arrays: dict[int, Shape] = field(default_factory=dict)
 
     def add(
         self, names: NDArray[np.int32], places: NDArray[np.int64], msb: int, lsb: int, way: int, flags: int
@@ -49,6 +66,20 @@ class _Columns:
         self.name.append(names)
         self.place.append(places)
         self.numbers.append(np.tile(np.array([msb, lsb, way, flags], np.int64), (len(names), 1)))
+
+
+class _Declared(NamedTuple):
+    """What a declaration makes of a name: range, bits, flags; the bounds of an array."""
+
+    msb: int
+    lsb: int
+    width: int
+    flags: int
+    array: Shape | None = None
+
+
+def _number(value: int) -> tree.Number:
+    return tree.Number(value, None, 0, 0, True, -1)
 
 
 class Declarer:
@@ -62,27 +93,23 @@ class Declarer:
 
     def parameters(self, module: tree.Module, overrides: Mapping[str, Value]) -> dict[str, Value]:
         """Return the values of all parameters; tells of one declared twice (N110) or not constant (N120)."""
-        values: dict[str, Value] = {}
         declared = [*module.parameters, *(item for item in module.items if isinstance(item, tree.Parameter))]
-        for declaration in declared:
-            for named in declaration.names:
-                if named.name in values:
-                    self._tell("N110", named.at, named.name)
-                    continue
-                value = self.constant(named.value, values) if named.value is not None else Value(0)
-                if not declaration.local and named.name in overrides:
-                    value = overrides[named.name]
-                if declaration.range is not None:
-                    bounds = self.range(declaration.range, values)
-                    if bounds is not None:
-                        value = wrapped(value.value, abs(bounds[0] - bounds[1]) + 1, False)
-                values[named.name] = value
-        return values
+        return parameter_values(declared, overrides, self)
 
-    def constant(self, expression: tree.Expression, values: Mapping[str, Value]) -> Value:
-        """Return a constant's value, 0 after telling that it is none (N120)."""
+    def twice_at(self, name: str, at: int, first: int) -> None:
+        """Tell of a name declared twice, at `first` and at `at` (N110)."""
+        self._tell("N110", at, name, first)
+
+    def twice(self, named: tree.Named) -> None:
+        """Tell of a parameter that is declared twice (N110)."""
+        self._tell("N110", named.at, named.name)
+
+    def constant(
+        self, expression: tree.Expression, values: Mapping[str, Value], width: int | None = 0
+    ) -> Value:
+        """Return a constant's value in a context of `width` bits, 0 after telling that it is none (N120)."""
         try:
-            return evaluate(expression, values)
+            return evaluate(expression, values, width)
         except NotConstantError as error:
             self.collector.tell("N120", self.text.span(error.at), reason=error.reason)
             return Value(0)
@@ -90,7 +117,8 @@ class Declarer:
     def range(self, bounds: tree.Range, values: Mapping[str, Value]) -> tuple[int, int] | None:
         """Return msb and lsb, or None after telling what is wrong with them (N120, N121)."""
         try:
-            msb, lsb = evaluate(bounds.msb, values).value, evaluate(bounds.lsb, values).value
+            msb = whole(evaluate(bounds.msb, values), bounds.msb.at)
+            lsb = whole(evaluate(bounds.lsb, values), bounds.lsb.at)
         except NotConstantError as error:
             self.collector.tell("N120", self.text.span(error.at), reason=error.reason)
             return None
@@ -101,30 +129,94 @@ class Declarer:
 
     # Nets (clause 4.2, 12.3)
 
-    def variables(self, module: tree.Module, values: Mapping[str, Value]) -> Variables:
-        """Return the declared nets of a module."""
-        columns = _Columns()
+    def variables(self, module: tree.Module, scopes: Sequence[Scope]) -> Variables:
+        """Return the declared nets of a module and its generate blocks."""
+        columns, values = _Columns(), scopes[0].values
         if not isinstance(module.ports, tree.PlainPorts):
             for port in module.ports:
                 if port.declaration is not None:
                     self._declaration(port.declaration, values, columns)
-        for item in module.items:
+        for item in scopes[0].items:
             if isinstance(item, tree.Run):
                 self._run(item, columns)
             elif isinstance(item, tree.Declaration):
                 self._declaration(item, values, columns)
-        return self._joined(columns, values)
+        variables = self._joined(columns, values)
+        if len(scopes) > 1:
+            self._in_blocks(scopes[1:], variables)
+        return variables
+
+    def _in_blocks(self, scopes: Sequence[Scope], variables: Variables) -> None:
+        """Declare the nets of generate blocks; tells of two of one name in a block (N110)."""
+        declared: list[Declared] = []
+        shapes: dict[int, Shape] = {}
+        bits = 0
+        for scope in scopes:
+            variables.prefixes.append(scope.prefix)
+            seen: dict[str, int] = {}
+            for item in scope.items:
+                if not isinstance(item, tree.Declaration):
+                    continue
+                for named in item.names:
+                    if named.name in seen:
+                        self._tell("N110", named.at, named.name, seen[named.name])
+                        continue
+                    seen[named.name] = named.at
+                    shape = self._shape(item, named, scope.values)
+                    if shape.array is not None:
+                        shapes[len(variables) + len(declared)] = shape.array
+                    declared.append(
+                        Declared(
+                            self.lookup.find(named.name), shape.msb, shape.lsb, shape.width, named.at,
+                            shape.flags, scope.number,
+                        )
+                    )  # fmt: skip
+                    bits += shape.width
+                    self._check_bits(bits, named.at)
+        variables.add(declared)
+        variables.arrays.update(shapes)
+
+    def _shape(self, item: tree.Declaration, named: tree.Named, values: Mapping[str, Value]) -> _Declared:
+        """Return the range and flags of one declared name; of an array its bounds and all its bits."""
+        ranges = (*named.dimensions, *((item.range,) if item.range is not None else ()))
+        if item.net_type in _WORDS and not ranges:
+            ranges = (tree.Range(_number(_WORDS[item.net_type] - 1), _number(0), named.at),)
+        found = [self.range(bounds, values) for bounds in ranges]
+        bounds = tuple(bound for bound in found if bound is not None)
+        flags = SIGNED * item.signed | WIRED * (item.net_type in _WIRED) | DRIVEN * (item.net_type in _DRIVEN)
+        flags |= REGISTER * (item.net_type == "reg" or item.net_type in _VARIABLES)
+        width = prod(abs(left - right) + 1 for left, right in bounds)
+        if width > WIDEST:
+            self.collector.tell("N121", self.text.span(named.at, named.at + len(named.name)), most=WIDEST)
+            bounds, width = (), 1
+        if len(bounds) > 1:
+            return _Declared(width - 1, 0, width, flags, Shape(bounds, len(named.dimensions)))
+        msb, lsb = bounds[0] if bounds else (0, 0)
+        return _Declared(msb, lsb, width, flags | RANGED * bool(bounds))
+
+    def _check_bits(self, bits: int, at: int) -> None:
+        if bits > MOST_BITS:
+            self.collector.tell("N124", self.text.span(at))
+            self.collector.refuse()
 
     def _declaration(
         self, declaration: tree.Declaration, values: Mapping[str, Value], columns: _Columns
     ) -> None:
-        bounds = self.range(declaration.range, values) if declaration.range is not None else None
-        flags = SIGNED * declaration.signed | WIRED * (declaration.net_type in _WIRED)
-        flags |= DRIVEN * (declaration.net_type in _DRIVEN) | RANGED * (bounds is not None)
-        names = np.array(self.lookup.find_all([n.name for n in declaration.names]), np.int32)
-        places = np.array([n.at for n in declaration.names], np.int64)
         way = WAYS.get(declaration.direction, NO_DIRECTION)
-        columns.add(names, places, *(bounds or (0, 0)), way, flags)
+        plain = [named for named in declaration.names if not named.dimensions]
+        if plain:
+            shape = self._shape(declaration, plain[0], values)
+            names = np.array(self.lookup.find_all([n.name for n in plain]), np.int32)
+            places = np.array([n.at for n in plain], np.int64)
+            columns.add(names, places, shape.msb, shape.lsb, way, shape.flags)
+        for named in declaration.names:
+            if named.dimensions:
+                shape = self._shape(declaration, named, values)
+                number = self.lookup.find(named.name)
+                if shape.array is not None:
+                    columns.arrays[number] = shape.array
+                one = np.array([number], np.int32), np.array([named.at], np.int64)
+                columns.add(*one, shape.msb, shape.lsb, way, shape.flags)
 
     def _run(self, run: tree.Run, columns: _Columns) -> None:
         plain = self.unit.plain
@@ -168,13 +260,13 @@ class Declarer:
         msb, lsb = numbers[head, 0].astype(np.int32), numbers[head, 1].astype(np.int32)
         width = np.abs(msb - lsb) + 1
         ends = np.cumsum(width, dtype=np.int64)
-        if len(ends) and ends[-1] > MOST_BITS:
-            self.collector.tell("N124", self.text.span(int(places[0])))
-            self.collector.refuse()
+        self._check_bits(int(ends[-1]) if len(ends) else 0, int(places[0]) if len(places) else 0)
         base = (CONSTANTS + ends - width).astype(np.int32)
         return Variables(
             self.unit.scan.names, self.text, names[head], base, msb, lsb, width, places[head], way,
             flags.astype(np.uint8), CONSTANTS + (int(ends[-1]) if len(ends) else 0),
+            np.zeros(len(head), np.int32),
+            arrays={int(variable[first[number]]): array for number, array in columns.arrays.items()},
         )  # fmt: skip
 
     def _tell_doubles(

@@ -1,7 +1,7 @@
-"""Delays written in the source: `#` values to femtoseconds (IEEE 1364-2005 clauses 7.14 and 19.8).
+"""Delays written in the source: values to femtoseconds (IEEE 1364-2005 clauses 7.14, 14.3 and 19.8).
 
-Takes a delay's tree and the `timescale` in force, gives a `SourceDelay`. Each value is rounded to the
-precision on its own, half away from zero.
+Takes a delay's tree and the `timescale` in force, gives a `SourceDelay`; of a module path's value a triple.
+Each value is rounded to the precision on its own, half away from zero.
 """
 
 from __future__ import annotations
@@ -10,7 +10,8 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from fractions import Fraction
 
-from tardigate.netlist.constants import NotConstantError, Value, evaluate
+from tardigate.netlist.constant_value import assigned, decimal
+from tardigate.netlist.constants import MAX, MIN, TYP, NotConstantError, Value, evaluate
 from tardigate.parts.source_delay import SourceDelay, Triple
 from tardigate.parts.units import LONGEST
 from tardigate.source.collector import Collector
@@ -28,7 +29,9 @@ NO_DELAY = SourceDelay(((0.0, 0.0, 0.0),), "#")
 class Delays:
     """The delays of one module; `unit` and `precision` in fs, None where no `timescale` is in force.
 
-    `assumed` counts the statements whose unit was assumed. Equal delays give the same object.
+    `assumed` counts the statements whose unit was assumed. Equal delays give the same object. `trees` are
+    the values, as written and in order, of names whose value may hang on a `min:typ:max`: specparams, and
+    the parameters that `triple_trees` finds. A name in both counts as in `trees`, but for its type.
     """
 
     text: PlacedText
@@ -38,6 +41,8 @@ class Delays:
     collector: Collector
     known: dict[tuple[Triple, ...], SourceDelay]
     assumed: int = 0
+    trees: Mapping[str, tree.Expression] = field(default_factory=dict)
+    _graded: tuple[Mapping[str, Value], ...] | None = None
     _read: dict[tuple[int | str | None, ...], SourceDelay | None] = field(default_factory=dict)
 
     def read(self, delay: tree.Delay | None, most: int) -> SourceDelay | None:
@@ -61,37 +66,42 @@ class Delays:
             return None
         return self.known.setdefault(values, SourceDelay(values, "#"))
 
+    def triple(self, value: tree.Expression) -> Triple | None:
+        """Return a value of a module path (clause 14.3) in fs; None after telling (N120, N151 to N153).
+
+        Counts as one statement for `assumed`.
+        """
+        if self.unit is None:
+            self.assumed += 1
+        return self._triple(value)
+
     def _triple(self, value: tree.Expression) -> Triple | None:
-        if not isinstance(value, tree.Triplet):
-            time = self._time(value)
-            return None if time is None else (time, time, time)
-        times = [self._time(part) for part in (value.minimum, value.typical, value.maximum)]
-        low, middle, high = times
-        if low is None or middle is None or high is None:
-            return None
-        if not low <= middle <= high:
+        simple = isinstance(value, tree.Number | tree.Decimal)
+        times: list[float] = []
+        for grade in (TYP,) if simple else (MIN, TYP, MAX):
+            time = self._time(value, grade)
+            if time is None:
+                return None
+            times.append(time)
+        low, middle, high = times * 3 if simple else times
+        if low > high:  # clause 7.14.1 asks for no order, but stirs must not come after settles
             self.collector.tell("N152", self.text.span(value.at))
             return None
         return (low, middle, high)
 
-    def _time(self, value: tree.Expression) -> float | None:
+    def _time(self, value: tree.Expression, grade: int) -> float | None:
         try:
-            number = (
-                _fraction(value.text)
-                if isinstance(value, tree.Decimal)
-                else Fraction(evaluate(value, self.values).value)
-            )
+            number = self._number(value, grade)
         except NotConstantError as error:
             self.collector.tell("N120", self.text.span(error.at), reason=error.reason)
             return None
-        except (ValueError, OverflowError):
+        except ValueError:
             self.collector.tell("N153", self.text.span(value.at))
             return None
-        unit = Fraction(ASSUMED_UNIT if self.unit is None else self.unit)
-        time = number * unit
         if number < 0:
             self.collector.tell("N151", self.text.span(value.at))
             return None
+        time = number * Fraction(ASSUMED_UNIT if self.unit is None else self.unit)
         if time > LONGEST:
             self.collector.tell("N153", self.text.span(value.at))
             return None
@@ -100,17 +110,37 @@ class Delays:
             time = (time / step + Fraction(1, 2)).__floor__() * step
         return float(time)
 
+    def _number(self, value: tree.Expression, grade: int) -> Fraction:
+        """Return a value in units. Raises NotConstantError, and ValueError for too many digits."""
+        if isinstance(value, tree.Triplet):
+            value = (value.minimum, value.typical, value.maximum)[grade]
+        if isinstance(value, tree.Decimal):
+            return decimal(value.text)
+        if self._graded is None or self._graded[0] is not self.values:  # another scope's turn
+            made = [graded_values(self.values, self.trees, each) for each in (MIN, TYP, MAX)]
+            self._graded = (self.values, *made)
+        return Fraction(evaluate(value, self._graded[1 + grade], grade=grade).value)
+
+
+def graded_values(
+    values: Mapping[str, Value], trees: Mapping[str, tree.Expression], grade: int
+) -> Mapping[str, Value]:
+    """Return values in which those of `trees` are of a grade. Raises NotConstantError.
+
+    One that has a value is converted to its width and sign: it was declared with a range or a type.
+    """
+    if not trees:
+        return values
+    found = dict(values)
+    for name, expression in trees.items():
+        value, before = evaluate(expression, found, grade=grade), values.get(name)
+        sized = before is not None and before.width is not None
+        found[name] = assigned(value, before.width, before.signed) if before is not None and sized else value
+    return found
+
 
 def _plain(value: tree.Expression) -> int | str | None:
     """Return what tells a delay that is a mere number apart from others, None for any other expression."""
     if isinstance(value, tree.Number) and not value.unknown | value.floating:
         return value.value
     return value.text if isinstance(value, tree.Decimal) else None
-
-
-def _fraction(text: str) -> Fraction:
-    """Return a decimal number exactly. Raises ValueError for one that no delay could be."""
-    mantissa, _, exponent = text.lower().partition("e")
-    if len(exponent) > 4 or len(text) > 4000:  # exact powers of ten beyond would fill the memory
-        raise ValueError(text[:40])
-    return Fraction(f"{mantissa}e{exponent or 0}")

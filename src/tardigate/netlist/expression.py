@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 
-from tardigate.netlist.constants import NotConstantError, evaluate
+from tardigate.netlist.constants import NotConstantError, evaluate, evaluate_whole, whole
 from tardigate.netlist.declare import WIDEST
 from tardigate.netlist.wiring import Wiring
 from tardigate.syntax import tree
@@ -135,7 +135,9 @@ class Expressions:
         if len(node.path) == 1 and node.path[0] in self.wiring.values:
             flat.constant[at] = True
             try:
-                flat.width[at] = evaluate(node, self.wiring.values).width or 32
+                value = evaluate(node, self.wiring.values)
+                whole(value, node.at)
+                flat.width[at] = value.width or 32
             except NotConstantError as error:
                 self.wiring.collector.tell("N120", self.wiring.span(error.at), reason=error.reason)
                 return False
@@ -153,7 +155,7 @@ class Expressions:
         times = 1
         if isinstance(node, tree.Replication):
             try:
-                times = evaluate(node.times, self.wiring.values).value
+                times = evaluate_whole(node.times, self.wiring.values)
             except NotConstantError as error:
                 self.wiring.collector.tell("N120", self.wiring.span(error.at), reason=error.reason)
                 return False
@@ -238,12 +240,13 @@ class Expressions:
         if isinstance(node, tree.Number):
             return _number_bits(node, flat.want[at])
         try:
-            value = evaluate(node, self.wiring.values)
+            value = evaluate(node, self.wiring.values, flat.want[at], flat.context_signed[at])
+            number = whole(value, node.at)
         except NotConstantError as error:
             self.wiring.collector.tell("N120", self.wiring.span(error.at), reason=error.reason)
             return []
         width = flat.want[at] if value.width is None else value.width
-        return [value.value >> i & 1 for i in range(width)]
+        return [number >> i & 1 for i in range(width)]
 
     def _is_wiring(self, node: tree.Binary | tree.Unary) -> bool:
         return node.operator in _SHIFTS if isinstance(node, tree.Binary) else node.operator == "+"
@@ -252,7 +255,7 @@ class Expressions:
         if isinstance(node, tree.Unary):
             return operand
         try:
-            by = evaluate(node.right, self.wiring.values).value
+            by = evaluate_whole(node.right, self.wiring.values)
         except NotConstantError as error:
             self.wiring.collector.tell("N141", self.wiring.span(error.at))
             return []

@@ -20,10 +20,10 @@ class InterfacePin(NamedTuple):
 
 
 class Interface:
-    """The pins of a part or module, in order."""
+    """The pins of a part or module, in order; open inputs are on the net `pulled`, where it is not None."""
 
-    def __init__(self, name: str, pins: Sequence[InterfacePin]) -> None:
-        self.name, self.pins = name, tuple(pins)
+    def __init__(self, name: str, pins: Sequence[InterfacePin], pulled: int | None = None) -> None:
+        self.name, self.pins, self.pulled = name, tuple(pins), pulled
         self._at = {pin.name: i for i, pin in enumerate(self.pins) if pin.name}
         self.bits = sum(pin.width for pin in self.pins)
         self.first_bit = [0]

@@ -6,11 +6,13 @@ and of a hierarchy that contains itself. Does not elaborate.
 
 from __future__ import annotations
 
+from bisect import bisect_right
 from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass, field
 
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Related, did_you_mean
+from tardigate.source.faults import InputRefusedError
 from tardigate.source.span import Span
 from tardigate.syntax.outline import ModuleText
 from tardigate.syntax.tree import Module
@@ -19,10 +21,17 @@ from tardigate.syntax.verilog_reader import Unit, parse_module
 
 @dataclass(slots=True)
 class Modules:
-    """The modules that may be elaborated; `bulk` says whether plain statements go past the grammar."""
+    """The modules that may be elaborated; `bulk` says whether plain statements go past the grammar.
+
+    `primitives` are the user-defined primitives, `cells` the modules that a part of a library looks like:
+    with a specify block, or between `celldefine` and `endcelldefine`.
+    """
 
     described: Callable[[str], bool]
     bulk: bool = True
+    primitives: dict[str, tuple[Unit, ModuleText]] = field(default_factory=dict)
+    cells: set[str] = field(default_factory=set)
+    _broken: set[str] = field(default_factory=set)
     _texts: dict[str, tuple[Unit, ModuleText]] = field(default_factory=dict)
     _trees: dict[str, Module] = field(default_factory=dict)
     _uses: dict[str, list[str]] = field(default_factory=dict)
@@ -56,6 +65,23 @@ class Modules:
             self._trees[name] = parse_module(*self._texts[name], bulk=self.bulk)
         return self._trees[name]
 
+    def readable(self, name: str, collector: Collector) -> bool:
+        """Tell whether a module can be parsed; the first time that it cannot, what is wrong is told."""
+        if name in self._broken:
+            return False
+        try:
+            self.tree(name)
+        except InputRefusedError as refused:
+            self._broken.add(name)
+            for diagnostic in refused.diagnostics:
+                collector.add(diagnostic)
+            return False
+        return True
+
+    def has_specify(self, name: str) -> bool:
+        """Tell whether a module has a specify block."""
+        return name in self._texts and name in self._texts[name][0].cells
+
     def uses(self, name: str) -> list[str]:
         """Return the modules, none of them a described part, that a module uses."""
         if name not in self._uses:
@@ -68,26 +94,42 @@ class Modules:
 def collect(
     units: Iterable[Unit], described: Callable[[str], bool], collector: Collector, bulk: bool
 ) -> Modules:
-    """Put the modules of all files together; tells of two with one name (N101) and of UDPs (V006)."""
+    """Put the modules of all files together; tells of doubles (N101) and of configurations (V006)."""
     modules = Modules(described, bulk)
     for unit in units:
+        marked = [offset for offset, is_cell in unit.source.cells if is_cell]
         for text in unit.modules:
             span = unit.text.span(text.at, text.at + max(1, len(text.name)))
-            if text.word != "module":
-                if not described(text.name):
-                    collector.tell("V006", span, word=text.word, name=text.name)
-            elif text.name in modules and not described(text.name):
-                first = Related(modules.span(text.name), "first one here")
-                collector.tell("N101", span, name=text.name, related=(first,))
-            elif text.name:
-                modules._texts[text.name] = (unit, text)
-            else:
+            known = modules._texts.get(text.name) or modules.primitives.get(text.name)
+            if text.word == "config":
+                collector.tell("V006", span, word=text.word, name=text.name)
+            elif not text.name:
                 collector.tell("V007", span)
+            elif known is not None and not described(text.name):
+                first = Related(
+                    known[0].text.span(known[1].at, known[1].at + len(text.name)), "first one here"
+                )
+                collector.tell("N101", span, name=text.name, related=(first,))
+            elif text.word == "primitive":
+                modules.primitives[text.name] = (unit, text)
+            else:
+                modules._texts[text.name] = (unit, text)
+                if text.name in unit.cells or (marked and _is_marked(unit, text.start)):
+                    modules.cells.add(text.name)
     return modules
 
 
+def _is_marked(unit: Unit, start: int) -> bool:
+    """Tell whether a module stands between `celldefine` and `endcelldefine`."""
+    at = bisect_right([offset for offset, _ in unit.source.cells], start) - 1
+    return at >= 0 and unit.source.cells[at][1]
+
+
 def find_top(modules: Modules, wanted: str | None, collector: Collector) -> str | None:
-    """Return the top module: the wanted one, or the only one that no other uses. Tells N102 to N105."""
+    """Return the top module: the wanted one, or the only one that no other uses. Tells N102 to N105.
+
+    A module that looks like a part of a library is the top only if nothing else could be.
+    """
     names = [name for name in modules.names() if not modules.described(name)]
     if wanted is not None:
         if wanted in names:
@@ -100,8 +142,9 @@ def find_top(modules: Modules, wanted: str | None, collector: Collector) -> str 
     if not names:
         collector.tell("N104")
         return None
-    used = {below for name in names for below in modules.uses(name)}
+    used = {below for name in names for below in modules.uses(name) if below != name}
     tops = [name for name in names if name not in used]
+    tops = [name for name in tops if name not in modules.cells] or tops
     if len(tops) == 1:
         return tops[0]
     if tops:

@@ -13,7 +13,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tardigate.netlist.flat import CONSTANT_NAMES, CONSTANTS
-from tardigate.netlist.variables import RANGED, Variables
+from tardigate.netlist.variables import RANGED, Shape, Variables
 from tardigate.syntax.intern import Interned
 
 
@@ -55,14 +55,11 @@ class NetNames(Column):
             return CONSTANT_NAMES[index]
         if index >= self._first_result:
             result = index - self._first_result
+            if result in variables.result_names:
+                return variables.result_names[result]
             return f"assign:{variables.text.span(variables.results[result]).line}.{result}"
         at = int(np.searchsorted(variables.base, np.int32(index), "right")) - 1  # of one type: no copy
-        name = variables.text_of(at)
-        if not variables.flags[at] & RANGED:
-            return name
-        msb, lsb = int(variables.msb[at]), int(variables.lsb[at])
-        step = 1 if msb >= lsb else -1
-        return f"{name}[{lsb + step * (index - int(variables.base[at]))}]"
+        return bit_name(variables, at, index - int(variables.base[at]))
 
     def positions(self, text: str) -> list[int]:
         """Return the local nets that are called `text`, or are bits of the vector that is."""
@@ -78,13 +75,41 @@ class NetNames(Column):
     def _bits_of(self, name: str, index: int | None) -> list[int]:
         variables = self._variables
         found: list[int] = []
-        for at in np.flatnonzero(variables.name == variables.names.find(name)).tolist():
+        for at in self._called(name):
             bits = variables.bits(at)
             if index is None:
                 found += bits
-            elif variables.flags[at] & RANGED:
+            elif variables.flags[at] & RANGED or at in variables.arrays:
                 found += [bit for bit in bits if self[bit].endswith(f"[{index}]")]
         return found
+
+    def _called(self, name: str) -> list[int]:
+        """Return the variables that are called so, those in blocks with the blocks' names."""
+        variables = self._variables
+        inner = name.rpartition(".")[2]
+        candidates = np.flatnonzero(variables.name == variables.names.find(inner)).tolist()
+        candidates += np.flatnonzero(variables.name == variables.names.find(name)).tolist() * (inner != name)
+        return [at for at in candidates if variables.text_of(at) == name]
+
+
+def bit_name(variables: Variables, variable: int, offset: int) -> str:
+    """Return the name of bit `offset` of a variable, counted from its least significant."""
+    name = variables.text_of(variable)
+    if variable in variables.arrays:
+        return name + element_name(variables.arrays[variable], offset)
+    if not variables.flags[variable] & RANGED:
+        return name
+    msb, lsb = int(variables.msb[variable]), int(variables.lsb[variable])
+    return f"{name}[{lsb + (offset if msb >= lsb else -offset)}]"
+
+
+def element_name(shape: Shape, offset: int) -> str:
+    """Return the indices of bit `offset` of an array, the leftmost dimension first."""
+    indices = []
+    for left, right in reversed(shape.bounds):
+        offset, place = divmod(offset, abs(left - right) + 1)
+        indices.append(right + place if left >= right else right - place)
+    return "".join(f"[{index}]" for index in reversed(indices))
 
 
 class InstanceNames(Column):

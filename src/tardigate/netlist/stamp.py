@@ -146,11 +146,32 @@ def _joined_nets(
         if doubled[template]:
             lost = owner[inside] != outside
             pairs += zip(owner[inside[lost]].tolist(), outside[lost].tolist(), strict=True)
+    pairs += _linked(templates, scopes, net_base, owner)
     if pairs:
         owner = _united(owner, pairs)
     own = owner == np.arange(len(owner))
     number = (np.cumsum(own) - 1).astype(np.int32)
     return number[owner], np.flatnonzero(own)
+
+
+def _linked(
+    templates: Sequence[Template], scopes: _Scopes, net_base: NDArray[np.int64], owner: NDArray[np.int64]
+) -> list[tuple[int, int]]:
+    """Return the pairs of nets that hierarchical names join across modules."""
+    linking = [scope for scope, template in enumerate(scopes.template) if templates[template].links]
+    if not linking:
+        return []
+    scope_of = {
+        (parent, scopes.name[scope]): scope for scope, parent in enumerate(scopes.parent) if parent >= 0
+    }
+    pairs = []
+    for scope in linking:
+        for link in templates[scopes.template[scope]].links:
+            inside = scope
+            for name in link.path:
+                inside = scope_of[inside, name]
+            pairs.append((int(owner[net_base[scope] + link.net]), int(owner[net_base[inside] + link.inside])))
+    return pairs
 
 
 def _united(owner: NDArray[np.int64], pairs: list[tuple[int, int]]) -> NDArray[np.int64]:

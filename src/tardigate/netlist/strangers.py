@@ -11,7 +11,7 @@ from dataclasses import dataclass, field
 import numpy as np
 from numpy.typing import NDArray
 
-from tardigate.netlist.elaborate import Strange
+from tardigate.netlist.items import Strange
 from tardigate.parts.kind import Way
 from tardigate.source.span import Span
 

@@ -40,6 +40,14 @@ class Child(NamedTuple):
     place: int
 
 
+class Link(NamedTuple):
+    """A local net that is one with a net of a module below: the children on the way, the net there."""
+
+    net: int
+    path: tuple[str, ...]
+    inside: int
+
+
 _NO_NETS = np.zeros(0, np.int32)
 
 
@@ -51,7 +59,7 @@ class Template(NamedTuple):
     design's kinds), `pin_start` int64[instances + 1] into `pin_net` int32 (OPEN -1), `inst_names` (an empty
     name for one that has none), `inst_place` int64. `parameters` is the canonical list, `N=4, W=8`.
     `wired`, `driven` int32: local nets that may have several drivers (`wand`, `tri`, …), and those that
-    need none (`supply0`, `tri1`, …).
+    need none (`supply0`, `tri1`, …). `links`: what hierarchical names join with nets below.
     """
 
     module: str
@@ -69,6 +77,7 @@ class Template(NamedTuple):
     children: tuple[Child, ...]
     wired: NDArray[np.int32] = _NO_NETS
     driven: NDArray[np.int32] = _NO_NETS
+    links: tuple[Link, ...] = ()
 
     @property
     def nets(self) -> int:

@@ -6,7 +6,9 @@ numbers; nets that nobody declared are added when a connection names them.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, field
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -18,8 +20,28 @@ from tardigate.syntax.intern import Interned
 NO_DIRECTION = 3
 """The way of a variable that is no port (others: `Way`)."""
 
-SIGNED, WIRED, DRIVEN, RANGED = 1, 2, 4, 8
-"""Flags: signed; a net type that may have several drivers; one that drives itself; declared with a range."""
+SIGNED, WIRED, DRIVEN, RANGED, REGISTER = 1, 2, 4, 8, 16
+"""Flags: signed; a net type that may have several drivers; one that drives itself; declared with a range; a
+variable (`reg`, `integer`) and no net."""
+
+
+class Shape(NamedTuple):
+    """An array: left and right bound of each of its `dimensions`, and last those of its elements' vector."""
+
+    bounds: tuple[tuple[int, int], ...]
+    dimensions: int
+
+
+class Declared(NamedTuple):
+    """One name as a generate block declares it, or one that a connection declares by use."""
+
+    name: int
+    msb: int
+    lsb: int
+    width: int
+    place: int
+    flags: int
+    scope: int
 
 
 @dataclass(slots=True)
@@ -29,7 +51,12 @@ class Variables:
     `name` int32 (number in `names`), `base` int32 (local net of bit `lsb`; bit `i` is `base + |i - lsb|`),
     `msb`, `lsb` int32, `width` int32, `place` int64 (offset of the first declaration), `way` uint8, `flags`
     uint8. `nets` counts all local nets so far; those after the variables are operators' results, whose
-    offsets are in `results`.
+    offsets are in `results`, and names in `result_names` where they are not called by their line.
+
+    The module's own variables come first; `scope` int32 is the generate block that the others stand in,
+    `scoped` finds those by scope and name, `prefixes` are what stands before their names. `arrays` has the
+    bounds of those that are arrays of vectors, or of several dimensions: element after element, the
+    rightmost index lowest.
     """
 
     names: Interned
@@ -43,37 +70,49 @@ class Variables:
     way: NDArray[np.uint8]
     flags: NDArray[np.uint8]
     nets: int
+    scope: NDArray[np.int32]
     results: list[int] = field(default_factory=list)
+    result_names: dict[int, str] = field(default_factory=dict)
+    prefixes: list[str] = field(default_factory=lambda: [""])
+    scoped: dict[tuple[int, int], int] = field(default_factory=dict)
+    arrays: dict[int, Shape] = field(default_factory=dict)
 
     def __len__(self) -> int:
         return len(self.name)
 
     def text_of(self, variable: int) -> str:
-        """Return a variable's name."""
-        return self.names.text(int(self.name[variable]))
+        """Return a variable's name, with the blocks it stands in."""
+        return self.prefixes[int(self.scope[variable])] + self.names.text(int(self.name[variable]))
 
     def bits(self, variable: int) -> list[int]:
         """Return the local nets of a variable, most significant bit first."""
         base = int(self.base[variable])
         return list(range(base + int(self.width[variable]) - 1, base - 1, -1))
 
-    def add_scalars(self, names: NDArray[np.int32], places: NDArray[np.int64]) -> None:
-        """Add undeclared nets, one bit each (implicit declarations, clause 4.5)."""
-        count = len(names)
+    def add(self, declared: Sequence[Declared]) -> None:
+        """Add names beyond the module's own declarations, in the order given."""
         if self.results:
             raise AssertionError("variables come before results")
-        self.name = np.concatenate((self.name, names))
-        self.base = np.concatenate((self.base, self.nets + np.arange(count, dtype=np.int32))).astype(np.int32)
-        zero, one = np.zeros(count, np.int32), np.ones(count, np.int32)
-        self.msb, self.lsb = np.concatenate((self.msb, zero)), np.concatenate((self.lsb, zero))
-        self.width = np.concatenate((self.width, one))
-        self.place = np.concatenate((self.place, places))
-        self.way = np.concatenate((self.way, np.full(count, NO_DIRECTION, np.uint8)))
-        self.flags = np.concatenate((self.flags, np.zeros(count, np.uint8)))
-        self.nets += count
+        before = len(self)
+        rows = np.array(declared, np.int64).reshape(-1, 7)
+        width = rows[:, 3]
+        base = self.nets + np.cumsum(width) - width
+        for column, added in (
+            ("name", rows[:, 0]), ("base", base), ("msb", rows[:, 1]), ("lsb", rows[:, 2]), ("width", width),
+            ("place", rows[:, 4]), ("way", np.full(len(rows), NO_DIRECTION)), ("flags", rows[:, 5]),
+            ("scope", rows[:, 6]),
+        ):  # fmt: skip
+            old = getattr(self, column)
+            setattr(self, column, np.concatenate((old, added.astype(old.dtype))))
+        self.nets += int(width.sum())
+        for at, one in enumerate(declared, before):
+            if one.scope:
+                self.scoped[one.scope, one.name] = at
 
-    def new_result(self, place: int) -> int:
-        """Return a new local net for the result of an operator at `place`."""
+    def new_result(self, place: int, name: str = "") -> int:
+        """Return a new local net for the result of an operator at `place`, or one of that name."""
+        if name:
+            self.result_names[len(self.results)] = name
         self.results.append(place)
         self.nets += 1
         return self.nets - 1

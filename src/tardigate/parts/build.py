@@ -12,12 +12,13 @@ from tardigate.parts.columns import columns, quantity, unit_known
 from tardigate.parts.desk import Desk
 from tardigate.parts.gates import BUFFERS, GATES, OPERATORS, THREE_STATE
 from tardigate.parts.model import Columns, Condition, Entry, Family, Part, Place, Wires
+from tardigate.parts.register_kind import REGISTER
 from tardigate.parts.units import CELSIUS, FEMTOFARADS, MICROMETRES, VOLTS, amount
 from tardigate.source.collector import Collector
 from tardigate.syntax import parts_tree as tree
 
 MOST_INPUTS = 1 << 20
-KNOWN = {"gates": GATES, "operators": OPERATORS}
+KNOWN = {"gates": tuple(GATES), "operators": (*OPERATORS, REGISTER)}
 
 
 def build_family(family: tree.Family, collector: Collector, broken: set[str]) -> Family:
@@ -123,7 +124,8 @@ def _entry(desk: Desk, form: str, entry: tree.Entry) -> tuple[str, int, int, Pla
             int(w.text) if w.text.isdigit() and len(w.text) < 9 else 0 for w in (entry.low, entry.high)
         )
         fixed = 1 if name in BUFFERS or name in ("~", "copy") else 2 if name in THREE_STATE else 0
-        if not 0 < low <= high <= MOST_INPUTS or (fixed and (low, high) != (fixed, fixed)):
+        fits = 0 < low <= high <= MOST_INPUTS and name != REGISTER
+        if not fits or (fixed and (low, high) != (fixed, fixed)):
             desk.tell("P023", entry.low, name=name)
             return None
         low, high = (0, 0) if fixed else (low, high)

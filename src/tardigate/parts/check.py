@@ -23,7 +23,7 @@ def check_families(families: Sequence[Family], broken: frozenset[str], collector
             if part.name not in broken:
                 check_part(part, has_default, collector)
     check_aliases(families, parts, collector)
-    check_equivalents(families, parts, collector)
+    check_equivalents(families, parts, broken, collector)
     for entries in (
         [entry for family in families for entry in family.gates],
         [entry for family in families for entry in family.operators],
@@ -62,8 +62,8 @@ def check_aliases(families: Iterable[Family], parts: Mapping[str, Part], collect
         while target in aliases and target not in parts and target not in chain:
             chain[target] = None
             target = aliases[target][0]
-        if target in parts or ringed.intersection(chain):
-            continue
+        if target in parts or ringed.intersection(chain) or (len(chain) > 1 and target not in chain):
+            continue  # fine, or told at the alias that names nothing
         if target in chain:
             ring = [*chain][[*chain].index(target) :]
             ringed.update(chain)
@@ -89,17 +89,27 @@ def resolve(names: Sequence[str], families: Iterable[Family], parts: Mapping[str
     return {name: part for name in names if (part := ends[name]) is not None}
 
 
-def check_equivalents(families: Sequence[Family], parts: Mapping[str, Part], collector: Collector) -> None:
-    """Tell equivalents that are not described, or whose pins are others than those of the first."""
+def check_equivalents(
+    families: Sequence[Family], parts: Mapping[str, Part], broken: frozenset[str], collector: Collector
+) -> None:
+    """Tell equivalents that are not described, or whose pins are others than those of the first.
+
+    Of a part in `broken` it is not known what pins it was meant to have.
+    """
+    aliases = {alias for family in families for alias in family.aliases}
     groups = [group for family in families for group in family.equivalents]
     known = resolve([name for group in groups for name, _ in group], families, parts)
     for group in groups:
         first: Part | None = None
         for name, place in group:
             part = known.get(name)
+            if part is None and name in aliases:
+                continue  # told there
             if part is None:
                 hint = did_you_mean(name, list(parts))
                 collector.tell("P016", place.span(), hint=hint, what="`equivalent`", name=name)
+                continue
+            if part.name in broken:
                 continue
             first = first or part
             if _shape(part) != _shape(first):

@@ -14,6 +14,7 @@ from typing import NamedTuple
 from tardigate.parts.draft_guess import Guess, guessed
 from tardigate.parts.gates import BUFFERS, THREE_STATE
 from tardigate.parts.kind import Kind, Way
+from tardigate.parts.register_kind import REGISTER
 from tardigate.syntax.parts_reader import reserved_words
 
 PLAIN = ("tPLH", "tPHL")
@@ -77,6 +78,8 @@ def _gate_entry(kind: Kind) -> tuple[str, int, bool]:
 
 
 def _operator_entry(kind: Kind) -> tuple[str, int, bool]:
+    if kind.name == REGISTER:
+        return (f'"{REGISTER}"', 0, False)
     name = kind.name.removeprefix("assign").strip() or "copy"
     inputs = len(kind.pins) - 1
     return (f'"{name}"' if inputs == 1 else f'"{name}"({inputs})', inputs, False)

@@ -6,8 +6,10 @@ number.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from tardigate.parts.kind import Edge, Kind
-from tardigate.parts.model import Columns, Part
+from tardigate.parts.model import Check, Columns, Part
 from tardigate.parts.source_delay import Triple
 from tardigate.parts.units import FEMTOSECONDS
 
@@ -59,13 +61,21 @@ def dump_part(part: Part) -> str:
             arrow = f"{names[tail]}{edge} {row.polarity}=> {names[head]} when {row.when}"
             lines.append(f"  {row.symbol} {arrow} {_columns(row.columns)}")
     for check in part.checks:
-        ends = " ".join(names[bit] for bit in check.bits)
-        reference = names[check.reference] if check.reference >= 0 else check.level
-        lines.append(f"  {check.symbol} {ends} {reference} {_columns(check.columns)}")
+        lines.append(f"  {_check(check, names)} {_columns(check.columns)}")
     for load in part.loads:
         ends = " ".join(names[bit] for bit in load.bits)
         lines.append(f"  load {ends} {load.rated:g} fF {_columns(load.more)}")
     return "\n".join(lines)
+
+
+def _check(check: Check, names: Sequence[str]) -> str:
+    words = [check.symbol, *(names[bit] for bit in check.bits)]
+    words += [EDGES[check.edge]] if check.edge is not None else []
+    words += [f"at {names[check.reference]}"] if check.reference >= 0 else []
+    words += [EDGES[check.reference_edge]] if check.reference_edge is not None else []
+    words += [check.level] if check.level else []
+    words += [f"when {check.when}"] if check.when >= 0 else []
+    return " ".join(words)
 
 
 def _columns(columns: Columns) -> str:

@@ -50,6 +50,9 @@ ONE_INPUT: Mapping[str, int] = {
 }  # fmt: skip
 """Polarity of what is both ways for several inputs, with one."""
 
+NET, THREE_STATE_NET = "wire", "wire z"
+"""Operators that stand for a delay of a net (clause 7.14), the second where its drivers may let go of it."""
+
 OPPOSITE = {Edge.RISE: Edge.FALL, Edge.FALL: Edge.RISE}
 
 
@@ -98,6 +101,8 @@ def gate(name: str, inputs: int, outputs: int, delay_of: DelayOf) -> Kind:
 
 def operator(name: str, inputs: int, delay_of: DelayOf) -> Kind:
     """Make the kind of an operator: pins `out`, `in1`, ... Raises KeyError for an unknown operator."""
+    if name in (NET, THREE_STATE_NET):
+        return _net(name == THREE_STATE_NET, delay_of)
     polarity = ONE_INPUT.get(name, OPERATORS[name]) if inputs == 1 else OPERATORS[name]
     hops = []
     for tail in range(1, inputs + 1):
@@ -106,6 +111,21 @@ def operator(name: str, inputs: int, delay_of: DelayOf) -> Kind:
     ways = [Way.OUTPUT] + [Way.INPUT] * inputs
     pins = ["out", *(f"in{i + 1}" for i in range(inputs))]
     return make_kind("assign" if name == "copy" else f"assign {name}", "operator", pins, ways, hops)
+
+
+def _net(lets_go: bool, delay_of: DelayOf) -> Kind:
+    """Make the kind of a delay of a net: pins `out`, `in`.
+
+    Where its drivers may let go of the net, a change may as well be one to z, with the turn-off delay; hops
+    of both delays stand side by side where they differ.
+    """
+    hops = hops_between(1, 0, POSITIVE, delay_of)
+    if lets_go:
+        off = {"LH": delay_of("LZ"), "HL": delay_of("HZ")}
+        known = {(hop.tail_edge, hop.delay.triple) for hop in hops}
+        others = hops_between(1, 0, POSITIVE, off.__getitem__)
+        hops += [hop for hop in others if (hop.tail_edge, hop.delay.triple) not in known]
+    return make_kind(NET, "operator", ("out", "in"), [Way.OUTPUT, Way.INPUT], hops)
 
 
 def source_delays(delay: SourceDelay) -> DelayOf:

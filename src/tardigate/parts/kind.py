@@ -12,6 +12,8 @@ from typing import NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
+from tardigate.parts.source_delay import SourceDelay
+
 
 class Edge(IntEnum):
     """Direction of a change: the low bit of a vertex number."""
@@ -54,6 +56,10 @@ class Kind(NamedTuple):
     Of a kind without delays (origin `MISSING`) they say what is missing, where that is known.
     `three_state`: outputs that can let go of their net (several may drive one net). `unknown_function`: an
     output lets both edges pass both ways because nothing says what it does.
+
+    What an instance needs to be written again: `source`, the delay in the source that made the kind;
+    `control_sources`, those of a register's asynchronous controls, in order of their pins; `parameters`, the
+    values of a part's parameters that are known, in declared order.
     """
 
     name: str
@@ -72,6 +78,9 @@ class Kind(NamedTuple):
     register: bool = False
     three_state: bool = False
     unknown_function: bool = False
+    source: SourceDelay | None = None
+    parameters: tuple[tuple[str, int], ...] = ()
+    control_sources: tuple[SourceDelay | None, ...] = ()
 
     @property
     def inputs(self) -> int:

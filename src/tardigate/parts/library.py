@@ -12,10 +12,11 @@ from tardigate.parts import gates
 from tardigate.parts.build import build_family
 from tardigate.parts.by_kind import ByKind, Choice
 from tardigate.parts.check import check_families, choose_condition, resolve
-from tardigate.parts.kind import Kind, Origin
+from tardigate.parts.kind import Edge, Kind, Origin
 from tardigate.parts.kind_maker import Delay
 from tardigate.parts.model import Family, Part, Pin
 from tardigate.parts.part_kind import part_kind
+from tardigate.parts.register_kind import REGISTER, Control, register_kind
 from tardigate.parts.source_delay import SourceDelay
 from tardigate.source.collector import Collector
 from tardigate.source.files import SourceFile
@@ -103,7 +104,8 @@ class Library:
         key = ("part", part.name, *chosen.items())
         if key not in self._kinds:
             column, condition = self._column[part.name], self._condition[part.name]
-            self._kinds[key] = part_kind(part, column, chosen, self._choice, condition)
+            made = part_kind(part, column, chosen, self._choice, condition)
+            self._kinds[key] = made._replace(parameters=tuple(chosen.items()))
         return self._kinds[key]
 
     def gate_kind(self, gate: str, inputs: int, outputs: int = 1, delay: SourceDelay | None = None) -> Kind:
@@ -117,7 +119,7 @@ class Library:
             delay_of = (
                 gates.source_delays(delay) if delay else self._delay_of(self._choice.gates, gate, inputs)
             )
-            self._kinds[key] = gates.gate(gate, inputs, outputs, delay_of)
+            self._kinds[key] = gates.gate(gate, inputs, outputs, delay_of)._replace(source=delay)
         return self._kinds[key]
 
     def operator_kind(self, operator: str, inputs: int, delay: SourceDelay | None = None) -> Kind:
@@ -129,7 +131,34 @@ class Library:
         if key not in self._kinds:
             table = self._choice.operators
             delay_of = gates.source_delays(delay) if delay else self._delay_of(table, operator, inputs)
-            self._kinds[key] = gates.operator(operator, inputs, delay_of)
+            self._kinds[key] = gates.operator(operator, inputs, delay_of)._replace(source=delay)
+        return self._kinds[key]
+
+    def cell_kind(self, part: Part, delay: SourceDelay | None = None) -> Kind:
+        """Return the kind of a part that stands in the source, a cell or a primitive with `delay` behind `#`.
+
+        What its rows do not time takes the default of the parts files.
+        """
+        key = ("cell", part.name, id(part), _hashable(delay))
+        if key not in self._kinds:
+            self._kinds[key] = part_kind(part, 0, {}, self._choice, delay=delay)._replace(source=delay)
+        return self._kinds[key]
+
+    def register_kind(
+        self, edge: Edge, controls: Sequence[Control], data: int, delay: SourceDelay | None = None
+    ) -> Kind:
+        """Return the kind of a register that an `always` makes; see `register_kind` for its pins.
+
+        Delays written in the source come first, then the operators' entry `"register"`, then a default.
+        """
+        of_controls = tuple((c.level, c.sets, _hashable(c.delay)) for c in controls)
+        key = (REGISTER, edge, of_controls, data, _hashable(delay))
+        if key not in self._kinds:
+            delay_of = self._delay_of(self._choice.operators, REGISTER, 0)
+            made = register_kind(edge, controls, data, delay, delay_of)
+            self._kinds[key] = made._replace(
+                source=delay, control_sources=tuple(control.delay for control in controls)
+            )
         return self._kinds[key]
 
     def _delay_of(self, table: ByKind, name: str, inputs: int) -> gates.DelayOf:

@@ -14,6 +14,7 @@ from tardigate.parts.function import Network
 from tardigate.parts.kind import Edge, Way
 from tardigate.parts.source_delay import Triple
 from tardigate.source.files import SourceFile
+from tardigate.source.placed import PlacedText
 from tardigate.source.span import Span
 
 SYMBOLS: Mapping[str, str] = {
@@ -28,7 +29,7 @@ Columns = tuple[Triple, ...]
 class Place(NamedTuple):
     """Where something is written; made into a span only when it is told."""
 
-    file: SourceFile
+    file: SourceFile | PlacedText
     start: int
     stop: int
 

@@ -1,7 +1,7 @@
 """A part under one condition and with its parameters' values as a kind.
 
-Takes a part, gives its `Kind`: hops from its rows, where there is no row from the default, else of unknown
-numbers. Does not tell anything.
+Takes a part, gives its `Kind`: hops from its rows, or if it has none from a delay in the source, else from
+the default, else of unknown numbers. Does not tell anything.
 """
 
 from __future__ import annotations
@@ -10,11 +10,13 @@ from collections.abc import Mapping
 
 from tardigate.parts.by_kind import Choice
 from tardigate.parts.function import Values
+from tardigate.parts.gates import NO_DELAY, DelayOf, source_delays
 from tardigate.parts.kind import Kind, Origin
 from tardigate.parts.kind_maker import MISSING, UNKNOWN, Delay, KindHop, given, make_kind
 from tardigate.parts.match import Matched, match
 from tardigate.parts.model import SYMBOLS, Part
 from tardigate.parts.needs import NOBODY, Need, function_of, sink_bits
+from tardigate.parts.source_delay import SourceDelay
 
 
 def parameter_values(part: Part, chosen: Mapping[str, int]) -> Values:
@@ -31,24 +33,46 @@ def parameter_values(part: Part, chosen: Mapping[str, int]) -> Values:
 
 
 def part_kind(
-    part: Part, column: int, parameters: Mapping[str, int], choice: Choice, condition: str = ""
+    part: Part,
+    column: int,
+    parameters: Mapping[str, int],
+    choice: Choice,
+    condition: str = "",
+    *,
+    delay: SourceDelay | None = None,
+    wired: bool = False,
 ) -> Kind:
-    """Make the kind of a part under the condition of `column`, whose name is `condition`."""
+    """Make the kind of a part under the condition of `column`, whose name is `condition`.
+
+    Only a part without rows takes a `delay` that stands in the source at its instance (IEEE 1364-2005, 7.14
+    and 8.6: rise and fall of the output), or, `wired`, none at all as an assignment without operator.
+    """
     values = parameter_values(part, parameters)
     matched = match(part, values)
     pins = [bit for pin in part.pins for bit in pin.bits]
     words = _missing_words(part, matched, column, condition)
+    own = _delay_without_rows(part, delay, wired)
     hops = [
         _hop(need, Delay(row.columns[column], Origin.PARTS, str(part.place)), choice, words)
         for need, row in matched.timed
     ]
-    hops += [_hop(need, MISSING, choice, words) for need in matched.missing]
+    hops += [_hop(need, own(need.transition), choice, words) for need in matched.missing]
     ways = [pin.way for pin in part.pins for _ in range(pin.width)]
     lets_go = bool(part.enables) or any("Z" in row.transitions[0] for row in part.rows)
-    return make_kind(
+    kind = make_kind(
         part.name, "part", pins, ways, hops, sinks=sink_bits(part, values), register=bool(part.registers),
         three_state=lets_go, words=str(part.place), unknown_function=_unspoken(part, matched),
     )  # fmt: skip
+    return kind._replace(source=None if part.rows else delay)
+
+
+def _delay_without_rows(part: Part, delay: SourceDelay | None, wired: bool) -> DelayOf:
+    """Return the delays that stand in for rows."""
+    if delay is not None and not part.rows:
+        return source_delays(delay)
+    if wired and not part.rows:
+        return lambda _transition: NO_DELAY
+    return lambda _transition: MISSING
 
 
 def _hop(need: Need, own: Delay, choice: Choice, words: str) -> KindHop:

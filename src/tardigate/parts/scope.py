@@ -45,6 +45,7 @@ class Scope:
         self.signals: dict[str, Signal] = {}
         self.bit_names: list[str] = []
         self.parameter_bits = 0
+        self._missed: set[str] = set()
 
     def declare(self, way: str, name: Word, written: Range | None) -> Signal | None:
         """Add a name; None when it is refused (declared twice, too wide)."""
@@ -52,6 +53,7 @@ class Scope:
         width = abs(msb - lsb) + 1
         if width > WIDEST:
             self.desk.tell("P027", name, name=name.text, width=width, widest=WIDEST)
+            self._missed.add(name.text)
             return None
         if name.text in self.signals:
             first = ((self.signals[name.text].place, "the first one"),)
@@ -70,9 +72,10 @@ class Scope:
         return signal
 
     def find(self, name: Word) -> Signal | None:
-        """Return what a name stands for; tell it if there is no such name."""
+        """Return what a name stands for; tell it if there is no such name, once for all uses in the part."""
         signal = self.signals.get(name.text)
-        if signal is None:
+        if signal is None and name.text not in self._missed:
+            self._missed.add(name.text)
             self.desk.tell("P004", name, name=name.text, known=self.signals, part=self.part)
         return signal
 

@@ -18,15 +18,23 @@ TAB = 4
 """Cells between tab stops in a source line that is shown."""
 
 
-def diagnostic_lines(diagnostics: Sequence[Diagnostic], look: Look, most: int | None = None) -> list[Text]:
-    """Return the lines of the first `most` diagnostics (all for None), then a line that counts them all."""
+def diagnostic_lines(
+    diagnostics: Sequence[Diagnostic],
+    look: Look,
+    most: int | None = None,
+    elsewhere: str = "`tardigate survey` shows",
+) -> list[Text]:
+    """Return the lines of the first `most` diagnostics (all for None), then a line that counts them all.
+
+    `elsewhere` says what lists those that are left out.
+    """
     shown = diagnostics if most is None else diagnostics[:most]
     lines: list[Text] = []
     for diagnostic in shown:
         lines += [*_diagnostic(diagnostic, look), Text()]
     left = len(diagnostics) - len(shown)
     if left:
-        lines += [Text(f"and {left} more, which `tardigate survey` shows", STYLES["quiet"]), Text()]
+        lines += [Text(f"and {left} more, which {elsewhere}", STYLES["quiet"]), Text()]
     return lines + (_count_line(diagnostics, look) if diagnostics else [])
 
 

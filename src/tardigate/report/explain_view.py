@@ -26,7 +26,7 @@ def explain_view(entry: Entry, look: Look) -> list[Text]:
     for paragraph in re.split(r"\n\s*\n", entry.text):
         lines += [*wrap(Text(" ".join(paragraph.split())), look.width), Text()]
     if entry.hint:
-        lines += [*wrap(Text(f"hint: {entry.hint}", STYLES["hint"]), look.width, 6), Text()]
+        lines += [*wrap(Text(f"hint: {headline(entry.hint, look)}", STYLES["hint"]), look.width, 6), Text()]
     for words, sample in (("faulty", entry.faulty), ("mended", entry.mended)):
         if sample:
             lines += _sample(words, sample, look)

@@ -182,7 +182,15 @@ def _hop(hop: HopRecord | FoldRecord) -> Object:
 def _place(span: Span | None) -> Object | None:
     if span is None:
         return None
-    return {"file": span.path, "line": span.line, "column": span.column, "length": span.length}
+    return {
+        "file": span.path,
+        "line": span.line,
+        "column": span.column,
+        "end_column": span.end_column,
+        "length": span.length,
+        "byte_offset": span.start,
+        "byte_length": span.stop - span.start,
+    }
 
 
 def _diagnostic(diagnostic: Diagnostic) -> Object:

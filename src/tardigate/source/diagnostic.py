@@ -51,6 +51,8 @@ class Diagnostic:
         severity: Severity = "warning" if entry.severity == "warning" else "error"
         shown = {key: printable(value) for key, value in words.items()}
         message = entry.headline.format_map(shown)
+        if span is not None and span.via:
+            related += tuple(Related(place, label) for place, label in span.via)
         return cls(
             code, severity, message, span, entry.hint.format_map(shown) if hint is None else hint, related
         )

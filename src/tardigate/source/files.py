@@ -15,6 +15,11 @@ from tardigate.source.span import Span, span_in
 LARGEST_FILE = 1 << 30
 """Bytes; offsets are kept in 32 bits further on."""
 
+LOOKED_AT = 4096
+"""Bytes that tell whether a file is a text."""
+
+_CONTROL = bytes(byte for byte in range(32) if byte not in b"\t\n\v\f\r")
+
 
 class SourceFile(NamedTuple):
     """One file: its path as the user wrote it, and its bytes."""
@@ -30,13 +35,27 @@ class SourceFile(NamedTuple):
 def read_file(path: str | Path, asked_at: Span | None = None) -> SourceFile:
     """Read a file; `asked_at` is the place that asks for it, where one does.
 
-    Raises InputRefusedError (U101: cannot be read, U102: too large).
+    Raises InputRefusedError (U101: cannot be read, U102: too large, U110: no text).
     """
     try:
         size = Path(path).stat().st_size
         if size > LARGEST_FILE:
             raise InputRefusedError((Diagnostic.of("U102", asked_at, path=str(path), size=size),))
-        return SourceFile(str(path), Path(path).read_bytes())
+        data = Path(path).read_bytes()
     except (OSError, ValueError) as error:
         reason = getattr(error, "strerror", None) or str(error)
         raise InputRefusedError((Diagnostic.of("U101", asked_at, path=str(path), reason=reason),)) from None
+    foreign = no_text(data)
+    if foreign:
+        raise InputRefusedError((Diagnostic.of("U110", asked_at, path=str(path), reason=foreign),))
+    return SourceFile(str(path), data)
+
+
+def no_text(data: bytes) -> str:
+    """Return why some bytes are no text of one byte a character; empty when they may be one."""
+    if data[:2] in (b"\xff\xfe", b"\xfe\xff"):
+        return "it is UTF-16"
+    begin = data[:LOOKED_AT]
+    odd = len(begin) - len(begin.translate(None, _CONTROL))
+    many = odd > 4 + len(begin) // 20
+    return f"{odd} of its first {len(begin)} bytes are control characters" if many else ""

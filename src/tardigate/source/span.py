@@ -12,11 +12,16 @@ SNIPPET = 320
 
 
 class Span(NamedTuple):
-    """A piece of one line of a file.
+    """A piece of a file; what is shown of it is its first line.
 
-    `line` and `column` count from 1, `column` in characters (a tab is one); `length` is the number of
-    characters on that line; `snippet` is the line, or the part of a long one that begins at column
-    `snippet_column`. `start` and `stop` are byte offsets into the file, `stop` past the end.
+    `line` and `column` count from 1, `column` in characters of the text (Unicode scalar values; a tab, a wide
+    character and a combining mark are one each; bytes that are no UTF-8 are one for each run that a decoder
+    replaces). `length` is the number of characters on that line, at least 1, so that `end_column` is the
+    column past the last of them on the same line (a region in the sense of SARIF 2.1.0, 3.30, with columns
+    of kind `unicodeCodePoints`). `start` and `stop` are byte offsets into the file from 0, `stop` past the
+    end, and may reach beyond the first line. `snippet` is the line, or the part of a long one that begins at
+    column `snippet_column`. `via` are the places that led there, with what they are: a macro's definition
+    behind its use, an `include` of the file.
     """
 
     path: str
@@ -27,6 +32,12 @@ class Span(NamedTuple):
     snippet_column: int
     start: int
     stop: int
+    via: tuple[tuple[Span, str], ...] = ()
+
+    @property
+    def end_column(self) -> int:
+        """The column past the last character, on the same line."""
+        return self.column + self.length
 
     def __str__(self) -> str:
         return f"{self.path}:{self.line}:{self.column}"
@@ -60,5 +71,4 @@ def span_in(path: str, data: bytes, start: int, stop: int) -> Span:
     text = data[line_start : min(line_stop, start + 4 * SNIPPET)].decode("utf-8", "replace").rstrip("\r")
     first = 0 if column <= SNIPPET - 40 else column - SNIPPET // 2
     snippet = text[first : first + SNIPPET]
-    length = max(1, min(len(inside), SNIPPET))
-    return Span(path, line, column, length, snippet, first + 1, start, stop)
+    return Span(path, line, column, max(1, len(inside)), snippet, first + 1, start, stop)

@@ -143,6 +143,7 @@ class Directives:
             self._run.voice.tell("V108", frame, macro.defined, name=as_text(macro.name))
         else:
             self._run.macros[macro.name] = macro
+            self._run.sink.traces.define(self._run.sink.length, macro.name, macro.defined)
         return definition.end
 
     def _undef(self, frame: Frame, mark: int, end: int) -> int:

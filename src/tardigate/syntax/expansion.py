@@ -11,6 +11,7 @@ from typing import Any
 
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import did_you_mean
+from tardigate.source.traces import Traces
 from tardigate.syntax.frames import Budget, Call, Frame, Voice, as_text
 from tardigate.syntax.macros import ARGUMENT, Macro, arguments_begin, read_arguments, trim
 from tardigate.syntax.marks import NAME, blank_line_comments, comment_end, late, line_end, plain_name
@@ -31,7 +32,7 @@ class Run:
     def __init__(self, macros: dict[bytes, Macro], collector: Collector, size: int) -> None:
         self.macros = macros
         self.handlers: Mapping[bytes, Handler] = {}
-        self.sink = PlacingSink()
+        self.sink = PlacingSink(Traces(dict(macros)))
         self.stack: list[Frame] = []
         self.voice = Voice(collector)
         self.budget = Budget(self.voice, size)

@@ -37,6 +37,7 @@ class ExpressionMaker:
     ) -> None:
         """Prepare for a text: `where` maps its offsets to the placed text's."""
         self._where, self._runs, self._plain_ports = where, runs, ports
+        self._generated: list[tree.Run] = []
 
     def _at(self, token: Token) -> int:
         return self._where(token.start_pos or 0)

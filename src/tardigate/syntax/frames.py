@@ -104,6 +104,8 @@ class Voice:
                 Related(owner.defined.span(), f"`{as_text(owner.name)}` is defined here")
                 for owner in owners.values()
             )
+            if frame.file is not None and frame.use.file is not frame.file:
+                related = (*related, Related(frame.use.span(), "included from here"))
             if begun:
                 related = (Related(begun.span(), "begins here"), *related)
             self._last[code] = Diagnostic.of(code, use.span(), hint=hint, related=related, **words)

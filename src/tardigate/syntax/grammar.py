@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import os
 import sys
+from functools import cached_property
 from importlib.util import find_spec
 from typing import TYPE_CHECKING, Any
 
@@ -17,7 +18,9 @@ from tardigate.syntax import grammar_cache
 if TYPE_CHECKING:
     from lark import Lark
 
-FORM = 1
+    from tardigate.syntax.recovery import Scout
+
+FORM = 2
 """Raised whenever `grammar_tables` writes something else for the same grammar."""
 
 
@@ -25,7 +28,7 @@ class Reader:
     """A language's grammar bound to a maker: `read` gives what the maker makes of the rule `start`.
 
     Tables run without lark (importing it takes longer than reading a usual file); lark builds them when they
-    are not kept from a run before, and tells what is wrong with a text that they do not accept.
+    are not kept from a run before.
     """
 
     def __init__(self, name: str, maker: object) -> None:
@@ -75,16 +78,17 @@ class Reader:
         return True
 
     def read(self, text: str) -> Any:
-        """Return what the maker makes of a text. Raises lark's UnexpectedInput when it is refused."""
-        from tardigate.syntax.lalr import NotInGrammarError
+        """Return what the maker makes of a text. Raises NotInGrammarError when it is refused."""
+        assert self._machine is not None
+        return self._machine.run(text)
+
+    @cached_property
+    def scout(self) -> Scout:
+        """The same tables, for telling what is wrong with a text that they refuse."""
+        from tardigate.syntax.recovery import Scout
 
         assert self._machine is not None
-        try:
-            return self._machine.run(text)
-        except NotInGrammarError:
-            pass
-        self.lark.parse(text)
-        raise InternalFaultError("lark accepts a text that the tables made from its parser do not")
+        return Scout(self._machine.tables)
 
 
 def _key(text: str) -> str:

@@ -63,6 +63,7 @@ class Inclusion:
                 for diagnostic in refused.diagnostics:
                     self._run.voice.collector.add(diagnostic)
                 return
+        self._run.sink.traces.include(self._run.sink.length, file.path, use)
         self._run.stack.append(Frame(file.data, frame.sink, file, use))
 
 

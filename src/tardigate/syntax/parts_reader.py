@@ -14,10 +14,14 @@ from tardigate.source.files import SourceFile
 from tardigate.source.placed import PlacedText
 from tardigate.syntax import parts_tree as tree
 from tardigate.syntax.grammar import Reader
+from tardigate.syntax.lalr import NotInGrammarError
 from tardigate.syntax.parts_tree import Expr, PinDecl, PinRef, Word
 
 SYNTAX = "P001"
 """The code of text that the grammar does not know."""
+
+MOST = 10
+"""Faults of one file that are told; the last one counts the others."""
 
 BYTE_ORDER_MARK = b"\xef\xbb\xbf"
 """What some editors write before a text in UTF-8."""
@@ -31,12 +35,13 @@ def read_families(file: SourceFile, collector: Collector) -> tuple[tree.Family, 
         text = " " * len(BYTE_ORDER_MARK) + text[len(BYTE_ORDER_MARK) :]
     try:
         families: list[tree.Family] = reader.read(text)
-    except Exception as error:
-        from tardigate.syntax.lark_errors import explain  # only on the way to a refusal
-        from tardigate.syntax.parts_advice import FRIENDLY, advise
+    except NotInGrammarError:
+        from tardigate.syntax.parts_advice import FRIENDLY, LANGUAGE, advise  # only on the way to a refusal
+        from tardigate.syntax.trouble import explain_all
 
         placed = PlacedText.whole(file, text.encode("latin-1"))
-        collector.add(explain(error, reader.lark, placed, SYNTAX, friendly=FRIENDLY, advise=advise))
+        for told in explain_all(reader.scout, placed, LANGUAGE, SYNTAX, FRIENDLY, advise, MOST):
+            collector.add(told)
         return None
     return tuple(family._replace(file=file) for family in families)
 

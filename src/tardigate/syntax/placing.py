@@ -11,6 +11,7 @@ from typing import Generic, NamedTuple, TypeVar
 from tardigate.source.files import SourceFile
 from tardigate.source.placed import Piece, PlacedText
 from tardigate.source.span import Span
+from tardigate.source.traces import Traces
 from tardigate.syntax.marks import blank
 
 T = TypeVar("T")
@@ -63,10 +64,11 @@ class Sink:
 class PlacingSink(Sink):
     """Keeps the text of a whole run, with the pieces that tell where each byte was written."""
 
-    __slots__ = ("_file", "_lead", "_pieces", "length")
+    __slots__ = ("_file", "_lead", "_pieces", "length", "traces")
 
-    def __init__(self) -> None:
+    def __init__(self, traces: Traces) -> None:
         super().__init__()
+        self.traces = traces
         self._pieces: list[Piece] = []
         self._file: SourceFile | None = None
         self._lead = 0
@@ -98,7 +100,7 @@ class PlacingSink(Sink):
 
     def placed(self, file: SourceFile) -> PlacedText:
         """Return the text, the very bytes of `file` when nothing was changed."""
-        return PlacedText(self.text(), tuple(self._pieces) or (Piece(0, file, 0),))
+        return PlacedText(self.text(), tuple(self._pieces) or (Piece(0, file, 0),), self.traces)
 
 
 class States(Generic[T]):

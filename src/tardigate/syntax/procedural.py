@@ -12,7 +12,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tardigate.syntax.outline import ModuleText
-from tardigate.syntax.scan import CLOSE, COMMA, DOT, LEFT, OPEN, RIGHT, SEMICOLON, WORD, Scan
+from tardigate.syntax.plain import STRANGE
+from tardigate.syntax.scan import CLOSE, DOT, LEFT, OPEN, OTHER, RIGHT, SEMICOLON, WORD, Scan
 
 _BEGINNERS = {"always": "", "initial": "", "task": "endtask", "function": "endfunction"}
 _BLOCKS = {"begin": "end", "fork": "join"}
@@ -29,73 +30,67 @@ _BASED = re.compile(
 _DEPTH = {OPEN: 1, LEFT: 1, b"{": 1, CLOSE: -1, RIGHT: -1, b"}": -1}
 
 
-def stretches(scan: Scan, _marks: NDArray[np.uint8], module: ModuleText) -> list[tuple[str, int, int]]:
+def stretches(scan: Scan, marks: NDArray[np.uint8], module: ModuleText) -> list[tuple[str, int, int]]:
     """Return word, first byte and end of each `always`, `initial`, task and function of a module.
 
-    A stretch that is not closed goes up to the module's last word.
+    `marks` is what `plain.refine` gives. A stretch that is not closed goes up to the module's last word.
     """
-    names = scan.names.find_all(_WORDS)
-    texts = {int(name): word for word, name in zip(_WORDS, names, strict=True) if name >= 0}
-    first, stop = int(scan.word_of[module.first]), int(scan.word_of[module.stop - 1])
-    hits = np.isin(scan.word[first:stop], [name for name, word in texts.items() if word in _BEGINNERS])
-    if scan.escaped is not None:
-        hits &= ~scan.escaped[first:stop]
+    names = scan.names.find_all(_WORDS).tolist()
+    texts = {name: word for word, name in zip(_WORDS, names, strict=True) if name >= 0}
+    window = slice(module.first, module.stop - 1)
+    of_marks = scan.word[np.minimum(scan.word_of[window], len(scan.word) - 1)]
+    begins = np.isin(of_marks, [name for name, word in texts.items() if word in _BEGINNERS])
+    begins &= marks[window] == STRANGE
+    reader = _Reader(scan, marks, texts, module.stop - 1)
     found: list[tuple[str, int, int]] = []
-    if not hits.any():
-        return found
-    reader = _Reader(scan, texts, module.stop - 1)
-    marks = np.searchsorted(scan.word_of[module.first : module.stop], np.flatnonzero(hits) + first, "right")
     after = -1
-    for mark in (marks + (module.first - 1)).tolist():  # the last of a word's marks is the word itself
-        if mark < after:
-            continue
-        word = reader.word(mark)
-        closer = _BEGINNERS[word]
-        after = reader.behind_word(mark + 1, closer) if closer else reader.behind_statement(mark + 1)
-        found.append((word, int(scan.at[mark]), reader.end_of(after)))
+    for mark in (np.flatnonzero(begins) + module.first).tolist():
+        if mark >= after:
+            word = reader.word(mark)
+            closer = _BEGINNERS[word]
+            after = reader.behind_word(mark + 1, closer) if closer else reader.behind_statement(mark + 1)
+            found.append((word, int(scan.at[mark]), reader.end_of(after)))
     return found
 
 
 class _Reader:
     """Goes over marks: each method takes the number of a mark and returns the one where it ends."""
 
-    def __init__(self, scan: Scan, texts: dict[int, str], stop: int) -> None:
-        self._scan, self._texts, self._stop = scan, texts, stop
+    def __init__(self, scan: Scan, marks: NDArray[np.uint8], texts: dict[int, str], stop: int) -> None:
+        self._scan, self._marks, self._texts, self._stop = scan, marks, texts, stop
 
     def word(self, mark: int) -> str:
         """Return the reserved word that a mark is, empty for any other mark."""
-        scan = self._scan
-        if mark >= self._stop or scan.kind[mark] != WORD:
+        if mark >= self._stop or self._marks[mark] != STRANGE:
             return ""
-        number = scan.word_of[mark]
-        if scan.escaped is not None and scan.escaped[number]:
-            return ""
-        return self._texts.get(int(scan.word[number]), "")
+        return self._texts.get(int(self._scan.word[self._scan.word_of[mark]]), "")
 
     def end_of(self, mark: int) -> int:
         """Return the offset where the text before a mark ends, that of the module's last word beyond it."""
         scan = self._scan
-        if mark >= self._stop:
+        if mark > self._stop:
             return int(scan.at[self._stop])
         if scan.kind[mark - 1] == WORD:
             return int(scan.word_stop[scan.word_of[mark - 1]])
         return int(scan.at[mark - 1]) + 1
 
     def _sign(self, mark: int, text: bytes) -> bool:
-        """Tell whether a sign of several bytes stands at a mark."""
-        at = int(self._scan.at[mark]) if mark < self._stop else -1
-        return at >= 0 and self._scan.kind[mark] != WORD and self._scan.data.startswith(text, at)
+        """Tell whether a sign of one or several bytes stands at a mark."""
+        return self._kind(mark) in (OTHER, OPEN) and self._scan.data.startswith(
+            text, int(self._scan.at[mark])
+        )
 
     def _kind(self, mark: int) -> int:
         return int(self._scan.kind[mark]) if mark < self._stop else -1
 
     def _from(self, mark: int, offset: int) -> int:
         """Return the first mark, from `mark` on, that does not begin before an offset."""
-        ahead = int(np.searchsorted(self._scan.at[mark : self._stop], offset))
-        return mark + ahead
+        while mark < self._stop and self._scan.at[mark] < offset:
+            mark += 1
+        return mark
 
     def behind_word(self, mark: int, word: str) -> int:
-        """Return the mark behind the next `word`."""
+        """Return the mark behind the next `word`, one beyond the module where there is none."""
         while mark < self._stop and self.word(mark) != word:
             mark += 1
         return mark + 1
@@ -111,17 +106,11 @@ class _Reader:
         open_: list[str] = []
         while mark < self._stop:
             mark, complete = self._beginning(mark, open_)
-            while complete and open_ and open_[-1] == "if":
-                open_.pop()
-                if self.word(mark) == "else":
-                    mark, complete = mark + 1, False
-            if complete and not open_:
-                return mark
             if complete:
-                mark, complete = self._inside(mark, open_)
-                if complete:
-                    return mark
-        return self._stop
+                mark, complete = self._closing(mark, open_)
+            if complete:
+                return mark
+        return self._stop + 1
 
     def _beginning(self, mark: int, open_: list[str]) -> tuple[int, bool]:
         """Step over what a statement begins with, or over one that ends with `;`; say whether it is over."""
@@ -145,15 +134,13 @@ class _Reader:
             mark = self._behind_attribute(mark + 2)
         return (mark, False) if mark > before else (self._behind_simple(mark), True)
 
-    def _inside(self, mark: int, open_: list[str]) -> tuple[int, bool]:
-        """In a block or case: close what is closed, else go to its next statement; say whether all is over."""
-        while open_ and self.word(mark) == open_[-1]:
-            open_.pop()
-            mark += 1
-            while open_ and open_[-1] == "if":
-                open_.pop()
-                if self.word(mark) == "else":
-                    return mark + 1, False
+    def _closing(self, mark: int, open_: list[str]) -> tuple[int, bool]:
+        """Close what ends with a statement; say whether that is all, or else go to the next statement."""
+        while open_ and open_[-1] in ("if", self.word(mark)):
+            if open_.pop() != "if":
+                mark += 1
+            elif self.word(mark) == "else":
+                return mark + 1, False
         if open_ and open_[-1] == "endcase":
             mark = self._behind_labels(mark)
         return mark, not open_
@@ -220,7 +207,8 @@ class _Reader:
         depth = choices = 0
         while mark < self._stop:
             kind = self._kind(mark)
-            sign = self._scan.data[int(self._scan.at[mark]) :][:1] if kind not in (WORD, COMMA) else b""
+            at = int(self._scan.at[mark])
+            sign = self._scan.data[at : at + 1] if kind == OTHER else b""
             if kind == SEMICOLON or self.word(mark) in _CLOSERS:
                 return mark  # no label: whatever this is, it is a statement
             depth += _DEPTH.get(kind, 0) or _DEPTH.get(sign, 0)

@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import re
 from collections import deque
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from typing import Any, NamedTuple
 
 END = "$END"
@@ -22,7 +22,13 @@ FAR = 40
 """Tokens that a repair must carry on, unless the statement ends before."""
 
 LONGEST = 20_000
-"""Tokens of a statement of which copies are still made."""
+"""Tokens of a statement that is still read a second time."""
+
+MOST_REPAIRS = 100
+"""Faults for which a repair is looked for."""
+
+STOP = ";"
+"""What ends a statement."""
 
 
 class Token(NamedTuple):
@@ -41,23 +47,25 @@ class Token(NamedTuple):
 class Language(NamedTuple):
     """What recovery needs to know of a language; all but `header` are texts of tokens.
 
-    `over` are those after which a statement may begin; `starters` begin one and stand nowhere else;
-    `closers` end a block or belong to one, and are never told again once something was told. A statement that
-    is given up ends with `end`; of the `blocks` in it each goes up to what closes it. `signs` may be missing.
-    `header` is the least text before the first statement; while it is read, a fault in it gives up all of it.
+    `over` are those after which a statement may begin, `wholes` those that are one; `starters` begin one and
+    stand nowhere else; `closers` end a block or belong to one, and are never told again once something was
+    told. A statement that is given up ends with `;`; of the `blocks` in it each goes up to what closes it.
+    `signs` may be missing; `name` is the terminal of a name. `header` is the least text before the first
+    statement; a fault in a header gives up all of it.
     """
 
     over: frozenset[str]
+    wholes: frozenset[str]
     starters: frozenset[str]
     closers: frozenset[str]
-    blocks: dict[str, str]
+    blocks: Mapping[str, str]
     signs: Sequence[str]
-    end: str = ";"
+    name: str
     header: str = ""
 
 
 class Repair(NamedTuple):
-    """A change of one token with which the text goes on: `insert`, `replace` or `drop` one (or `drop before`).
+    """A change of one token with which the text goes on: `insert`, `replace`, `drop` or `drop before`.
 
     `sign` is what is put in, or taken out.
     """
@@ -157,43 +165,54 @@ class Scout:
         return frozenset(kind for kind in self._terminals if kind in here and self.takes(stack, kind))
 
 
-def troubles(scout: Scout, text: str, language: Language) -> Iterator[Trouble]:
-    """Yield the faults of a text in order of place; nothing for a text that follows the grammar."""
-    return _Pass(scout, text, language).run()
+def troubles(scout: Scout, text: str, language: Language, most: int) -> tuple[list[Trouble], int]:
+    """Return the first faults of a text in order of place, and how many more there are."""
+    return _Pass(scout, text, language).run(most)
 
 
 class _Pass:
-    """One pass over a text."""
+    """One pass over a text.
+
+    `_resume` is the stack at the beginning of the statement. `_quiet` holds after a fault until a statement
+    is whole again: what is odd up to there may follow from it.
+    """
 
     def __init__(self, scout: Scout, text: str, language: Language) -> None:
         self.scout, self.language = scout, language
         self.stack = scout.start()
+        self.statement: list[Token] = []
         self._tokens = scout.tokens(text)
         self._ahead: deque[Token] = deque()
         self._resume: list[int] | None = self.stack[:]
-        self.statement: list[Token] = []
         self._opened: list[Token] = []
         self._brackets = 0
         self._in_header = bool(language.header)
-        self._quiet = self._told = False
+        self._quiet = False
+        self._repairs = 0
 
-    def run(self) -> Iterator[Trouble]:
+    def run(self, most: int) -> tuple[list[Trouble], int]:
+        found: list[Trouble] = []
+        more = 0
         while True:
             token = self._look(0)
             if self.scout.step(self.stack, token.kind):
                 if token.kind == END:
-                    return
+                    break
                 self._shifted(self._ahead.popleft())
                 continue
-            if self._told and (self._quiet or token.text in self.language.closers or token.kind == END):
-                repair = None if token.text in self.language.closers else self._repair()
-            else:
-                repair = self._repair()
-                self._told = True
-                yield self._trouble(token, repair)
+            repair = self._repair()
+            closes = token.kind == END or token.text in self.language.closers
+            if closes and found and not (repair and repair.sign == STOP):
+                repair = None  # an earlier fault may have taken what it closes
+            follows = self._quiet or (closes and repair is None)
+            if not found or (not follows and len(found) < most):
+                found.append(self._trouble(token, repair))
+            elif not follows:
+                more += 1
             if not self._go_on(token, repair):
-                return
+                break
             self._quiet = True
+        return found, more
 
     def _look(self, far: int) -> Token:
         """Return a token that is not read yet, the last one for all beyond it."""
@@ -216,7 +235,7 @@ class _Pass:
             if closing == text:
                 self._opened.pop()
         if text in self.language.over and self._brackets <= 0 and not self._in_expression(text):
-            if text == self.language.end:
+            if text == STOP or text in self.language.wholes:
                 self._quiet = self._in_header = False
             self._begin()
 
@@ -239,7 +258,8 @@ class _Pass:
 
     def _repair(self) -> Repair | None:
         """Return a change of one token after which the statement goes on to its end."""
-        if len(self.stack) > DEEPEST:
+        self._repairs += 1
+        if len(self.stack) > DEEPEST or self._repairs > MOST_REPAIRS:
             return None
         found, before = self._look(0), self.statement[-1:]
         if before and before[0].text == "," and len(self.statement) <= LONGEST and self._resume is not None:
@@ -250,12 +270,14 @@ class _Pass:
             stack = self.stack[:]
             if self.scout.step(stack, self.scout.kinds.get(sign, "")) and self._carries(stack, 0):
                 return Repair("insert", sign)
-        for sign in (*self.language.signs, "IDENT"):
+        others = [sign for sign in self.language.signs if sign in "()[]{}="] if len(found.text) <= 2 else []
+        for sign in (*others, self.language.name):
             kind = self.scout.kinds.get(sign, sign)
             stack = self.stack[:]
             if kind != found.kind and self.scout.step(stack, kind) and self._carries(stack, 1):
                 return Repair("replace", sign)
-        if found.kind != END and self._carries(self.stack[:], 1):
+        begins = found.text in self.language.starters and self.statement
+        if found.kind != END and not begins and self._carries(self.stack[:], 1):
             return Repair("drop", found.text)
         return None
 
@@ -276,7 +298,7 @@ class _Pass:
             if last or token.kind == END:
                 return True
             brackets += (token.text == "(") - (token.text == ")")
-            last = token.text == self.language.end and brackets <= 0
+            last = token.text == STOP and brackets <= 0
         return True
 
     # Going on
@@ -318,22 +340,26 @@ class _Pass:
 
     def _skip(self, token: Token) -> None:
         """Pass the rest of a statement: up to its end, or to before a word that begins or closes another."""
-        closing: list[str] = []
-        first = True
+        language = self.language
+        self._ahead.popleft()
+        closing = [language.blocks[token.text]] if self._opens(token.text) else []
+        if token.text in (*language.closers, STOP):
+            return
         while (here := self._look(0)).kind != END:
             text = here.text
-            if closing and text == closing[-1]:
-                closing.pop()
-                if not closing and text == "}":
-                    self._ahead.popleft()
-                    return
-            elif text in self.language.blocks and not (first and text in self.language.starters):
-                closing.append(self.language.blocks[text])
-            elif not closing and not first and text in (self.language.starters | self.language.closers):
+            if not closing and (text in language.starters or text in language.closers):
                 return
             self._ahead.popleft()
-            if first and text in self.language.closers:
+            self.statement.append(here)
+            if closing and text == closing[-1]:
+                closing.pop()
+                if not closing and not self._in_expression(text):
+                    return
+            elif self._opens(text):
+                closing.append(language.blocks[text])
+            elif text == STOP and not closing:
                 return
-            if text == self.language.end and not closing:
-                return
-            first = False
+
+    def _opens(self, text: str) -> bool:
+        """Tell whether a word opens a block that goes with the statement that is given up."""
+        return text in self.language.blocks and text not in self.language.starters

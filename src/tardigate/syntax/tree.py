@@ -277,10 +277,11 @@ class PlainPorts(NamedTuple):
 
 
 class Module(NamedTuple):
-    """A module as written."""
+    """A module as written; `generated`: the runs of plain statements that stand inside generate."""
 
     name: str
     parameters: tuple[Parameter, ...]
     ports: tuple[HeaderPort, ...] | PlainPorts
     items: tuple[Item, ...]
     at: int
+    generated: tuple[Run, ...] = ()

@@ -1,4 +1,4 @@
-"""One module's text through the grammar; lark only says what is wrong with one that is refused.
+"""One module's text through the grammar.
 
 Takes a text and what its marks stand for, gives a tree. Does not look any name up.
 """
@@ -12,20 +12,19 @@ from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.placed import PlacedText
 from tardigate.syntax.grammar import Reader
-from tardigate.syntax.numbers import BadNumberError
+from tardigate.syntax.lalr import NotInGrammarError
+from tardigate.syntax.numbers import BadNumberError, read_number
 from tardigate.syntax.tree import Module, PlainPorts, Run
 from tardigate.syntax.verilog_tree_maker import TreeMaker
 
 if TYPE_CHECKING:
     from tardigate.syntax.cuts import Cuts
 
-FRIENDLY = {
-    "IDENT": "a name", "NUMBER": "a number", "STRING": "a text in quotes", "SYSTEM": "a system function",
-    "GATE": "a gate", "DIRECTION": "`input`, `output` or `inout`", "NET_TYPE": "a type of net",
-    "STRENGTH": "a strength", "UNARY": "an operator", "AND_OR": "an operator", "BINARY": "an operator",
-    "PLAIN_RUN": "an instance", "PLAIN_PORTS": "`(`", "$END": "the end of the module",
-}  # fmt: skip
-"""What the grammar's terminals are called in messages."""
+SYNTAX = frozenset({"V001", "V009", "V151", "V152", "V153", "V154", "V155"})
+"""The codes of what `parse` refuses."""
+
+MOST = 10
+"""Faults of one module that are told; the last one counts the others."""
 
 
 @cache
@@ -49,17 +48,38 @@ def parse(
 ) -> Module:
     """Return the tree of a module.
 
-    Raises InputRefusedError: V001 for what the grammar does not accept, V009 for a number that is none.
+    Raises InputRefusedError with the first faults of the text: V001 and V151 to V155 for what the grammar
+    does not accept, V009 for numbers that are none.
     """
     reader, maker = _reader()
     maker.begin(cuts.where, runs, ports)
+    told: list[Diagnostic] = []
     try:
         return cast(Module, reader.read(text))
     except BadNumberError as error:
-        span = placed.span(error.at, error.at + len(error.text))
-        diagnostic = Diagnostic.of("V009", span, number=error.text, reason=error.reason)
-    except Exception as error:  # explain raises again what is not about the text
-        from tardigate.syntax.lark_errors import explain
+        told.append(_bad_number(error, placed))
+    except NotInGrammarError:
+        pass
+    raise InputRefusedError((*told, *_faults(text, cuts, placed)))
 
-        diagnostic = explain(error, reader.lark, placed, "V001", cuts.where, FRIENDLY)
-    raise InputRefusedError((diagnostic,))
+
+def _faults(text: str, cuts: Cuts, placed: PlacedText) -> list[Diagnostic]:
+    """Return all that is wrong with a text that was refused."""
+    from tardigate.syntax.verilog_advice import explain_all  # only on the way to a refusal
+
+    scout = _reader()[0].scout
+    told = explain_all(scout, text, placed, cuts.where, MOST)
+    for token in scout.tokens(text):
+        if token.kind == "NUMBER" and "'" in token.text:
+            try:
+                read_number(token.text, cuts.where(token.start))
+            except BadNumberError as error:
+                told.append(_bad_number(error, placed))
+                if len(told) > 2 * MOST:
+                    break
+    return told
+
+
+def _bad_number(error: BadNumberError, placed: PlacedText) -> Diagnostic:
+    span = placed.span(error.at, error.at + len(error.text))
+    return Diagnostic.of("V009", span, number=error.text, reason=error.reason)

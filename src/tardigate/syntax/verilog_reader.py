@@ -93,7 +93,16 @@ def parse_module(unit: Unit, module: ModuleText, *, bulk: bool = True) -> Module
     coarse = _coarse(unit, module, bulk, opaque)
     from tardigate.syntax.verilog_parser import parse  # lark only when something is parsed
 
-    return parse(coarse.text, coarse.cuts, coarse.runs, coarse.ports, unit.text)
+    tree = parse(coarse.text, coarse.cuts, coarse.runs, coarse.ports, unit.text)
+    if any(_declares_ports(unit, run) for run in tree.generated):
+        return parse_module(unit, module, bulk=False)  # the grammar says where
+    return tree
+
+
+def _declares_ports(unit: Unit, run: Run) -> bool:
+    """Tell whether a run has a declaration of ports: they cannot stand in generate (A.1.4)."""
+    heads = unit.plain.head[run.first : run.last][unit.plain.is_declaration[run.first : run.last]]
+    return bool((heads != unit.scan.names.find("wire")).any()) if len(heads) else False
 
 
 def _first(unit: Unit, module: ModuleText, note: str) -> int | None:

@@ -5,6 +5,7 @@ One method a rule of `verilog.lark`; offsets are those of the placed text.
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from typing import Any, NamedTuple
 
 from tardigate.syntax import tree
@@ -25,7 +26,8 @@ class TreeMaker(CellMaker):
         ports = child_of(children[1:], (_Ports, tree.PlainPorts))
         items = _items(children[1:])
         return tree.Module(
-            word_of(name), tuple(parameters), ports if ports is not None else (), items, self._at(name)
+            word_of(name), tuple(parameters), ports if ports is not None else (), items, self._at(name),
+            tuple(self._generated),
         )
 
     def parameter_ports(self, children: list[Any]) -> _Parameters:
@@ -211,7 +213,12 @@ class TreeMaker(CellMaker):
     # Generate
 
     def region(self, children: list[Any]) -> _Region:
-        return _Region(c for c in _items(children))
+        region = _Region(_items(children))
+        self._note_runs(region)
+        return region
+
+    def _note_runs(self, items: Iterable[tree.Item]) -> None:
+        self._generated += [item for item in items if isinstance(item, tree.Run)]
 
     def genvars(self, children: list[Any]) -> tree.Genvars:
         return tree.Genvars(children[0], children[0][0].at)
@@ -219,6 +226,7 @@ class TreeMaker(CellMaker):
     def begun_block(self, children: list[Any]) -> tree.Block:
         name = children[0] if children and isinstance(children[0], Token) else None
         items = _items(children)
+        self._note_runs(items)
         at = self._at(name) if name is not None else items[0].at if items else -1
         return tree.Block(word_of(name) if name is not None else "", items, True, at)
 

@@ -1,0 +1,206 @@
+"""Carries generate constructs out (IEEE 1364-2005 clause 12.4): a module's items to scopes.
+
+Takes a module's tree and its parameters' values, gives its scopes with the items that stand in each. Nets and
+instances are not declared here. Iterative; loops and blocks are counted.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping, Sequence
+
+from tardigate.netlist.block_names import block_names, declared_names
+from tardigate.netlist.constants import NotConstantError, Value, evaluate, whole
+from tardigate.netlist.declare import Declarer
+from tardigate.netlist.parameters import parameter_values
+from tardigate.netlist.plain_tree import trees_of
+from tardigate.netlist.scopes import Scope
+from tardigate.syntax import tree
+
+MOST_BLOCKS = 1 << 17
+"""Generate blocks that one module may become."""
+
+_CHOICES = (tree.GenerateIf, tree.GenerateCase)
+GENERATE = (tree.GenerateFor, tree.GenerateIf, tree.GenerateCase)
+_SILENT = (tree.Genvars, *GENERATE)
+
+
+def expand(module: tree.Module, values: Mapping[str, Value], declarer: Declarer) -> list[Scope]:
+    """Return the scopes of a module, each after the one around it; tells N110, N116 to N119, N120."""
+    root = Scope(0, -1, "", "", values, module.at)
+    if not any(isinstance(item, _SILENT) for item in module.items):
+        root.items = list(module.items)
+        return [root]
+    return _Expansion(declarer).run(root, module.items)
+
+
+class _Expansion:
+    """The scopes of one module under work."""
+
+    def __init__(self, declarer: Declarer) -> None:
+        self.declarer, self.collector, self.text = declarer, declarer.collector, declarer.text
+        self.scopes: list[Scope] = []
+        self._waiting: list[tuple[tree.Item, ...]] = []
+        self._runs: dict[tree.Run, list[tree.Declaration | tree.Gates | tree.Instances]] = {}
+        self._full = False
+
+    def run(self, root: Scope, items: Iterable[tree.Item]) -> list[Scope]:
+        """Fill the module's scope, then the blocks that this makes, and so on."""
+        self.scopes, self._waiting = [root], [tuple(items)]
+        at = 0
+        while at < len(self.scopes):
+            self._fill(self.scopes[at], self._waiting[at])
+            at += 1
+        return self.scopes
+
+    def _fill(self, scope: Scope, items: Sequence[tree.Item]) -> None:
+        names = [named for item in items if isinstance(item, tree.Genvars) for named in item.names]
+        scope.genvars |= frozenset(named.name for named in names)
+        if scope.number:
+            self._own_constants(scope, items)
+        constructs = [item for item in items if isinstance(item, GENERATE)]
+        taken = declared_names(self.declarer.unit, items) if constructs else frozenset()
+        named = block_names(constructs, taken)
+        self._tell_same_names(items, constructs)
+        for item in items:
+            if isinstance(item, tree.GenerateFor):
+                self._loop(scope, item, named[id(item)])
+            elif isinstance(item, _CHOICES):
+                block = self._chosen(scope, item)
+                if block is not None:
+                    self._add(scope, block, block.name or named[id(item)], scope.values, scope.looping)
+            elif isinstance(item, tree.Run) and scope.number:
+                if item not in self._runs:
+                    self._runs[item] = list(trees_of(self.declarer.unit, item))
+                scope.items += self._runs[item]
+            elif not isinstance(item, tree.Genvars):
+                scope.items.append(item)
+
+    def _own_constants(self, scope: Scope, items: Sequence[tree.Item]) -> None:
+        """Take the constants of the block itself, and hide those of outside that a net of it hides."""
+        local = [item for item in items if isinstance(item, tree.Parameter)]
+        hidden = {named.name for item in items if isinstance(item, tree.Declaration) for named in item.names}
+        if not local and not hidden & scope.values.keys():
+            return
+        values = {name: value for name, value in scope.values.items() if name not in hidden}
+        scope.values = {**values, **parameter_values(local, {}, self.declarer, values)}
+
+    def _add(
+        self, scope: Scope, block: tree.Block, name: str, values: Mapping[str, Value], looping: frozenset[str]
+    ) -> None:
+        if len(self.scopes) > MOST_BLOCKS:
+            if not self._full:
+                reason = f"the module has more than {MOST_BLOCKS} blocks"
+                self.collector.tell("N118", self.text.span(block.at), reason=reason)
+            self._full = True
+            return
+        below = Scope(
+            len(self.scopes), scope.number, name, f"{scope.prefix}{name}.", values, block.at, scope.genvars,
+            looping,
+        )  # fmt: skip
+        scope.blocks.setdefault(name, below.number)
+        self.scopes.append(below)
+        self._waiting.append(block.items)
+
+    # Loops (clause 12.4.1)
+
+    def _loop(self, scope: Scope, loop: tree.GenerateFor, name: str) -> None:
+        if not self._may_count(scope, loop):
+            return
+        looping = scope.looping | {loop.variable}
+        values = {**scope.values}
+        seen: set[int] = set()
+        try:
+            index = whole(evaluate(loop.first, values), loop.first.at)
+            while not self._full:
+                values[loop.variable] = Value(index, 32)
+                if not evaluate(loop.condition, values).value:
+                    return
+                if index in seen or abs(index) >> 31:
+                    reason = f"`{loop.variable}` comes to {index} again" if index in seen else "it overflows"
+                    self.collector.tell("N118", self.text.span(loop.at), reason=reason)
+                    return
+                seen.add(index)
+                self._add(scope, loop.block, f"{loop.block.name or name}[{index}]", dict(values), looping)
+                index = whole(evaluate(loop.following, values), loop.following.at)
+        except NotConstantError as error:
+            self.collector.tell("N120", self.text.span(error.at), reason=error.reason)
+
+    def _may_count(self, scope: Scope, loop: tree.GenerateFor) -> bool:
+        """Tell of a loop whose counter is no genvar, another in its step, or that of a loop around."""
+        span = self.text.span(loop.at, loop.at + len(loop.variable))
+        if loop.variable not in scope.genvars:
+            self.collector.tell("N116", span, name=loop.variable)
+        elif loop.stepped != loop.variable:
+            reason = f"the loop counts `{loop.variable}` and steps `{loop.stepped}`"
+            self.collector.tell("N117", span, reason=reason)
+        elif loop.variable in scope.looping:
+            self.collector.tell("N117", span, reason=f"a loop around counts with `{loop.variable}` as well")
+        else:
+            return True
+        return False
+
+    # Choices (clause 12.4.2)
+
+    def _chosen(self, scope: Scope, choice: tree.GenerateIf | tree.GenerateCase) -> tree.Block | None:
+        """Return the block that is chosen; one that holds but another choice belongs to this one."""
+        while True:
+            if isinstance(choice, tree.GenerateIf):
+                value = self.declarer.constant(choice.condition, scope.values).value
+                block = choice.yes if value else choice.no
+            else:
+                block = self._case(scope, choice)
+            nested = None if block is None or block.begun else block.items[0]
+            if not isinstance(nested, _CHOICES):
+                return block
+            choice = nested
+
+    def _case(self, scope: Scope, item: tree.GenerateCase) -> tree.Block | None:
+        otherwise = None
+        for arm in item.arms:
+            if not arm.labels:
+                otherwise = arm.block
+            for label in arm.labels:
+                same = tree.Binary("===", item.subject, label, label.at)
+                if self.declarer.constant(same, scope.values).value:
+                    return arm.block
+        return otherwise
+
+    def _tell_same_names(self, items: Sequence[tree.Item], constructs: Sequence[tree.Item]) -> None:
+        """Tell of two constructs whose blocks share a name, or share one with a net (clause 12.4.2; N110)."""
+        taken: dict[str, int] = {}
+        for item in items:
+            if isinstance(item, tree.Declaration | tree.Genvars):
+                taken.update((named.name, named.at) for named in item.names)
+        for construct in constructs:
+            own: dict[str, int] = {}
+            for block in blocks_of(construct):
+                if block.name:
+                    own.setdefault(block.name, block.at)
+            for name, at in own.items():
+                if name in taken:
+                    self.declarer.twice_at(name, at, taken[name])
+                taken.setdefault(name, at)
+
+
+def blocks_of(construct: tree.Item) -> list[tree.Block]:
+    """Return all blocks of a construct, those of choices that belong to it among them."""
+    found: list[tree.Block] = []
+    work: list[tree.Item] = [construct]
+    while work:
+        item = work.pop()
+        blocks: list[tree.Block | None] = []
+        if isinstance(item, tree.GenerateFor):
+            blocks = [item.block]
+        elif isinstance(item, tree.GenerateIf):
+            blocks = [item.yes, item.no]
+        elif isinstance(item, tree.GenerateCase):
+            blocks = [arm.block for arm in item.arms]
+        for block in blocks:
+            if block is None:
+                continue
+            inner = block.items[0] if not block.begun and block.items else None
+            if isinstance(inner, _CHOICES) and isinstance(item, _CHOICES):
+                work.append(inner)
+            else:
+                found.append(block)
+    return found
