@@ -722,7 +722,7 @@ def _text(
 def structure(seed: int, size: int = 5, fault: str = "", modules: str = "") -> str:
     """Return the text of a design whose top is `top`; `fault` goes into its body, `modules` beside it."""
     random = Random(seed)
-    strict = random.random() < 0.2
+    strict = not fault and random.random() < 0.2
     below: list[Module] = []
     texts = [TREE, modules]
     for number in range(random.randrange(1, 4)):

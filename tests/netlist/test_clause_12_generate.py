@@ -57,10 +57,10 @@ def test_12_4_1_loops_that_are_refused(loop: str, told: Codes) -> None:
 @pytest.mark.parametrize(
     "form",
     [
-        "for (i = 0; i < 2; i = i + 1)", "for (i = 0; i < 2) begin end", "for (i = 0; i < 2; i++) begin end", "for (; i < 2; i = i + 1) begin end",
+        "for (i = 0; i < 2; i = i + 1) ;", "for (i = 0; i < 2) begin end", "for (i = 0; i < 2; i++) begin end", "for (; i < 2; i = i + 1) begin end",
         "for (i = 0; i < 2; i += 1) begin end", "for i = 0; i < 2; i = i + 1 begin end", "for (i = 0; i < 2; i = i + 1) begin : b",
         "for (genvar k = 0; k < 2; k = k + 1) begin end", "for (i = 0, j = 0; i < 2; i = i + 1) begin end", "if begin end", "if () begin end",
-        "if (1) begin end else", "else begin end", "case (1) endcase", "case () 1: ; endcase", "case (1) 1 ; endcase", "case (1) : ; endcase",
+        "if (1) begin end else endgenerate", "else begin end", "case (1) endcase", "case () 1: ; endcase", "case (1) 1 ; endcase", "case (1) : ; endcase",
         "begin : b end", "begin end", "if (1) begin : b end : b", "generate generate endgenerate endgenerate", "if (1) generate endgenerate",
         "generate if (1) begin end", "endgenerate", "if (1) begin parameter P = 1; end", "if (1) begin input q; end", "if (1) begin specify endspecify end",
         "if (1) begin module m; endmodule end", "casez (1) 1: ; endcase", "for (i = 0; i < 2; i = i + 1) begin : 3 end", "genvar;", "genvar [3:0] v;", "genvar v = 1;",

@@ -373,6 +373,20 @@ def test_14_4_a_latch_primitive_with_a_delay_of_its_own(elaborate: Callable[...,
     ]  # fmt: skip
 
 
+def test_a_latch_before_the_gate_that_its_own_clock_closes(elaborate: Callable[..., Flat]) -> None:
+    body = "wire g, n; not (g, ck); lat (n, e, g); and (y, n, ck);"
+    text = _board("input e, ck, output y", body, "(ck => y) = (1, 2); $setup(e, posedge ck, 1);") + LATCH
+    assert dump_kind(elaborate(text).kinds[0]).splitlines() == [
+        "part cell_ PARTS register", "  ck rise -> y rise 1:1:1", "  ck fall -> y fall 2:2:2", "  sinks e",
+    ]  # fmt: skip
+
+
+def test_states_with_one_time_are_one_hop(elaborate: Callable[..., Flat]) -> None:
+    block = "if (b) (a => y) = 1; if (c) (a => y) = 1; ifnone (a => y) = 1; (b, c *> y) = 1;"
+    kind = elaborate(_board("input a, b, c, output y", "assign y = a & (b | c);", block)).kinds[0]
+    assert kind.hops == 6
+
+
 def test_a_gated_clock_is_taken_from_the_block(elaborate: Callable[..., Flat]) -> None:
     body = "wire c; and (c, ck, en); dff (q, d, c, 1'b1);"
     block = "(posedge ck => (q +: d)) = 4; $setup(d, posedge ck, 1);"

@@ -6,7 +6,9 @@ from collections.abc import Callable
 
 import pytest
 
-from tardigate.netlist.build import build
+from tardigate.netlist.cell_shop import Cells
+from tardigate.netlist.modules import collect
+from tardigate.netlist.shop import Shop
 from tardigate.parts.dump import dump_part
 from tardigate.parts.library import Library
 from tardigate.parts.model import Part
@@ -28,8 +30,10 @@ def _part(block: str) -> tuple[Part, list[str]]:
     collector = Collector()
     source = preprocess(SourceFile("board.v", text.encode()), PreprocessOptions(), collector, None)
     unit = read_unit(source, collector)
-    built = build([unit], Library.read([], None, collector), None, collector)
-    (part,) = built.cells
+    library = Library.read([], None, collector)
+    shop = Shop(collect([unit], library.describes, collector, bulk=True), library, collector)
+    part = Cells(shop).part("dff", {})
+    assert part is not None
     return part, [diagnostic.code for diagnostic in collector.all()]
 
 

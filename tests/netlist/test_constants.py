@@ -120,8 +120,8 @@ class Watch:
 
 def _same(ours: Value, other: Value) -> bool:
     if isinstance(ours.value, Fraction) or isinstance(other.value, Fraction):
-        near = abs(ours.value - other.value) <= abs(other.value) * Fraction(1, 10**12)
-        return isinstance(ours.value, Fraction) and isinstance(other.value, Fraction) and bool(near)
+        near = abs(float(ours.value) - float(other.value)) <= abs(float(other.value)) * 1e-12
+        return isinstance(ours.value, Fraction) and isinstance(other.value, Fraction) and near
     shapes = (ours.width or 32, ours.signed) == (other.width, other.signed)
     return shapes and ours.value == other.value
 

@@ -14,8 +14,8 @@ Delays = Callable[[str], dict[str, list[float]]]
 NS = 1e6
 
 
-def _settles(text: str, grade: str = "span") -> dict[str, float]:
-    settled = tardigate.read_text(text).settle(grade=grade)
+def _settles(text: str) -> dict[str, float | None]:
+    settled = tardigate.read_text(text).settle()
     return {output.name: output.settles_ns for output in settled.outputs()}
 
 

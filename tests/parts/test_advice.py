@@ -175,3 +175,8 @@ def test_the_last_fault_counts_those_beyond() -> None:
     text = family("part A { inputs A B; inputs C; }\n" * 500)
     Library.read([SourceFile("a.parts", text.encode())], None, collector)
     assert [told.count for told in collector.all()] == [1] * (MOST - 1) + [500 - MOST + 1]
+
+
+def test_a_brace_too_many_does_not_hide_the_next_fault() -> None:
+    text = "family F { part P { inputs A; } } }\nfamily G { alias A B; }\n"
+    assert [line for line, _ in faults(text)] == [1, 2]

@@ -9,7 +9,7 @@ from pathlib import Path
 import pytest
 
 from tardigate.cli.main import run
-from tardigate.netlist import build, expression
+from tardigate.netlist import build, cell_ways, expression
 from tardigate.source import files
 from tardigate.source.code_table import FILES, every_code, look_up
 from tardigate.source.diagnostic import Diagnostic
@@ -98,8 +98,16 @@ def test_each_entry_is_complete(code: str) -> None:
 HINT_IS_MADE = ("N102", "N160", "P002", "P006", "P018")
 """Their hint names what is near or there, so it is made for each case."""
 
-WITHOUT_SAMPLE = ("N122", "N125", "U102", "U109", "U110")
+WITHOUT_SAMPLE = ("N122", "N125", "N185", "U102", "U109", "U110")
 """Too large for a sample, or no text, and raised below; U109 (a full disk) in tests/cli."""
+
+
+def test_a_code_without_a_sample_is_raised_by_a_test_of_its_own() -> None:
+    tests = Path(__file__).parents[1]
+    own = (tests / "source" / "test_codes.py").read_text()
+    written = " ".join(path.read_text() for path in (tests / "cli").glob("test_*.py"))
+    for code in WITHOUT_SAMPLE:
+        assert f"def test_{code.lower()}_" in own or f"error {code}" in written, code
 
 
 def _codes(path: Path) -> list[str]:
@@ -120,7 +128,8 @@ def test_u102_a_file_that_is_too_large(tmp_path: Path, monkeypatch: pytest.Monke
 
 
 @pytest.mark.parametrize(
-    "data", [BOARD.encode("utf-16"), BOARD.encode("utf-16-le"), bytes(range(256)) * 9, b"\x7fELF\x02" + bytes(90)]
+    "data",
+    [BOARD.encode("utf-16"), BOARD.encode("utf-16-le"), bytes(range(256)) * 9, bytes(90)],
 )
 def test_u110_a_file_that_is_no_text_is_told_once(
     tmp_path: Path, capsys: pytest.CaptureFixture[str], data: bytes
@@ -149,3 +158,13 @@ def test_n125_more_sets_of_parameters_than_may_be(tmp_path: Path, monkeypatch: p
     )
     monkeypatch.setattr(build, "MOST_TEMPLATES", 5)
     assert _codes(path) == ["N125"]
+
+
+def test_n185_more_inside_a_cell_than_may_be(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    path = tmp_path / "board.v"
+    path.write_text(
+        "`timescale 1 ns / 1 ps\nmodule board(input a, output y);\ncell_ u (.a(a), .y(y));\nendmodule\n"
+        "module cell_(input a, output y);\nbuf #1 (y, a);\nspecify (a => y) = 1; endspecify\nendmodule\n"
+    )
+    monkeypatch.setattr(cell_ways, "MOST_STEPS", 3)
+    assert _codes(path) == ["N185"]

@@ -72,11 +72,13 @@ def _stamped(
 
 def _tell_unreadable(modules: Modules, collector: Collector) -> None:
     """Tell what is wrong with modules that do not parse: that may be why there is not one top."""
+    from tardigate.syntax.verilog_parser import SYNTAX  # few runs come here
+
     for name in modules.names():
         if not modules.described(name):
             try:
                 modules.tree(name)
             except InputRefusedError as refused:
                 for diagnostic in refused.diagnostics:
-                    if diagnostic.code == "V001":
+                    if diagnostic.code in SYNTAX:
                         collector.add(diagnostic)

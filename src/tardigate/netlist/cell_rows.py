@@ -30,6 +30,9 @@ def timed_rows(part: Part, ways: Ways) -> tuple[Row, ...]:
     change of its pins that the function allows, whatever its condition, and where no condition holds in some
     state the delays inside count alone.
     """
+    unknown = {head for head in output_bits(part) if function_of(part, head) == NOBODY}
+    if not (ways.has_delays or unknown):
+        return part.rows
     rows = list(part.rows)
     matched = match(part, {})
     if ways.has_delays:
@@ -39,7 +42,7 @@ def timed_rows(part: Part, ways: Ways) -> tuple[Row, ...]:
         rows = list(_delayed(matched, ways))
         for need in (*matched.missing, *_lapsing(part.network, matched, whens)):
             rows += _inner(need, ways, part.place)
-    rows += _structural(part, matched, ways)
+    rows += _structural(unknown, part.place, matched, ways)
     return tuple(dict.fromkeys(rows))
 
 
@@ -83,19 +86,18 @@ def _row(need: Need, triple: Triple, place: Place, polarity: str = "") -> Row:
     return Row(symbol, (need.transition,), need.tail_edge, polarity, pairs, -1, (triple,), place)
 
 
-def _structural(part: Part, matched: Matched, ways: Ways) -> Iterator[Row]:
-    """Yield rows for ways through the body to an output whose function is unknown, where no path leads.
+def _structural(heads: set[int], place: Place, matched: Matched, ways: Ways) -> Iterator[Row]:
+    """Yield rows for ways through the body to `heads`, whose function is unknown, where no path leads.
 
     What is written inside counts; where nothing is, the row has no number.
     """
-    heads = {head for head in output_bits(part) if function_of(part, head) == NOBODY}
     given = {(need.tail, need.head) for need, _ in matched.timed}
     for tail, head, inside in ways.all() if heads else ():
         if head[0] in heads and (tail[0], head[0]) not in given and inside.through:
             need = Need(tail[0], head[0], tail[1], head[1], TRANSITION[head[1]])
             triples = (inside.late, inside.early) if ways.written(tail[0], head[0]) else (UNKNOWN,)
             for triple in dict.fromkeys(triples):
-                yield _row(need, triple, part.place, "+" if tail[1] == head[1] else "-")
+                yield _row(need, triple, place, "+" if tail[1] == head[1] else "-")
 
 
 # States for which no path is (14.3.3: there the delays inside count, or none)
@@ -104,7 +106,8 @@ def _structural(part: Part, matched: Matched, ways: Ways) -> Iterator[Row]:
 def uncovered(part: Part) -> Iterator[tuple[Need, list[Row]]]:
     """Yield the changes that can happen in states in which none of their rows holds, with those rows."""
     rows: dict[Need, list[Row]] = {}
-    for need, row in match(part, {}).timed:
+    conditional = any(row.when >= 0 for row in part.rows)
+    for need, row in match(part, {}).timed if conditional else ():
         rows.setdefault(need, []).append(row)
     for need, some in rows.items():
         whens = [row.when for row in some]

@@ -20,6 +20,9 @@ from tardigate.parts.source_delay import Triple
 
 ZERO: Triple = (0.0, 0.0, 0.0)
 
+MOST_STEPS = 1 << 22
+"""Hops times input edges that ways are sought through."""
+
 Vertex = int
 """2 * net + edge."""
 
@@ -68,16 +71,20 @@ class Ways:
 
     def _add(self, kind: Kind, part: bool, inst: int, functions: Functions) -> None:
         """Add the hops of an instance; those of a gate without `#` take no time (7.14), of a part its own."""
-        written = kind.origin == Origin.SOURCE
-        counts = written or (part and kind.origin != Origin.MISSING)
-        self.has_delays |= counts and kind.hops > 0
-        columns = (kind.hop_from, kind.hop_to, kind.from_edge, kind.to_edge, kind.launches)
+        counts = np.full(kind.hops, part or kind.origin == Origin.SOURCE) & ~np.isnan(kind.delays).all(axis=1)
+        self.has_delays |= bool(counts.any())
+        columns = (kind.hop_from, kind.hop_to, kind.from_edge, kind.to_edge, kind.launches, counts)
         rows = zip(*(column.tolist() for column in columns), np.nan_to_num(kind.delays).tolist(), strict=True)
-        for tail, head, from_edge, to_edge, launches, delay in rows:
+        for tail, head, from_edge, to_edge, launches, counted, delay in rows:
             nets = functions.net(inst, tail), functions.net(inst, head)
             if min(nets) >= CONSTANTS:
-                hop = _Hop(2 * nets[1] + to_edge, tuple(delay) if counts else ZERO, counts, launches)
+                hop = _Hop(2 * nets[1] + to_edge, tuple(delay) if counted else ZERO, counted, launches)
                 self._hops.setdefault(2 * nets[0] + from_edge, []).append(hop)
+
+    def too_many(self) -> bool:
+        """Tell whether the ways are too many to be sought."""
+        inputs = sum(port.way != Way.OUTPUT for port in self.flat.ports)
+        return 2 * inputs * sum(map(len, self._hops.values())) > MOST_STEPS
 
     def of(self, bit: int, edge: Edge) -> dict[End, Inside]:
         """Return what an edge of an input reaches."""
@@ -91,12 +98,13 @@ class Ways:
         found = (self.of(tail, one).get((head, other)) for one in Edge for other in Edge)
         return any(inside is not None and inside.written for inside in found)
 
-    def senses(self, head: int) -> dict[int, int]:
-        """Return the polarity of each input bit from which a written delay leads to an output bit."""
-        found: dict[int, int] = {}
-        for (tail, one), (bit, other), inside in self.all():
-            if bit == head and inside.written and inside.through:
-                found[tail] = found.get(tail, 0) | (POSITIVE if one == other else NEGATIVE)
+    def senses(self) -> dict[int, dict[int, int]]:
+        """Return for each output bit the inputs from which a written delay leads there, with polarities."""
+        found: dict[int, dict[int, int]] = {}
+        for (tail, one), (head, other), inside in self.all() if self.has_delays else ():
+            if inside.written and inside.through:
+                of_head = found.setdefault(head, {})
+                of_head[tail] = of_head.get(tail, 0) | (POSITIVE if one == other else NEGATIVE)
         return found
 
     def all(self) -> Iterable[tuple[End, End, Inside]]:
@@ -107,19 +115,19 @@ class Ways:
                     yield (bit, edge), head, inside
 
     def _reached(self, start: Vertex) -> dict[End, Inside]:
-        ways: dict[Vertex, Inside] = {start: Inside(ZERO, ZERO, False, True)}
+        ways = {start: Inside(ZERO, ZERO, False, True)}
         order = self._order(start)
         place = {vertex: at for at, vertex in enumerate(order)}
         found: dict[End, Inside] = {}
-        for vertex in order:
+        for at, vertex in enumerate(order):
             inside = ways.get(vertex)
             if inside is None:
                 continue
-            if vertex != start:
-                found.update((end, inside) for end in self._heads.get(vertex, ()))
+            if vertex != start and vertex in self._heads:
+                found.update((end, inside) for end in self._heads[vertex])
             for hop in self._hops.get(vertex, ()):
-                if place[hop.head] > place[vertex]:  # else it closes a loop
-                    ways[hop.head] = _merged(ways.get(hop.head), _after(inside, hop))
+                if place[hop.head] > at:  # else it closes a loop
+                    ways[hop.head] = _merged(ways.get(hop.head), inside, hop)
         return found
 
     def _order(self, start: Vertex) -> list[Vertex]:
@@ -138,16 +146,19 @@ class Ways:
         return done[::-1]
 
 
-def _after(inside: Inside, hop: _Hop) -> Inside:
-    late, early = (_sum(delay, hop.delay) for delay in inside[:2])
-    return Inside(late, early, inside.written or hop.written, inside.through and not hop.launches)
-
-
-def _merged(one: Inside | None, other: Inside) -> Inside:
-    if one is None:
-        return other
-    late, early = larger(one.late, other.late), _smaller(one.early, other.early)
-    return Inside(late, early, one.written or other.written, one.through or other.through)
+def _merged(before: Inside | None, inside: Inside, hop: _Hop) -> Inside:
+    """Return the ways to a hop's end: those known before, and those that come by the hop."""
+    late, early, written, through = inside
+    if hop.delay is not ZERO:
+        late, early = _sum(late, hop.delay), _sum(early, hop.delay)
+    written, through = written or hop.written, through and not hop.launches
+    if before is None:
+        return Inside(late, early, written, through)
+    if late != before.late:
+        late = larger(late, before.late)
+    if early != before.early:
+        early = _smaller(early, before.early)
+    return Inside(late, early, written or before.written, through or before.through)
 
 
 def _sum(a: Triple, b: Triple) -> Triple:

@@ -7,7 +7,7 @@ its hops has a time is for `part_kind` to say.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 
 from tardigate.netlist.body import Body
 from tardigate.netlist.cell_function import Drive, Functions
@@ -41,11 +41,17 @@ def cell_part(module: tree.Module, body: Body, delays: Delays) -> Part:
     names.follow(delayed_signals(written))
     checks = build_checks(written, names)
     ways = Ways(body, names.functions)
+    if ways.has_delays and ways.too_many():
+        names.tell("N185", module.at, len(module.name), name=module.name)
+        ways.has_delays = False
     draft = _Draft(names, place, ways)
     paths = [item for item in items if isinstance(item, tree.Path)]
     rows = build_paths(paths, names, draft.lets_go(), draft.unknown(), body.opaque)
     draft.imply(paths, rows, checks)
     part = draft.part(module.name, rows, checks)
+    if draft.unknown() and ways.too_many():
+        names.tell("N185", module.at, len(module.name), name=module.name)
+        return part
     if rows:
         _tell_uncovered(part, names, ways)
     delays.assumed += times.delays.assumed
@@ -63,9 +69,10 @@ class _Draft:
         self.value: dict[int, int] = {}
         self.enable: dict[int, int] = {}
         self.outputs = [bit for bit, port in enumerate(self.flat.ports) if self._is_output(bit, port.way)]
+        senses = ways.senses()
         for bit in self.outputs:
             drive = self.functions.output(bit)
-            if drive is not None and not self._may_glitch(bit, drive, ways):
+            if drive is not None and not self._may_glitch(drive, senses.get(bit, {})):
                 self.value[bit] = drive.value
                 if drive.enable >= 0:
                     self.enable[bit] = drive.enable
@@ -75,14 +82,14 @@ class _Draft:
             return self.functions.is_driven(bit) or self.names.body.opaque
         return way == Way.OUTPUT
 
-    def _may_glitch(self, bit: int, drive: Drive, ways: Ways) -> bool:
+    def _may_glitch(self, drive: Drive, senses: Mapping[int, int]) -> bool:
         """Tell whether delays inside let an output move against its function, as by two ways of one pin."""
         network = self.names.network
         holds = any(each >= len(self.flat.ports) for each in network.support(drive.value))
-        if not ways.has_delays or drive.enable >= 0 or holds:
+        if not senses or drive.enable >= 0 or holds:
             return False
         allowed = network.polarities(drive.value, {})
-        return any(sense & ~allowed.get(tail, 0) for tail, sense in ways.senses(bit).items())
+        return any(sense & ~allowed.get(tail, 0) for tail, sense in senses.items())
 
     def lets_go(self) -> set[int]:
         """Return the outputs that can be z."""

@@ -108,4 +108,5 @@ def _undriven(
     read[_nets_of(groups, Way.INPUT)] = True
     read[[port.net for port in flat.ports if port.way == Way.OUTPUT]] = True
     for net in np.flatnonzero(read & ~driven).tolist():
-        collector.tell("N202", names.net_place(net), net=names.net(net))
+        hint = names.meant(net, driven) if collector.room("N202") else None
+        collector.tell("N202", names.net_place(net), net=names.net(net), hint=hint)

@@ -87,12 +87,20 @@ class Elaborator:
         )  # fmt: skip
 
     def _tell_same_names(self, columns: Block) -> None:
-        """Tell of two instances with one name (clause 4.11; N115); those in blocks were told of before."""
+        """Tell of two instances with one name, or a net that has one's (clause 4.11; N115, N110).
+
+        Those in blocks were told of before.
+        """
         children = [child for child in self.items.children if "." not in child.name]
         below = [(self.declarer.lookup.find(child.name), child.place) for child in children]
         named = np.flatnonzero(columns.name >= 0)
         numbers = np.concatenate((columns.name[named], np.array([n for n, _ in below], np.int32)))
         places = np.concatenate((columns.place[named], np.array([at for _, at in below], np.int64)))
+        net = self.of_name[numbers]
+        for at in np.flatnonzero((net >= 0) & (numbers >= 0)).tolist():
+            name, other = self.unit.scan.names.text(int(numbers[at])), int(self.variables.place[net[at]])
+            first, second = sorted((int(places[at]), other))
+            self.declarer.twice_at(name, second, first)
         ordered = np.sort(numbers)
         if not ((ordered[1:] == ordered[:-1]) & (ordered[1:] >= 0)).any():
             return

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
 
-from tardigate.netlist.block_names import block_names, declared_names
+from tardigate.netlist.block_names import CHOICES, GENERATE, block_names, declared_names, tell_same_names
 from tardigate.netlist.constants import NotConstantError, Value, evaluate, whole
 from tardigate.netlist.declare import Declarer
 from tardigate.netlist.parameters import parameter_values
@@ -16,11 +16,9 @@ from tardigate.netlist.plain_tree import trees_of
 from tardigate.netlist.scopes import Scope
 from tardigate.syntax import tree
 
-MOST_BLOCKS = 1 << 17
+MOST_BLOCKS = 1 << 16
 """Generate blocks that one module may become."""
 
-_CHOICES = (tree.GenerateIf, tree.GenerateCase)
-GENERATE = (tree.GenerateFor, tree.GenerateIf, tree.GenerateCase)
 _SILENT = (tree.Genvars, *GENERATE)
 
 
@@ -41,7 +39,6 @@ class _Expansion:
         self.scopes: list[Scope] = []
         self._waiting: list[tuple[tree.Item, ...]] = []
         self._runs: dict[tree.Run, list[tree.Declaration | tree.Gates | tree.Instances]] = {}
-        self._full = False
 
     def run(self, root: Scope, items: Iterable[tree.Item]) -> list[Scope]:
         """Fill the module's scope, then the blocks that this makes, and so on."""
@@ -60,11 +57,11 @@ class _Expansion:
         constructs = [item for item in items if isinstance(item, GENERATE)]
         taken = declared_names(self.declarer.unit, items) if constructs else frozenset()
         named = block_names(constructs, taken)
-        self._tell_same_names(items, constructs)
+        tell_same_names(self.declarer, items, constructs)
         for item in items:
             if isinstance(item, tree.GenerateFor):
                 self._loop(scope, item, named[id(item)])
-            elif isinstance(item, _CHOICES):
+            elif isinstance(item, CHOICES):
                 block = self._chosen(scope, item)
                 if block is not None:
                     self._add(scope, block, block.name or named[id(item)], scope.values, scope.looping)
@@ -88,11 +85,9 @@ class _Expansion:
         self, scope: Scope, block: tree.Block, name: str, values: Mapping[str, Value], looping: frozenset[str]
     ) -> None:
         if len(self.scopes) > MOST_BLOCKS:
-            if not self._full:
-                reason = f"the module has more than {MOST_BLOCKS} blocks"
-                self.collector.tell("N118", self.text.span(block.at), reason=reason)
-            self._full = True
-            return
+            reason = f"the module has more than {MOST_BLOCKS} blocks"
+            self.collector.tell("N118", self.text.span(block.at), reason=reason)
+            self.collector.refuse()
         below = Scope(
             len(self.scopes), scope.number, name, f"{scope.prefix}{name}.", values, block.at, scope.genvars,
             looping,
@@ -111,7 +106,7 @@ class _Expansion:
         seen: set[int] = set()
         try:
             index = whole(evaluate(loop.first, values), loop.first.at)
-            while not self._full:
+            while True:
                 values[loop.variable] = Value(index, 32)
                 if not evaluate(loop.condition, values).value:
                     return
@@ -145,62 +140,38 @@ class _Expansion:
         """Return the block that is chosen; one that holds but another choice belongs to this one."""
         while True:
             if isinstance(choice, tree.GenerateIf):
-                value = self.declarer.constant(choice.condition, scope.values).value
-                block = choice.yes if value else choice.no
+                block = choice.yes if self._holds(choice.condition, scope) else choice.no
             else:
                 block = self._case(scope, choice)
             nested = None if block is None or block.begun else block.items[0]
-            if not isinstance(nested, _CHOICES):
+            if not isinstance(nested, CHOICES):
                 return block
             choice = nested
 
+    def _holds(self, condition: tree.Expression, scope: Scope) -> bool:
+        """Tell whether a condition is true; one that is not known to be is false (clause 9.4)."""
+        if isinstance(condition, tree.Number) and condition.unknown | condition.floating:
+            return bool(condition.value)
+        return bool(self.declarer.constant(condition, scope.values).value)
+
     def _case(self, scope: Scope, item: tree.GenerateCase) -> tree.Block | None:
-        otherwise = None
+        defaults = [arm for arm in item.arms if not arm.labels]
+        if len(defaults) > 1:
+            self.collector.tell("N119", self.text.span(item.at))
         for arm in item.arms:
-            if not arm.labels:
-                otherwise = arm.block
-            for label in arm.labels:
-                same = tree.Binary("===", item.subject, label, label.at)
-                if self.declarer.constant(same, scope.values).value:
-                    return arm.block
-        return otherwise
+            if any(self._same(scope, item.subject, label) for label in arm.labels):
+                return arm.block
+        return defaults[0].block if defaults else None
 
-    def _tell_same_names(self, items: Sequence[tree.Item], constructs: Sequence[tree.Item]) -> None:
-        """Tell of two constructs whose blocks share a name, or share one with a net (clause 12.4.2; N110)."""
-        taken: dict[str, int] = {}
-        for item in items:
-            if isinstance(item, tree.Declaration | tree.Genvars):
-                taken.update((named.name, named.at) for named in item.names)
-        for construct in constructs:
-            own: dict[str, int] = {}
-            for block in blocks_of(construct):
-                if block.name:
-                    own.setdefault(block.name, block.at)
-            for name, at in own.items():
-                if name in taken:
-                    self.declarer.twice_at(name, at, taken[name])
-                taken.setdefault(name, at)
+    def _same(self, scope: Scope, subject: tree.Expression, label: tree.Expression) -> bool:
+        """Tell whether two expressions are equal, x and z being values of their own (clause 9.5)."""
+        odd = [isinstance(each, tree.Number) and each.unknown | each.floating for each in (subject, label)]
+        if any(odd):
+            return all(odd) and _digits(subject) == _digits(label)
+        same = tree.Binary("===", subject, label, label.at)
+        return bool(self.declarer.constant(same, scope.values).value)
 
 
-def blocks_of(construct: tree.Item) -> list[tree.Block]:
-    """Return all blocks of a construct, those of choices that belong to it among them."""
-    found: list[tree.Block] = []
-    work: list[tree.Item] = [construct]
-    while work:
-        item = work.pop()
-        blocks: list[tree.Block | None] = []
-        if isinstance(item, tree.GenerateFor):
-            blocks = [item.block]
-        elif isinstance(item, tree.GenerateIf):
-            blocks = [item.yes, item.no]
-        elif isinstance(item, tree.GenerateCase):
-            blocks = [arm.block for arm in item.arms]
-        for block in blocks:
-            if block is None:
-                continue
-            inner = block.items[0] if not block.begun and block.items else None
-            if isinstance(inner, _CHOICES) and isinstance(item, _CHOICES):
-                work.append(inner)
-            else:
-                found.append(block)
-    return found
+def _digits(number: tree.Expression) -> tuple[int, int, int]:
+    assert isinstance(number, tree.Number)
+    return number.value, number.unknown, number.floating

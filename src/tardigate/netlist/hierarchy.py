@@ -48,7 +48,7 @@ class Seat(NamedTuple):
 
 
 class Landing(NamedTuple):
-    """Where a path leads: a scope of the module, or an instance in it (`seat`) and what is left of the path."""
+    """Where a path leads: a scope of the module, or (`seat`) an instance in it, with what is left of it."""
 
     scope: int
     seat: Seat | None = None
@@ -160,6 +160,11 @@ class Hierarchy:
         seat = self.seat(scope, element.partition("[")[0])
         if seat is None or ("[" in element) != (seat.instance.range is not None):
             return None
+        if seat.instance.range is not None:
+            bounds = self.declarer.range(seat.instance.range, self.scopes[scope].values)
+            index = int(element.partition("[")[2][:-1])
+            if bounds is None or not min(bounds) <= index <= max(bounds):
+                return None
         return Landing(scope, seat, element)
 
     # Parameters

@@ -69,7 +69,7 @@ def _of_block(
 ) -> list[Declared]:  # fmt: skip
     """Return what a generate block declares by use: not what it sees declared, or used, before around it."""
     declared: dict[int, Declared] = {}
-    around = chain(list(scopes), scope.number)[:-1]
+    around = chain(scopes, scope.number)[:-1]
     for name, at in connection_names(scope.items):
         number = declarer.lookup.find(name)
         known = of_name[number] >= 0 or found.get(number, at) < at or number in declared

@@ -179,8 +179,11 @@ class Items:
             self.instances.add(kind, at, number, nets)
 
     def _note_name(self, name: str, at: int) -> None:
-        """Tell of two instances with one name in a generate block (clause 4.11; N115)."""
+        """Tell of two things with one name in a generate block (clause 4.11; N115, N110)."""
         first = self._named.setdefault(name, at) if self._prefix else at
+        net = self.wiring.variables.scoped.get((self.wiring.scope, self.lookup.find(name)), -1)
+        if net >= 0:
+            self.wiring.declarer.twice_at(name, at, int(self.wiring.variables.place[net]))
         if first != at:
             related = (Related(self.wiring.span(first, len(name)), "first one here"),)
             self.collector.tell("N115", self.wiring.span(at, len(name)), name=name, related=related)

@@ -9,11 +9,21 @@ import re
 from collections.abc import Sequence
 
 import numpy as np
+from numpy.typing import NDArray
 
 from tardigate.netlist.flat import CONSTANT_NAMES, CONSTANTS, Flat
 from tardigate.netlist.template import Template
+from tardigate.source.diagnostic import did_you_mean
 from tardigate.source.placed import PlacedText
 from tardigate.source.span import Span
+
+_DECLARES = re.compile(
+    rb"\s*(?:wire|uwire|tri|tri0|tri1|triand|trior|trireg|wand|wor|reg|input|output|inout|module)\b"
+)
+"""A statement that declares nets."""
+
+MOST_NEAR = 5000
+"""Nets among which the nearest is looked for."""
 
 _WORD = re.compile(rb"\\[^ \t\r\n\f\v]+|[A-Za-z0-9_$]+")
 
@@ -67,6 +77,22 @@ class Names:
         template = self._template(scope)
         local = raw - int(self._flat.scope_net[scope])
         return _word_span(template.text, int(template.net_place[local]))
+
+    def meant(self, net: int, driven: NDArray[np.bool_]) -> str | None:
+        """Return the hint that names the nearest driven net of the module in which a net is only used.
+
+        `driven` bool[nets]. None for a net that is declared, where none is near, and for a constant.
+        """
+        raw = int(self._flat.net_raw[net])
+        scope = int(np.searchsorted(self._flat.scope_net, raw, "right")) - 1
+        template, first = self._template(scope), int(self._flat.scope_net[scope])
+        data, at = template.text.data, int(template.net_place[raw - first])
+        if net < CONSTANTS or _DECLARES.match(data, data.rfind(b";", 0, at) + 1):
+            return None
+        here = (self._flat.net_raw >= first) & (self._flat.net_raw < first + len(template.net_names))
+        here[:CONSTANTS] = False
+        beside = self._flat.net_raw[np.flatnonzero(here & driven)][:MOST_NEAR]
+        return did_you_mean(template.net_names[raw - first], [template.net_names[i - first] for i in beside])
 
     def _template(self, scope: int) -> Template:
         return self._flat.templates[int(self._flat.scope_template[scope])]

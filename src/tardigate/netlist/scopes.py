@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 
 from tardigate.netlist.constants import Value
@@ -31,7 +31,7 @@ class Scope:
     blocks: dict[str, int] = field(default_factory=dict)
 
 
-def chain(scopes: list[Scope], number: int) -> list[Scope]:
+def chain(scopes: Sequence[Scope], number: int) -> list[Scope]:
     """Return a scope and those around it, the module last."""
     found = []
     while number >= 0:

@@ -146,9 +146,9 @@ def _joined_nets(
         if doubled[template]:
             lost = owner[inside] != outside
             pairs += zip(owner[inside[lost]].tolist(), outside[lost].tolist(), strict=True)
-    pairs += _linked(templates, scopes, net_base, owner)
-    if pairs:
-        owner = _united(owner, pairs)
+    linked = _linked(templates, scopes, net_base, owner)
+    if pairs or linked:
+        owner = _united(owner, [*pairs, *linked], {mine for mine, _ in linked})
     own = owner == np.arange(len(owner))
     number = (np.cumsum(own) - 1).astype(np.int32)
     return number[owner], np.flatnonzero(own)
@@ -174,8 +174,8 @@ def _linked(
     return pairs
 
 
-def _united(owner: NDArray[np.int64], pairs: list[tuple[int, int]]) -> NDArray[np.int64]:
-    """Put nets together pair by pair, the lowest number naming each set."""
+def _united(owner: NDArray[np.int64], pairs: list[tuple[int, int]], aliases: set[int]) -> NDArray[np.int64]:
+    """Put nets together pair by pair, the lowest number that is no alias naming each set."""
     leader: dict[int, int] = {}
 
     def find(net: int) -> int:
@@ -185,7 +185,7 @@ def _united(owner: NDArray[np.int64], pairs: list[tuple[int, int]]) -> NDArray[n
         return net
 
     for one, other in pairs:
-        low, high = sorted((find(one), find(other)))
+        low, high = sorted((find(one), find(other)), key=lambda net: (net in aliases, net))
         leader[high] = low
     moved = np.array(sorted(leader), np.int64)
     table = np.arange(len(owner))

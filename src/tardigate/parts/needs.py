@@ -92,13 +92,20 @@ def _launches(register: Register, head: int) -> Iterator[Need]:
 def _stored_needs(
     part: Part, head: int, state: int, polarity: int, register: Register, values: Values
 ) -> Iterator[Need]:
-    """Give what a stored bit passes on: the clock's edge, clear and set, a latch's data while it is open."""
-    yield from _launches(register, head)
+    """Give what a stored bit passes on: the clock's edge, clear and set, a latch's data while it is open.
+
+    What the clock lets in is seen with the clock at the level after its edge: a latch before the gate that
+    its own clock closes passes nothing on while it is open.
+    """
+    network, level = part.network, 1 - register.edge
+    seen = network.polarities(function_of(part, head), {**values, register.clock: level}).get(state, 0)
+    if seen:
+        yield from _launches(register, head)
     stored = {bit for each in part.registers for bit in each.stores}
-    if register.latch:
-        for tail, through in part.network.polarities(register.stores[state], values).items():
+    if register.latch and seen:
+        for tail, through in network.polarities(register.stores[state], values).items():
             if tail >= 0 and tail not in stored:
-                yield from _data_needs(tail, head, composed(through, polarity), NOBODY)
+                yield from _data_needs(tail, head, composed(through, seen), NOBODY)
     for node, level in ((register.clear, Edge.FALL), (register.set, Edge.RISE)):
         for tail, active in part.network.polarities(node, values).items() if node >= 0 else ():
             if tail >= 0 and tail not in stored:

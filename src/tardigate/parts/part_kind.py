@@ -57,6 +57,7 @@ def part_kind(
         for need, row in matched.timed
     ]
     hops += [_hop(need, own(need.transition), choice, words) for need in matched.missing]
+    hops = list(dict.fromkeys(hops))  # two states may have one time
     ways = [pin.way for pin in part.pins for _ in range(pin.width)]
     lets_go = bool(part.enables) or any("Z" in row.transitions[0] for row in part.rows)
     kind = make_kind(

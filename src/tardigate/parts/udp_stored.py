@@ -143,7 +143,7 @@ def _latch(view: _View) -> Held | None:
 
 
 def _held_while_open(view: _View, clock: int, level: int) -> int:
-    """Return in how many states an input at a level lets the output be held; -1 if that opens no latch.
+    """Return in how many states an input at a level leaves the output as it is; -1 if it opens no latch.
 
     It does where the other inputs force both values then, and while it is at the other level at most what
     they force then as well; and where another input moves the output.
@@ -160,7 +160,7 @@ def _held_while_open(view: _View, clock: int, level: int) -> int:
         for i in range(len(view.steps.after))
         if i != clock
     )
-    return int((through == NONE).sum()) if moved else -1
+    return int((through == NONE)[~silent[shut == NONE]].sum()) if moved else -1
 
 
 def _moved(view: _View, i: int) -> NDArray[np.bool_]:
@@ -169,6 +169,14 @@ def _moved(view: _View, i: int) -> NDArray[np.bool_]:
     moved: NDArray[np.bool_] = (before == present) & (view.forced == ONE - present)
     moved &= view.steps.after[i] == view.forced
     return moved
+
+
+def _while_open(view: _View, clock: int, level: int) -> Values:
+    """Return what a latch's output is while its clock is at a level: forced, or as it opens, or else kept."""
+    opened, after = half(view.forced, clock, level), half(view.steps.after[clock], clock, level)
+    kept = (after == X) & ~half(_silent(view.steps), clock, level)
+    after = np.where(kept, half(_present(view.steps), clock, level), after)
+    return np.where(opened == NONE, after, opened)
 
 
 def _silent(steps: Steps) -> NDArray[np.bool_]:
@@ -186,9 +194,8 @@ def _held(view: _View, clock: int, end: int, latch: bool) -> Held:
         for value in (ZERO, ONE)
     )
     data = half(view.steps.after[clock], clock, end)
-    if latch:  # also where its own opening gives x
-        opened = half(view.forced, clock, end)
-        data = np.where(opened == NONE, data, opened)
+    if latch:
+        data = _while_open(view, clock, end)
     data = np.where(shut == NONE, data, X).astype(np.uint8)
     for variable in range(len(data).bit_length() - 1):
         if _matters(clear, variable) or _matters(set_, variable):

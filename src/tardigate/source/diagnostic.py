@@ -25,7 +25,9 @@ class Related(NamedTuple):
 class Diagnostic:
     """One fault of the input: what is wrong, where, what belongs to it, and what to do.
 
-    `count` says how many like it there are; the others are not listed.
+    `count` says how many like it there are; the others are not listed. It can fill a `result` of SARIF 2.1.0
+    (3.27): `ruleId` is `code`, `level` `severity`, `message.text` `message`, `locations` `span`,
+    `relatedLocations` `related` with their labels, `occurrenceCount` `count`; `span` tells what a region is.
     """
 
     code: str

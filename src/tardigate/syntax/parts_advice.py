@@ -137,7 +137,7 @@ def _open_blocks(before: list[Token]) -> tuple[list[Token], list[Token]]:
             if blocks[-1].kind in BLOCKS:
                 statement = []
         elif token.kind == "RBRACE":
-            if blocks.pop().kind in BLOCKS:
+            if not blocks or blocks.pop().kind in BLOCKS:  # one too many was told before
                 statement = []
         elif token.kind == "SEMICOLON":
             statement = []

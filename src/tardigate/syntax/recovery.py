@@ -266,6 +266,10 @@ class _Pass:
             stack = self._replayed()
             if self._carries(stack, 0):
                 return Repair("drop before", ",")
+        if self.statement and found.text in self.language.starters | self.language.closers:
+            stack = self.stack[:]
+            if self.scout.step(stack, self.scout.kinds[STOP]) and self.scout.step(stack, found.kind):
+                return Repair("insert", STOP)
         for sign in self.language.signs:
             stack = self.stack[:]
             if self.scout.step(stack, self.scout.kinds.get(sign, "")) and self._carries(stack, 0):

@@ -26,7 +26,11 @@ class TreeMaker(CellMaker):
         ports = child_of(children[1:], (_Ports, tree.PlainPorts))
         items = _items(children[1:])
         return tree.Module(
-            word_of(name), tuple(parameters), ports if ports is not None else (), items, self._at(name),
+            word_of(name),
+            tuple(parameters),
+            ports if ports is not None else (),
+            items,
+            self._at(name),
             tuple(self._generated),
         )
 
@@ -221,7 +225,10 @@ class TreeMaker(CellMaker):
         self._generated += [item for item in items if isinstance(item, tree.Run)]
 
     def genvars(self, children: list[Any]) -> tree.Genvars:
-        return tree.Genvars(children[0], children[0][0].at)
+        return tree.Genvars(tuple(children), children[0].at)
+
+    def genvar_name(self, children: list[Any]) -> tree.Named:
+        return tree.Named(word_of(children[0]), None, self._at(children[0]))
 
     def begun_block(self, children: list[Any]) -> tree.Block:
         name = children[0] if children and isinstance(children[0], Token) else None
@@ -230,17 +237,13 @@ class TreeMaker(CellMaker):
         at = self._at(name) if name is not None else items[0].at if items else -1
         return tree.Block(word_of(name) if name is not None else "", items, True, at)
 
-    def lone_block(self, children: list[Any]) -> tree.Block | None:
-        item = children[0]
-        return None if item is None else tree.Block("", (item,), False, item.at)
+    def lone_block(self, children: list[Any]) -> tree.Block:
+        return tree.Block("", (children[0],), False, children[0].at)
 
     def generate_for(self, children: list[Any]) -> tree.GenerateFor:
         variable, first, condition, stepped, following, block = children
         at = self._at(variable)
-        return tree.GenerateFor(
-            word_of(variable), first, condition, word_of(stepped), following,
-            block or tree.Block("", (), False, at), at,
-        )  # fmt: skip
+        return tree.GenerateFor(word_of(variable), first, condition, word_of(stepped), following, block, at)
 
     def generate_if(self, children: list[Any]) -> tree.GenerateIf:
         no = children[2] if len(children) > 2 else None

@@ -39,7 +39,7 @@ def _registers(text: str) -> list[Register]:
         if kind.name == "register":
             nets = [names.net(net) for net in flat.pin_net[flat.pin_start[inst] : flat.pin_start[inst + 1]]]
             controls = tuple(
-                (nets[row], 1 - int(kind.from_edge[row]), kind.to_edge[row] == Edge.RISE)
+                (nets[row], 1 - int(kind.from_edge[row]), bool(kind.to_edge[row] == Edge.RISE))
                 for row in range(2, kind.hops)
             )
             data = tuple(nets[2 + len(controls) :])

@@ -79,15 +79,13 @@ def _move(targets: list[str], values: list[str]) -> Move:
 
 
 TARGETS = st.lists(st.sampled_from(REGS), min_size=1, max_size=3, unique=True)
-VALUES = st.lists(st.sampled_from([*INPUTS, *INPUTS, *REGS, "1'b0", "1'b1"]), min_size=3, max_size=3)
+VALUES = st.lists(st.sampled_from([*INPUTS, *NETS, "1'b0", "1'b1"]), min_size=3, max_size=3)
 MOVES = st.builds(_move, TARGETS, VALUES)
 
 
 def _compound(inner: st.SearchStrategy[Statement]) -> st.SearchStrategy[Statement]:
     branch = inner | st.none()
-    conditions = st.builds(
-        If, st.sampled_from([*INPUTS, *REGS]), st.integers(0, 1), st.integers(0, 9), branch, branch
-    )
+    conditions = st.builds(If, st.sampled_from(NETS), st.integers(0, 1), st.integers(0, 9), branch, branch)
     return conditions | st.lists(inner, max_size=3).map(tuple)
 
 

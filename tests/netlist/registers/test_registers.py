@@ -15,7 +15,6 @@ reg [3:0] q;
 reg p;
 """
 
-
 Read = Callable[[str], list[Any]]
 Lines = Callable[[str], list[str]]
 Refusal = Callable[..., list[tuple[str, str]]]
@@ -32,9 +31,7 @@ def lines(registers: Read) -> Callable[[str], list[str]]:
     def told(body: str) -> list[str]:
         found = []
         for each in registers(module(body)):
-            controls = [
-                f"{'set' if sets else 'clear'}{'-+'[level]}{net}" for net, level, sets in each.controls
-            ]
+            words = [("clear", "set")[sets] + "-+"[level] + net for net, level, sets in each.controls]
             found.append(" ".join([f"{each.q}{'+-'[each.edge]}{each.clock}", *words, *each.data]))
         return found
 
