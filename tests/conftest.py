@@ -77,7 +77,6 @@ def _flat(ports: str, *parts: tuple[str, Kind, str]) -> Flat:
     assert len(pin_net) == pin_start[-1], "as many nets as pins"
     text = PlacedText.whole(SourceFile("board.v", "".join(lines).encode()))
     places = np.cumsum([0, *(len(line.encode()) for line in lines)]).astype(np.int64)[:-1]
-    none = np.empty(0, np.int32)
     template = Template(
         module="board",
         parameters="",
@@ -92,8 +91,6 @@ def _flat(ports: str, *parts: tuple[str, Kind, str]) -> Flat:
         inst_names=[name for name, _, _ in parts],
         inst_place=places,
         children=(),
-        wired=none,
-        driven=none,
     )
     zero = np.zeros(1, np.int32)
     return Flat(
@@ -140,6 +137,9 @@ def _random_text(name: str = "random_verilog") -> ModuleType:
     sys.modules[spec.name] = module  # dataclasses look their module up
     spec.loader.exec_module(module)
     return module
+
+
+_random_text("random_pieces")  # random_structure imports it
 
 
 @pytest.fixture(scope="session")

@@ -427,3 +427,9 @@ def test_14_4_delays_of_a_primitive_and_of_buffers_before_it(elaborate: Callable
         "part cell_ PARTS register",
         "  ck rise -> q rise 4:4:4 launches", "  ck rise -> q fall 8:8:8 launches", "  sinks d",
     ]  # fmt: skip
+
+
+def test_a_condition_may_be_as_deep_as_it_likes(cell: Cell) -> None:
+    deep = "(" * 3000 + "b" + ")" * 3000 + " ^ b" * 3000
+    found = cell(*EITHER, f"if ({'~' * 3000}{deep}) (a => y) = 3; ifnone (a => y) = 4; (b => y) = 1;")
+    assert {t[0] for key, t in found.items() if key[0] == "a"} == {3, 4}

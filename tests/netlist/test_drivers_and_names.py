@@ -71,9 +71,9 @@ def test_a_parts_file_among_the_sources_is_recognised() -> None:
     assert any(d.code == "V003" and "--parts" in d.hint for d in told("family F { }"))
 
 
-def test_a_syntax_error_is_told_before_the_doubt_that_it_causes() -> None:
+def test_a_missing_name_is_told_instead_of_the_doubt_that_it_causes() -> None:
     verilog = f"module m(input a, output y); half (a, y); endmodule {HALF}"
-    assert "V001" in [d.code for d in told(verilog)]
+    assert "N108" in [d.code for d in told(verilog)]
 
 
 def test_an_unknown_grade_is_refused() -> None:

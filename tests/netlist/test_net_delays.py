@@ -39,7 +39,7 @@ def test_a_delay_for_each_bit_and_each_name(instances: Lines) -> None:
     wires = [line for line in instances(text) if line.startswith("wire ")]
     assert wires == [
         "wire wire:2: out=v[0], in=assign:2.1", "wire wire:2: out=v[1], in=assign:2.0",
-        "wire wire:2: out=w[0], in=assign:2.3", "wire wire:2: out=w[1], in=assign:2.2",
+        "wire wire:2: out=w[0], in=assign:2.2", "wire wire:2: out=w[1], in=assign:2.3",
     ]  # fmt: skip
 
 
@@ -72,6 +72,23 @@ def test_7_14_a_bus_that_is_let_go_takes_the_turn_off_delay(
     text = f"module board(input a, e, output y);\ntri {delay} w;\n{driver};\nbuf #100 h (y, w);\nendmodule\n"
     settled = tardigate.read_text(text).settle().outputs()[0]
     assert (settled.settles_ns, settled.stirs_ns) == (100 + settles, 100 + stirs)
+
+
+@pytest.mark.parametrize(
+    ("assignment", "settles", "stirs"),
+    [
+        ("#(2,3,9) y = e ? a : 1'bz", 9, 2),
+        ("#(2,3) y = e ? a : 1'bz", 3, 2),
+        ("#(4,5,1) y = a", 5, 1),
+        ("#(2,3,9) y = a & e", 3, 2),
+    ],
+)
+def test_6_1_3_the_third_delay_of_an_assignment_that_may_be_z(
+    assignment: str, settles: float, stirs: float
+) -> None:
+    text = f"module board(input a, e, output y);\nassign {assignment};\nendmodule\n"
+    settled = tardigate.read_text(text).settle().outputs()[0]
+    assert (settled.settles_ns, settled.stirs_ns) == (settles, stirs)
 
 
 def test_7_14_2_the_third_delay_of_a_trireg_is_its_decay() -> None:

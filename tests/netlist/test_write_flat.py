@@ -53,7 +53,7 @@ def _told(flat: Flat) -> list[object]:
         instances.append(("" if ":" in name else name, nets, repr(held)))
     instances.sort(key=lambda instance: "'register', 'operator'" in instance[2])
     nets = [names.net(net) for net in range(flat.nets)]
-    return [nets, flat.ports, instances, flat.wired.tolist(), flat.driven.tolist()]
+    return [nets, flat.ports, instances, {word: nets.tolist() for word, nets in flat.typed.items()}]
 
 
 @pytest.fixture

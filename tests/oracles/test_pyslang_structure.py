@@ -35,6 +35,7 @@ from pyslang.syntax import SyntaxTree
 
 from tardigate.netlist.flat import CONSTANTS, OPEN, Flat
 from tardigate.netlist.names import Names
+from tardigate.parts.gates import NET, THREE_STATE_NET
 from tardigate.pipeline import Request, load
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.files import SourceFile
@@ -54,6 +55,9 @@ ERRORS = {
     "RedefinitionDifferentType", "UnknownSystemName",
 }  # fmt: skip
 """What the other side takes as errors unless told otherwise, beside those that always are."""
+
+ITSELF = -1
+"""In place of a terminal: the net of that name."""
 
 Bit = str | None
 Pins = dict[tuple[str, int], Bit]
@@ -100,6 +104,7 @@ class Other:
                     work.append((f"{path}{name}.", symbol))
                     if isinstance(symbol, InstanceSymbol):
                         self._ports(symbol)
+        seen.pins.update({(bit, ITSELF): bit for bit in seen.nets})
         found = {pin: bit and self._find(bit) for pin, bit in seen.pins.items()}
         return seen._replace(pins=found)
 
@@ -222,6 +227,16 @@ def _text_number(text: str) -> object:
     return float(text) if "." in text else int(text)
 
 
+def _delayed(flat: Flat) -> dict[int, int]:
+    """Return the net behind each delay of a net: one net in the source, two here."""
+    found = {}
+    for inst in range(flat.instances):
+        if flat.kinds[flat.inst_kind[inst]].name in (NET, THREE_STATE_NET):
+            after, before = flat.pin_net[flat.pin_start[inst] : flat.pin_start[inst + 1]].tolist()[:2]
+            found[before] = after
+    return found
+
+
 def _ours(flat: Flat) -> Seen:
     names = Names(flat)
     scopes: dict[str, tuple[str, dict[str, object]]] = {}
@@ -231,19 +246,25 @@ def _ours(flat: Flat) -> Seen:
         nets.update(path + name for name in template.net_names[CONSTANTS:] if ":" not in name)
         pairs = re.findall(r'([^\s=,]+)=("[^"]*"|[^,]*)', template.parameters)
         scopes[path] = (template.module, {name: _text_number(value) for name, value in pairs})
-    pins: Pins = {}
+    pins, behind = Pins(), _delayed(flat)
     for inst in range(flat.instances):
         if flat.kinds[flat.inst_kind[inst]].group == "operator":
             continue
-        for at, net in enumerate(flat.pin_net[flat.pin_start[inst] : flat.pin_start[inst + 1]].tolist()):
+        for at, number in enumerate(flat.pin_net[flat.pin_start[inst] : flat.pin_start[inst + 1]].tolist()):
+            net = behind.get(number, number)
             pins[names.instance(inst), at] = None if net == OPEN else str(net) if net < 2 else f"net {net}"
+    named = ((names.net(net), net) for net in range(CONSTANTS, flat.nets))
+    pins.update(
+        {(name, ITSELF): f"net {net}" for name, net in named if ":" not in name and net not in behind}
+    )
     return Seen(scopes, nets, pins)
 
 
 def _compare(ours: Seen, other: Seen) -> None:
     assert ours.scopes == other.scopes
     assert ours.nets == other.nets
-    assert ours.pins.keys() == other.pins.keys()
+    assert ours.pins.keys() <= other.pins.keys()
+    assert all(terminal == ITSELF for _, terminal in other.pins.keys() - ours.pins.keys())
     there: dict[Bit, Bit] = {bit: bit for bit in ("0", "1", None)}
     back = dict(there)
     for pin, net in ours.pins.items():
@@ -266,8 +287,8 @@ def _flat(text: str) -> Flat:
 
 @pytest.mark.parametrize("part", range(4))
 def test_random_structures(part: int, random_structure: Callable[..., str]) -> None:
-    @settings(max_examples=60, deadline=None, derandomize=True)
-    @given(st.integers(0, 2**32 - 1), st.integers(1, 8))
+    @settings(max_examples=40, deadline=None, derandomize=True)
+    @given(st.integers(0, 2**32 - 1), st.integers(1, 6))
     def law(seed: int, size: int) -> None:
         text = random_structure(4 * seed + part, size)
         other = Other(text)

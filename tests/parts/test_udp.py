@@ -2,17 +2,15 @@
 
 from itertools import product
 
-import pytest
 from hypothesis import assume, given
 from hypothesis import strategies as st
 
 from tardigate.parts.by_kind import ByKind, Choice
 from tardigate.parts.function import NEGATIVE, POSITIVE, Network
-from tardigate.parts.kind import Edge, Kind, Origin, Way
-from tardigate.parts.model import Part, Place
+from tardigate.parts.kind import Edge
+from tardigate.parts.model import Place
 from tardigate.parts.part_kind import part_kind
-from tardigate.parts.source_delay import SourceDelay
-from tardigate.parts.udp import UNKNOWN, Stored, function_node, stored, udp_part
+from tardigate.parts.udp import Stored, function_node, stored, udp_part
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.files import SourceFile
 from tardigate.source.placed import PlacedText
@@ -304,109 +302,9 @@ def test_a_part_has_the_hops_of_its_register(recipe: Recipe) -> None:
     primitive = read("".join(recipe.order), recipe.rows(), True)
     part, reason = udp_part(primitive, PLACE)
     assert not reason
-    kind = made(part)
+    kind = part_kind(part, 0, {}, Choice(ByKind(), ByKind(), ByKind()))
     launching = {primitive.ports[tail] for tail in kind.hop_from[kind.launches]}
     passing = {primitive.ports[tail] for tail in kind.hop_from[~kind.launches]}
     assert launching == {"g"}
     assert set(recipe.controls) <= passing <= set(recipe.data + recipe.controls)
     assert {primitive.ports[pin] for pin in kind.sinks} == passing
-
-
-# What is not understood
-
-
-@pytest.mark.parametrize(
-    ("rows", "words"),
-    [
-        (["r?:?:1;", "?r:?:0;", "f?:?:-;", "?f:?:-;"], "changes of `a` and `b` all store"),
-        (["*0:?:0;", "*1:?:1;", "?*:?:-;"], "both edges of `a` store"),
-        (["r0:?:0;", "r1:?:1;", "01:?:1;", "f0:?:-;"], "an edge of `a` stores, and its level"),
-        (["??:?:-;"], "no change of an input gives the output both values"),
-        (["r?:?:1;", "f?:1:1;"], ""),
-    ],
-)
-def test_why_a_table_is_nothing_of_the_kind(rows: list[str], words: str) -> None:
-    part, reason = udp_part(read("ab", rows, True), PLACE)
-    assert reason.startswith(words)
-    assert bool(reason) == bool(words)
-    if words:
-        assert (part.functions, part.registers, part.rows) == ({}, (), ())
-        kind = made(part)
-        assert kind.unknown_function
-        assert hops(kind) == {(pin, a, b) for pin in "ab" for a, b in product(Edge, Edge)}
-
-
-# Parts and kinds
-
-
-def made(part: Part, **more: object) -> Kind:
-    choice = Choice(ByKind(), ByKind(), ByKind())
-    return part_kind(part, 0, {}, choice, **more)  # type: ignore[arg-type]
-
-
-def hops(kind: Kind) -> set[tuple[str, int, int]]:
-    rows = zip(kind.hop_from, kind.from_edge, kind.to_edge, strict=True)
-    return {(kind.pins[tail], int(edge), int(to)) for tail, edge, to in rows}
-
-
-SELECT = ["0 0 ? : 0;", "0 1 ? : 1;", "1 ? 0 : 0;", "1 ? 1 : 1;"]
-
-
-def test_pins_and_hops_of_a_function() -> None:
-    part, reason = udp_part(read("sab", SELECT, False), PLACE)
-    assert (reason, part.name, part.pin_bits) == ("", "u", 4)
-    assert [(pin.name, pin.way) for pin in part.pins] == [
-        ("q", Way.OUTPUT), ("s", Way.INPUT), ("a", Way.INPUT), ("b", Way.INPUT),
-    ]  # fmt: skip
-    kind = made(part)
-    both = {("s", a, b) for a, b in product(Edge, Edge)}
-    assert hops(kind) == both | {(pin, edge, edge) for pin in "ab" for edge in Edge}
-    assert not kind.register
-    assert not kind.unknown_function
-
-
-def test_a_part_without_rows_takes_the_delay_of_its_instance() -> None:
-    part, _ = udp_part(read("sab", SELECT, False), PLACE)
-    delay = SourceDelay(((1.0, 2.0, 3.0), (4.0, 5.0, 6.0)), "#(1:2:3,4:5:6)")
-    kind = made(part, delay=delay)
-    assert kind.origin == Origin.SOURCE
-    assert kind.source == delay
-    for edge, triple in zip(kind.to_edge, kind.delays.tolist(), strict=True):
-        assert tuple(triple) == delay.values[edge]
-
-
-def test_no_delay_is_missing_unless_it_is_a_wire() -> None:
-    part, _ = udp_part(read("sab", SELECT, False), PLACE)
-    assert made(part).origin == Origin.MISSING
-    kind = made(part, wired=True)
-    assert kind.origin == Origin.WIRE
-    assert not kind.delays.any()
-
-
-def test_a_delay_times_the_launches_of_a_register() -> None:
-    rows = ["0 r : ? : 0;", "1 r : ? : 1;", "? f : ? : -;", "* ? : ? : -;"]
-    part, _ = udp_part(read("dc", rows, True), PLACE)
-    kind = made(part, delay=SourceDelay(((7.0, 7.0, 7.0),), "#7"))
-    assert kind.register
-    assert hops(kind) == {("c", Edge.RISE, Edge.RISE), ("c", Edge.RISE, Edge.FALL)}
-    assert kind.launches.all()
-    assert (kind.delays == 7.0).all()
-    assert [kind.pins[pin] for pin in kind.sinks] == ["d"]
-
-
-def test_operands_may_be_any_nodes_and_x_any_bit() -> None:
-    network = Network()
-    a, b = network.add("bit", 3), network.add("bit", 4)
-    inverted = network.add("not", a)
-    root = function_node(network, read("ab", ["1?:1;", "00:0;"], False), [inverted, b])
-    assert network.polarities(root, {}) == {3: NEGATIVE, 4: POSITIVE, UNKNOWN: POSITIVE}
-
-
-def test_sixteen_inputs_are_looked_at_one_by_one() -> None:
-    rows = ["r" + "0" * 15 + ":?:0;", "r" + "?" * 14 + "1:?:1;", "f" + "?" * 15 + ":?:-;"]
-    rows += ["?" * i + "*" + "?" * (15 - i) + ":?:-;" for i in range(1, 16)]
-    part, reason = udp_part(read("abcdefghijklmnop", rows, True), PLACE)
-    assert not reason
-    (register,) = part.registers
-    assert register.clock == 1
-    assert part.network.support(register.stores[0]) == {16}

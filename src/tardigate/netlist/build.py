@@ -50,6 +50,9 @@ def build(
     shop.cells = Cells(shop)
     modules.readable(found, collector)
     collector.refuse()
+    if shop.is_cell(found):
+        collector.tell("N107", modules.span(found), name=found)
+    collector.refuse()
     first = shop.number(found, Overrides({}))
     templates = shop.elaborate_all()
     tell_ring(templates, collector)

@@ -43,7 +43,6 @@ class CellNames:
         self.functions = Functions(body, self.network, {}, place)
         self._made: list[int] = []
         self._free: dict[int, int] = {}
-        self._conditions: dict[tree.Expression, int] = {}
         self._expressions = Expressions(self.wiring, self._emit)
 
     def follow(self, signals: Sequence[tuple[tree.Reference, tree.Reference]]) -> None:
@@ -85,18 +84,12 @@ class CellNames:
 
     def node(self, condition: tree.Expression) -> int:
         """Return the node of a condition; see `CellDesk`."""
-        found = self._conditions.get(condition)
-        if found is None:
-            found = self._conditions[condition] = self._condition(condition)
-        return found
-
-    # Conditions
-
-    def _condition(self, condition: tree.Expression) -> int:
         if not _is_read(condition):
             return self.functions.maker.free()
         nets = self._expressions.nets(condition)
         return self._node(nets[0]) if nets else self.functions.maker.free()
+
+    # Conditions
 
     def _node(self, net: int) -> int:
         """Return the node of a local net or of a result, a free one where that is unknown."""

@@ -43,7 +43,7 @@ def timed_rows(part: Part, ways: Ways) -> tuple[Row, ...]:
         for need in (*matched.missing, *_lapsing(part.network, matched, whens)):
             rows += _inner(need, ways, part.place)
     rows += _structural(unknown, part.place, matched, ways)
-    return tuple(dict.fromkeys(rows))
+    return tuple({row[:-1]: row for row in rows}.values())  # all but the place
 
 
 def _lapsing(network: Network, matched: Matched, whens: Mapping[int, int]) -> Iterator[Need]:

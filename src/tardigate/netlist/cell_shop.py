@@ -11,7 +11,7 @@ from contextlib import ExitStack
 
 from tardigate.netlist.body import Body, Inner
 from tardigate.netlist.cells import cell_part
-from tardigate.netlist.constants import Value
+from tardigate.netlist.constants import Value, rounded
 from tardigate.netlist.hierarchy import Overrides
 from tardigate.netlist.interface import Interface
 from tardigate.netlist.rings import tell_ring
@@ -19,26 +19,11 @@ from tardigate.netlist.shop import Shop
 from tardigate.netlist.stamp import TooLargeError, stamp
 from tardigate.netlist.template import Template
 from tardigate.netlist.wiring import Wiring
-from tardigate.parts import gates
-from tardigate.parts.by_kind import ByKind
-from tardigate.parts.kind_maker import Delay
 from tardigate.parts.library import Library
 from tardigate.parts.model import Part
 from tardigate.parts.source_delay import SourceDelay
+from tardigate.source.diagnostic import Diagnostic
 from tardigate.syntax import tree
-
-
-class _BodyLibrary(Library):
-    """A library in which nothing takes time but what the source says."""
-
-    def __init__(self) -> None:
-        super().__init__([], [])
-
-    def _delay_of(self, _table: ByKind, _name: str, _inputs: int) -> gates.DelayOf:
-        def none(_transition: str) -> Delay:
-            return gates.NO_DELAY
-
-        return none
 
 
 class Cells:
@@ -46,6 +31,7 @@ class Cells:
 
     def __init__(self, outer: Shop) -> None:
         self._outer = outer
+        self._library = outer.library.without_times()
         self._parts: dict[object, Part | None] = {}
         self._making: list[str] = []
 
@@ -63,7 +49,7 @@ class Cells:
         return self._parts[key]
 
     def _made(self, module: str, parameters: Mapping[str, Value]) -> Part | None:
-        shop = _BodyShop(self._outer, self)
+        shop = _BodyShop(self._outer, self, self._library)
         number = shop.number(module, Overrides(dict(parameters)))
         templates = shop.elaborate_all()
         self._outer.assumed += shop.assumed
@@ -81,12 +67,25 @@ class Cells:
 class _BodyShop(Shop):
     """The shop of one cell's body."""
 
-    def __init__(self, outer: Shop, cells: Cells) -> None:
-        super().__init__(outer.modules, _BodyLibrary(), outer.collector)
-        self._outer = outer
+    def __init__(self, outer: Shop, cells: Cells, library: Library) -> None:
+        super().__init__(outer.modules, library, outer.collector)
+        self.lookups, self.tables = outer.lookups, outer.tables
         self.cells = self._cells = cells
         self.primitives = outer.primitives
         self.inner: dict[int, Inner] = {}
+        self.is_opaque = False
+
+    def no_register(self, _told: Diagnostic) -> None:
+        """Take an `always` that is no register for procedural code that nobody reads."""
+        self.is_opaque = True
+
+    def part(self, module: str, parameters: Mapping[str, Value]) -> tuple[Interface, int] | None:
+        """Return the interface and kind of a described part inside the cell."""
+        found = super().part(module, parameters)
+        if found is not None and self.library.describes(module):
+            values = {name: rounded(value) for name, value in parameters.items()}
+            self.inner[found[1]] = Inner(*self.library.part(module, values))
+        return found
 
     def cell(self, module: str, parameters: Mapping[str, Value]) -> tuple[Interface, int] | None:
         """Return the interface and kind of a cell inside the cell."""
@@ -114,7 +113,9 @@ class _BodyShop(Shop):
         hierarchy = self.hierarchy(number)
         table = kept.enter_context(self.tables.of(hierarchy.declarer.unit, hierarchy.variables))
         wiring = Wiring(hierarchy.declarer, hierarchy.variables, hierarchy.scopes, table, hierarchy)
-        opaque = bool(self.strangers.modules) or any(
-            isinstance(item, tree.Opaque) for scope in hierarchy.scopes for item in scope.items
+        opaque = (
+            self.is_opaque
+            or bool(self.strangers.modules)
+            or any(isinstance(item, tree.Opaque) for scope in hierarchy.scopes for item in scope.items)
         )
         return Body(flat, wiring, self.inner, opaque)

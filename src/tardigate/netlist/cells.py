@@ -25,9 +25,10 @@ from tardigate.parts.timing_checks import build_checks, delayed_signals
 from tardigate.syntax import tree
 
 
-def is_cell(module: tree.Module) -> bool:
-    """Tell whether a module has a specify block."""
-    return any(isinstance(item, tree.Specify) for item in module.items)
+def says_times(module: tree.Module) -> bool:
+    """Tell whether a module has a specify block with paths or checks, and so is a part."""
+    blocks = [item for item in module.items if isinstance(item, tree.Specify)]
+    return any(isinstance(item, tree.Path | tree.TimingCheck) for block in blocks for item in block.items)
 
 
 def cell_part(module: tree.Module, body: Body, delays: Delays) -> Part:

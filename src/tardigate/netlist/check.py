@@ -20,6 +20,12 @@ from tardigate.source.diagnostic import Related
 
 _SHOWN = 4
 
+WIRED = ("wand", "wor", "triand", "trior")
+"""Types of nets that say what several drivers come to (clause 4.6.2)."""
+
+DRIVEN = ("tri0", "tri1", "supply0", "supply1", "pullup", "pulldown")
+"""What holds a net without any driver (clauses 4.6.4, 4.6.5, 7.8)."""
+
 
 def check_structure(flat: Flat, names: Names, collector: Collector, *, complete: bool) -> None:
     """Tell what is wrong; without `complete` (undescribed instances) nets without driver are passed over."""
@@ -32,7 +38,9 @@ def check_structure(flat: Flat, names: Names, collector: Collector, *, complete:
     np.add.at(drivers, inputs, 1)
     np.add.at(held, inputs, 1)
     clash = (drivers > 1) & (held > 0)
-    clash[flat.wired] = False
+    clash[flat.of_type(WIRED)] = False
+    single = flat.of_type(("uwire",))
+    clash[single] = drivers[single] > 1
     clash[:CONSTANTS] = drivers[:CONSTANTS] > 0
     for clashing in np.flatnonzero(clash).tolist():
         _tell_clash(flat, names, collector, clashing, np.sort(driving[drivers_of == clashing]))
@@ -101,7 +109,7 @@ def _undriven(
     """Tell of nets that something reads and nothing drives."""
     driven = drivers > 0
     driven[:CONSTANTS] = True
-    driven[flat.driven] = True
+    driven[flat.of_type(DRIVEN)] = True
     driven[[port.net for port in flat.ports if port.way == Way.INOUT]] = True
     driven[_nets_of(groups, Way.INOUT)] = True
     read = np.zeros(flat.nets, bool)

@@ -20,12 +20,12 @@ from tardigate.netlist.lookup import Lookup
 from tardigate.netlist.parameters import parameter_values
 from tardigate.netlist.scopes import Scope
 from tardigate.netlist.variables import (
-    DRIVEN,
     NO_DIRECTION,
     RANGED,
     REGISTER,
     SIGNED,
-    WIRED,
+    TYPE,
+    TYPES,
     Declared,
     Shape,
     Variables,
@@ -47,8 +47,7 @@ MOST_BITS = 1 << 25
 WAYS = {"input": Way.INPUT, "output": Way.OUTPUT, "inout": Way.INOUT}
 _WORDS = {"integer": 32, "time": 64}
 _VARIABLES = ("integer", "time", "real", "realtime", "event")
-_WIRED = ("wand", "wor", "triand", "trior")
-_DRIVEN = ("supply0", "supply1", "tri0", "tri1")
+_TYPES = {word: number << TYPE for number, word in enumerate(TYPES)}
 
 
 @dataclass(slots=True)
@@ -183,7 +182,7 @@ class Declarer:
             ranges = (tree.Range(_number(_WORDS[item.net_type] - 1), _number(0), named.at),)
         found = [self.range(bounds, values) for bounds in ranges]
         bounds = tuple(bound for bound in found if bound is not None)
-        flags = SIGNED * item.signed | WIRED * (item.net_type in _WIRED) | DRIVEN * (item.net_type in _DRIVEN)
+        flags = SIGNED * item.signed | _TYPES.get(item.net_type, 0)
         flags |= REGISTER * (item.net_type == "reg" or item.net_type in _VARIABLES)
         width = prod(abs(left - right) + 1 for left, right in bounds)
         if width > WIDEST:
@@ -264,7 +263,7 @@ class Declarer:
         base = (CONSTANTS + ends - width).astype(np.int32)
         return Variables(
             self.unit.scan.names, self.text, names[head], base, msb, lsb, width, places[head], way,
-            flags.astype(np.uint8), CONSTANTS + (int(ends[-1]) if len(ends) else 0),
+            flags.astype(np.uint16), CONSTANTS + (int(ends[-1]) if len(ends) else 0),
             np.zeros(len(head), np.int32),
             arrays={int(variable[first[number]]): array for number, array in columns.arrays.items()},
         )  # fmt: skip

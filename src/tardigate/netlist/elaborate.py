@@ -6,7 +6,7 @@ the module: kinds, interfaces and templates of others.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from operator import attrgetter
 
 import numpy as np
@@ -20,12 +20,14 @@ from tardigate.netlist.hierarchy import Hierarchy
 from tardigate.netlist.implicit import plain_statements
 from tardigate.netlist.items import Items, Workshop
 from tardigate.netlist.name_columns import InstanceNames, NetNames
+from tardigate.netlist.net_delay import delay_nets, marked
 from tardigate.netlist.plain_tree import instance_tree
 from tardigate.netlist.ports import template_ports
 from tardigate.netlist.template import Template, TemplatePort
-from tardigate.netlist.variables import DRIVEN, WIRED
+from tardigate.netlist.variables import TYPE, TYPES
 from tardigate.netlist.wiring import Wiring
 from tardigate.parts.kind import Way
+from tardigate.source.arrays import distinct
 from tardigate.source.diagnostic import Related
 
 
@@ -70,21 +72,37 @@ class Elaborator:
         return left
 
     def _made(self, parameters: str, ports: tuple[TemplatePort, ...]) -> Template:
-        columns = self.items.instances.columns()
+        made = delay_nets(
+            self.items.net_delays,
+            self.items.instances,
+            ports,
+            self.items.children,
+            self.wiring,
+            self.workshop,
+        )
+        columns = made.columns
         start = np.concatenate(([0], np.cumsum(columns.counts)))
         names = InstanceNames(self.unit.scan.names, columns.name, self.items.instances.others)
-        children = sorted(self.items.children, key=lambda child: child.place)
+        children = sorted(made.children, key=lambda child: child.place)
         self._tell_same_names(columns)
         if self.items.strangers:
-            self.workshop.undescribed(self.items.strangers, self._driven(ports, columns))
-        driven = self._nets_with(DRIVEN)
-        if self.items.pulled:
-            driven = np.unique(np.concatenate((driven, np.array(self.items.pulled, np.int32))))
+            self.workshop.undescribed(self.items.strangers, self._driven(made.ports, columns))
         return Template(
-            self.module.name, parameters, self.unit.text, self.module.at, ports, NetNames(self.variables),
-            self.variables.net_places(), columns.kind, start, columns.pins, names, columns.place,
-            tuple(children), self._nets_with(WIRED), driven, tuple(self.wiring.links),
+            self.module.name, parameters, self.unit.text, self.module.at, made.ports,
+            NetNames(self.variables), self.variables.net_places(), columns.kind, start, columns.pins, names,
+            columns.place, tuple(children), self._typed(made.wires), tuple(self.wiring.links),
         )  # fmt: skip
+
+    def _typed(self, wires: Mapping[int, int]) -> dict[str, NDArray[np.int32]]:
+        """Return the local nets by type and pull; a net's type counts before its delay as well."""
+        types = self.variables.flags >> TYPE
+        found = {word: np.array(nets, np.int32) for word, nets in self.items.pulled.items()}
+        if types.any():
+            of_net = np.repeat(types, self.variables.width)
+            for number in distinct(types[types > 0]).tolist():
+                nets = (np.flatnonzero(of_net == number) + CONSTANTS).astype(np.int32)
+                found[TYPES[number]] = marked(nets, wires)
+        return found
 
     def _tell_same_names(self, columns: Block) -> None:
         """Tell of two instances with one name, or a net that has one's (clause 4.11; N115, N110).
@@ -111,11 +129,6 @@ class Elaborator:
             name = self.unit.scan.names.text(int(numbers[order[at]]))
             related = (Related(self.wiring.span(first, len(name)), "first one here"),)
             self.collector.tell("N115", self.wiring.span(second, len(name)), name=name, related=related)
-
-    def _nets_with(self, flag: int) -> NDArray[np.int32]:
-        """Return the local nets whose variables have a flag."""
-        flags = np.repeat(self.variables.flags, self.variables.width)
-        return (np.flatnonzero(flags & flag) + CONSTANTS).astype(np.int32)
 
     def _driven(self, ports: Sequence[TemplatePort], columns: Block) -> NDArray[np.bool_]:
         """Tell of each local net whether something that is known drives it."""

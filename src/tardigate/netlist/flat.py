@@ -7,6 +7,8 @@ Data only.
 
 from __future__ import annotations
 
+from collections.abc import Mapping, Sequence
+from types import MappingProxyType
 from typing import NamedTuple
 
 import numpy as np
@@ -35,9 +37,6 @@ class Port(NamedTuple):
     net: int
 
 
-_NO_NETS = np.zeros(0, np.int32)
-
-
 class Flat(NamedTuple):
     """The flat design.
 
@@ -49,8 +48,8 @@ class Flat(NamedTuple):
     `templates`; `scope_parent` int32, -1 for the top; `scope_name` the instance's name in its parent;
     `scope_inst` int64[scopes + 1]: its own part instances are these; `scope_net` int64[scopes + 1]: its
     template's own nets in raw numbering. `net_raw` int64[nets]: the raw number, in the outermost scope that
-    has the net, that gives each net its name. `wired`, `driven` int32: nets that may have several drivers
-    by their type, and nets that need none.
+    has the net, that gives each net its name. `typed`: nets, int32, by the types that they are declared with
+    anywhere (`wand`, `tri1`, …; plain `wire` left out) and by what pulls them (`pullup`, `pulldown`).
     """
 
     kinds: tuple[Kind, ...]
@@ -66,8 +65,12 @@ class Flat(NamedTuple):
     scope_inst: NDArray[np.int64]
     scope_net: NDArray[np.int64]
     net_raw: NDArray[np.int64]
-    wired: NDArray[np.int32] = _NO_NETS
-    driven: NDArray[np.int32] = _NO_NETS
+    typed: Mapping[str, NDArray[np.int32]] = MappingProxyType({})
+
+    def of_type(self, words: Sequence[str]) -> NDArray[np.int32]:
+        """Return the nets that are declared with, or pulled by, one of the words."""
+        found = [self.typed[word] for word in words if word in self.typed]
+        return np.concatenate([*found, np.zeros(0, np.int32)]).astype(np.int32)
 
     @property
     def instances(self) -> int:

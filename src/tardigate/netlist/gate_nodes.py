@@ -83,7 +83,7 @@ class Maker:
 
     def operator(self, name: str, inputs: Sequence[int]) -> int | None:
         """Return the node of an operator; of a `&&` of more than two bits the split is not known."""
-        if name in ("copy", "~"):
+        if name in ("copy", "wire", "~"):
             made = inputs[0]
         elif name in ("==", "!="):
             half = len(inputs) // 2

@@ -20,27 +20,25 @@ from tardigate.netlist.delays import NO_DELAY, Delays
 from tardigate.netlist.expression import Expressions
 from tardigate.netlist.hierarchy import Hierarchy, Outside, Overrides, Seat
 from tardigate.netlist.interface import Interface, InterfacePin
+from tardigate.netlist.net_delay import Desk, NetDelay, declared_delays
 from tardigate.netlist.registers import RegisterBit, registers_of
 from tardigate.netlist.scopes import Scope
 from tardigate.netlist.template import Child
 from tardigate.netlist.wiring import Wiring
 from tardigate.parts.kind import Way
 from tardigate.parts.source_delay import SourceDelay
-from tardigate.source.diagnostic import Related
+from tardigate.source.diagnostic import Diagnostic, Related
 from tardigate.syntax import tree
 
 _DELAYS = {"bufif0": 3, "bufif1": 3, "notif0": 3, "notif1": 3}
 """Most delays of a gate (clause 7.14); the others take two."""
 
 
-class Workshop(Outside, Protocol):
+class Workshop(Outside, Desk, Protocol):
     """What elaboration needs from outside a module."""
 
     def gate(self, gate: str, inputs: int, outputs: int, delay: SourceDelay | None) -> int:
         """Return the number of a gate's kind."""
-
-    def operator(self, operator: str, inputs: int, delay: SourceDelay | None) -> int:
-        """Return the number of an operator's kind."""
 
     def part(self, module: str, parameters: Mapping[str, Value]) -> tuple[Interface, int] | None:
         """Return the interface and kind of a described part or a cell, None for anything else."""
@@ -50,6 +48,9 @@ class Workshop(Outside, Protocol):
 
     def is_primitive(self, name: str) -> bool:
         """Tell whether a name is that of a user-defined primitive and no parts file describes it."""
+
+    def no_register(self, told: Diagnostic) -> None:
+        """Take note of an `always` that is no register."""
 
     def register(self, bit: RegisterBit) -> int:
         """Return the number of a register's kind."""
@@ -79,7 +80,8 @@ class Items:
         self.instances = Instances()
         self.children: list[Child] = []
         self.strangers: list[Strange] = []
-        self.pulled: list[int] = []
+        self.pulled: dict[str, list[int]] = {}
+        self.net_delays: dict[int, NetDelay] = {}
         self.expressions = Expressions(wiring, self._emit)
         self.connector = Connector(wiring, self.expressions)
         self._delay: SourceDelay | None = None
@@ -148,7 +150,7 @@ class Items:
             elif not is_target(gate.terminals[0]):
                 self.collector.tell("N165", self.wiring.span(gate.at), pin=item.word)
             else:
-                self.pulled += self.expressions.nets(gate.terminals[0])
+                self.pulled.setdefault(item.word, []).extend(self.expressions.nets(gate.terminals[0]))
 
     def _pins(
         self, interface: Sequence[InterfacePin], connections: Sequence[tree.Connection | None], copies: int,
@@ -275,13 +277,15 @@ class Items:
 
     def _registers(self, item: tree.Always) -> None:
         name = self.hierarchy.module.name
-        for bit in registers_of(item, name, self.wiring, self.expressions, self.delays):
+        for bit in registers_of(item, name, self.wiring, self.expressions, self.delays, self.workshop):
             kind = self.workshop.register(bit)
             self.instances.add(kind, bit.place, -1, bit.pins)
 
     # Assignments (clause 6.1)
 
     def _declaration(self, item: tree.Declaration) -> None:
+        if item.delay is not None:
+            self.net_delays |= declared_delays(item, self.wiring, self.delays)
         assigned = [named for named in item.names if named.value is not None]
         if not assigned or item.net_type in ("reg", "integer", "time", "real", "realtime", "event"):
             return  # the first value of a variable is none that it drives (clause 6.2.1)

@@ -15,7 +15,7 @@ from tardigate.source.diagnostic import Related, did_you_mean
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.span import Span
 from tardigate.syntax.outline import ModuleText
-from tardigate.syntax.tree import Module
+from tardigate.syntax.tree import Module, Parameter
 from tardigate.syntax.verilog_reader import Unit, parse_module
 
 
@@ -77,6 +77,11 @@ class Modules:
                 collector.add(diagnostic)
             return False
         return True
+
+    def declarations(self, name: str) -> list[Parameter]:
+        """Return the parameter declarations of a module that can be parsed, in order."""
+        module = self.tree(name)
+        return [*module.parameters, *(item for item in module.items if isinstance(item, Parameter))]
 
     def has_specify(self, name: str) -> bool:
         """Tell whether a module has a specify block."""

@@ -104,7 +104,7 @@ def delay_nets(
 class _Pass:
     """The pass over one module: `before` is the net before each delayed one, `lets_go` says which may float.
 
-    `moved` int32[nets]: where a driver of each net goes; the last is that of an open pin.
+    Nets that nothing drives have no delay: nothing passes through it.
     """
 
     delays: Mapping[int, NetDelay]
@@ -116,11 +116,15 @@ class _Pass:
 
     def __post_init__(self) -> None:
         nets = self.wiring.variables.nets
-        self.moved = np.append(np.arange(nets, dtype=np.int32), np.int32(-1))
-        for net, delay in self.delays.items():
-            self.before[net] = self.wiring.variables.new_result(delay.place)
-            self.moved[net] = self.before[net]
-        self.is_delayed = self.moved != np.append(np.arange(nets), -1)
+        self.is_delayed = np.zeros(nets + 1, np.bool_)
+        self.is_delayed[list(self.delays)] = True
+
+    def moved(self, nets: NDArray[np.int32]) -> NDArray[np.int32]:
+        """Return where drivers of nets go: before the delay, to a net made when the first one comes."""
+        for net in nets[self.is_delayed[nets]].tolist():
+            if net not in self.before:
+                self.before[net] = self.wiring.variables.new_result(self.delays[net].place)
+        return np.array([self.before.get(net, net) for net in nets.tolist()], np.int32)
 
     def instances(self, columns: Block) -> Block:
         """Move the outputs of part instances."""
@@ -139,7 +143,7 @@ class _Pass:
                     continue
                 floating = _floating(kind, start[rows[hit]], columns.pins)
                 self.lets_go.update(nets[floating].tolist())
-                pins[cells[hit]] = self.moved[nets]
+                pins[cells[hit]] = self.moved(nets)
         return columns._replace(pins=pins)
 
     def child(self, child: Child) -> Child:
@@ -156,7 +160,7 @@ class _Pass:
                 self._refuse(nets)
             elif port.way == Way.OUTPUT:
                 self._may_float(nets)
-                joins[some] = self.moved[child.joins[some]]
+                joins[some] = self.moved(child.joins[some])
         return child._replace(joins=joins)
 
     def port(self, port: TemplatePort) -> TemplatePort:
@@ -169,7 +173,7 @@ class _Pass:
             self._refuse(hit)
             return port
         self._may_float(hit)
-        return port._replace(nets=tuple(self.moved[nets].tolist()))
+        return port._replace(nets=tuple(self.moved(nets).tolist()))
 
     def _may_float(self, nets: NDArray[np.int32]) -> None:
         """Take note of nets with a driver out of sight: that it may float only a turn-off delay tells."""
@@ -187,10 +191,11 @@ class _Pass:
         """Add the instance before each delayed net, at the place of its declaration."""
         merged = Instances()
         merged.add_block(columns)
-        for net, delay in self.delays.items():
+        for net, before in self.before.items():
+            delay = self.delays[net]
             operator = THREE_STATE_NET if net in self.lets_go else NET
             kind = self.desk.operator(operator, 1, delay.delay)
-            merged.add(kind, delay.place, -1, [net, self.before[net]])
+            merged.add(kind, delay.place, -1, [net, before])
         return merged.columns()
 
 

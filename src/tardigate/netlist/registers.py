@@ -8,7 +8,7 @@ open what such a reader gets.
 from __future__ import annotations
 
 from collections.abc import Collection, Mapping
-from typing import NamedTuple
+from typing import NamedTuple, Protocol
 
 from tardigate.netlist.delays import Delays
 from tardigate.netlist.expression import Expressions
@@ -18,7 +18,15 @@ from tardigate.parts.function import EXACT
 from tardigate.parts.kind import Edge
 from tardigate.parts.register_kind import Control
 from tardigate.parts.source_delay import SourceDelay
+from tardigate.source.diagnostic import Diagnostic
 from tardigate.syntax import tree
+
+
+class Desk(Protocol):
+    """Who decides what becomes of an `always` that is no register."""
+
+    def no_register(self, told: Diagnostic) -> None:
+        """Take note of one."""
 
 
 class RegisterBit(NamedTuple):
@@ -63,14 +71,15 @@ class _Layer(NamedTuple):
 
 
 def registers_of(
-    always: tree.Always, module: str, wiring: Wiring, expressions: Expressions, delays: Delays
+    always: tree.Always, module: str, wiring: Wiring, expressions: Expressions, delays: Delays, desk: Desk
 ) -> list[RegisterBit]:
     """Return the registers of an `always` in order of their first moves, none after telling what it is."""
     try:
         return _registers(always, wiring, Moves(wiring, expressions, delays))
     except NoRegisterError as error:
         if error.reason:
-            wiring.collector.tell("V010", wiring.span(error.at), reason=error.reason, module=module)
+            span = wiring.span(error.at)
+            desk.no_register(Diagnostic.of("V010", span, reason=error.reason, module=module))
         return []
 
 

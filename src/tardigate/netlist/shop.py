@@ -14,6 +14,7 @@ from typing import Protocol
 import numpy as np
 from numpy.typing import NDArray
 
+from tardigate.netlist.cells import says_times
 from tardigate.netlist.columns import Block, Kinds
 from tardigate.netlist.constants import Value, rounded, words_of
 from tardigate.netlist.declare import Declarer
@@ -27,19 +28,20 @@ from tardigate.netlist.items import Strange
 from tardigate.netlist.lookup import Lookup
 from tardigate.netlist.modules import Modules
 from tardigate.netlist.name_table import NameTables
+from tardigate.netlist.parameters import triple_trees
 from tardigate.netlist.ports import template_ports
 from tardigate.netlist.primitives import Primitives
 from tardigate.netlist.registers import RegisterBit
 from tardigate.netlist.strangers import Strangers
 from tardigate.netlist.template import Child, Template
 from tardigate.netlist.wiring import Wiring
-from tardigate.parts.kind import Way
+from tardigate.parts.kind import Kind, Way
 from tardigate.parts.library import Library
 from tardigate.parts.model import Part
 from tardigate.parts.source_delay import SourceDelay, Triple
 from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
-from tardigate.syntax import tree
+from tardigate.source.diagnostic import Diagnostic
 from tardigate.syntax.verilog_reader import Unit
 
 MOST_TEMPLATES = 1 << 16
@@ -78,7 +80,7 @@ class Shop:
         self._sets: Counter[str] = Counter()
         self._interfaces: dict[int, Interface] = {}
         self._hierarchies: dict[int, Hierarchy] = {}
-        self._lookups: dict[int, Lookup] = {}
+        self.lookups: dict[int, Lookup] = {}
         self._parts: dict[tuple[str, tuple[tuple[str, int], ...]], tuple[Interface, int]] = {}
         self._delays: dict[tuple[Triple, ...], SourceDelay] = {}
         self.tables = NameTables()
@@ -109,16 +111,17 @@ class Shop:
         unit, start = self.modules.unit(name), self.modules.text(name).start
         state = _in_force([s[0] for s in unit.source.timescales], start)
         _, step, precision = unit.source.timescales[state] if state >= 0 else (0, None, None)
-        return Delays(unit.text, step, precision, values, self.collector, self._delays)
+        trees = triple_trees(self.modules.declarations(name))
+        return Delays(unit.text, step, precision, values, self.collector, self._delays, trees=trees)
 
     def values(self, template: int) -> dict[str, Value]:
         """Return the parameters of a template."""
         return dict(self._work[template][1])
 
     def _declarer(self, unit: Unit) -> Declarer:
-        if id(unit) not in self._lookups:
-            self._lookups[id(unit)] = Lookup(unit.scan.names)
-        return Declarer(unit, self._lookups[id(unit)], self.collector)
+        if id(unit) not in self.lookups:
+            self.lookups[id(unit)] = Lookup(unit.scan.names)
+        return Declarer(unit, self.lookups[id(unit)], self.collector)
 
     def number(self, name: str, overrides: Overrides) -> int:
         """Return the number of a module's template for a set of parameters; puts it on the list when new."""
@@ -187,11 +190,8 @@ class Shop:
             return list(self.library.parameters(module)) or None
         if module not in self.modules or not self.modules.readable(module, self.collector):
             return None
-        tree_of = self.modules.tree(module)
-        declared = [*tree_of.parameters, *(i for i in tree_of.items if isinstance(i, tree.Parameter))]
-        return [
-            named.name for declaration in declared if not declaration.local for named in declaration.names
-        ]
+        declared = [each for each in self.modules.declarations(module) if not each.local]
+        return [named.name for declaration in declared for named in declaration.names]
 
     def undescribed(self, strange: Sequence[Strange], driven: NDArray[np.bool_]) -> None:
         """Take note of instances of what nobody describes."""
@@ -211,7 +211,15 @@ class Shop:
                 if port.way != Way.INPUT:
                     yield child.joins[first : first + port.width]
 
+    def interface_of(self, template: int) -> Interface:
+        """Return the interface of a module below that has been asked for."""
+        return self._interfaces[template]
+
     # Workshop: kinds
+
+    def kind(self, number: int) -> Kind:
+        """Return a kind by number."""
+        return self.kinds.kinds[number]
 
     def gate(self, gate: str, inputs: int, outputs: int, delay: SourceDelay | None) -> int:
         """Return the number of a gate's kind."""
@@ -221,6 +229,10 @@ class Shop:
         """Return the number of an operator's kind."""
         return self.kinds.number(self.library.operator_kind(operator, inputs, delay))
 
+    def no_register(self, told: Diagnostic) -> None:
+        """Tell of an `always` that is no register."""
+        self.collector.add(told)
+
     def register(self, bit: RegisterBit) -> int:
         """Return the number of a register's kind."""
         kind = self.library.register_kind(bit.edge, bit.controls, len(bit.data), bit.delay)
@@ -229,7 +241,7 @@ class Shop:
     def part(self, module: str, parameters: Mapping[str, Value]) -> tuple[Interface, int] | None:
         """Return a described part's interface and kind number."""
         if not self.library.describes(module):
-            return self.cell(module, parameters) if self.modules.has_specify(module) else None
+            return self.cell(module, parameters) if self.is_cell(module) else None
         values = {name: rounded(value) for name, value in parameters.items()}
         key = (module, tuple(sorted(values.items())))
         if key not in self._parts:
@@ -238,10 +250,15 @@ class Shop:
             self._parts[key] = (Interface(module, pins), kind)
         return self._parts[key]
 
+    def is_cell(self, module: str) -> bool:
+        """Tell whether a module is a part because a specify block gives it times or checks."""
+        if self.cells is None or not self.modules.has_specify(module) or self.library.describes(module):
+            return False
+        return self.modules.readable(module, self.collector) and says_times(self.modules.tree(module))
+
     def cell(self, module: str, parameters: Mapping[str, Value]) -> tuple[Interface, int] | None:
         """Return the interface and kind of a module with a specify block, None if it cannot be read."""
-        if self.cells is None or not self.modules.readable(module, self.collector):
-            return None
+        assert self.cells is not None
         part = self.cells.part(module, parameters)
         if part is None:
             return None

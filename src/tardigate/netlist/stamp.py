@@ -72,12 +72,12 @@ def stamp(templates: Sequence[Template], top: int, kinds: Sequence[Kind]) -> Fla
         cells = pin_base[those][:, None] + np.arange(len(template.pin_net))
         raw = net_base[those][:, None] + np.maximum(template.pin_net, 0)
         pin_net[cells] = np.where(template.pin_net == OPEN, OPEN, number[raw])
-    wired, driven = (_marked(templates, of_scope, net_base, number, kind) for kind in ("wired", "driven"))
+    typed = _typed(templates, of_scope, net_base, number)
     return Flat(
         tuple(kinds), inst_kind, pin_start, pin_net, len(net_raw), _ports(templates[top], number),
         tuple(templates), of_scope, np.array(scopes.parent, np.int32), tuple(scopes.name), inst_base,
         net_base,
-        net_raw, wired, driven,
+        net_raw, typed,
     )  # fmt: skip
 
 
@@ -193,17 +193,18 @@ def _united(owner: NDArray[np.int64], pairs: list[tuple[int, int]], aliases: set
     return table[owner]
 
 
-def _marked(
+def _typed(
     templates: Sequence[Template], of_scope: NDArray[np.int32], net_base: NDArray[np.int64],
-    number: NDArray[np.int32], kind: str,
-) -> NDArray[np.int32]:  # fmt: skip
-    """Return the flat nets of the local nets that templates list as `wired` or `driven`."""
-    found = [
-        number[(net_base[:-1][of_scope == at][:, None] + getattr(template, kind)).reshape(-1)]
-        for at, template in enumerate(templates)
-        if len(getattr(template, kind))
-    ]
-    return distinct(np.concatenate([*found, np.zeros(0, np.int32)])).astype(np.int32)
+    number: NDArray[np.int32],
+) -> dict[str, NDArray[np.int32]]:  # fmt: skip
+    """Return the flat nets of the local nets that templates list by type."""
+    found: dict[str, list[NDArray[np.int32]]] = {}
+    for at, template in enumerate(templates):
+        if template.typed:
+            bases = net_base[:-1][of_scope == at][:, None]
+            for word, nets in template.typed.items():
+                found.setdefault(word, []).append(number[(bases + nets).reshape(-1)])
+    return {word: distinct(np.concatenate(nets)).astype(np.int32) for word, nets in found.items()}
 
 
 def _ports(top: Template, number: NDArray[np.int32]) -> tuple[Port, ...]:

@@ -5,7 +5,8 @@ Net numbers are local to the template: 0 to 3 are the constants 0, 1, x, z, then
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
+from types import MappingProxyType
 from typing import NamedTuple
 
 import numpy as np
@@ -48,9 +49,6 @@ class Link(NamedTuple):
     inside: int
 
 
-_NO_NETS = np.zeros(0, np.int32)
-
-
 class Template(NamedTuple):
     """An elaborated module.
 
@@ -58,8 +56,9 @@ class Template(NamedTuple):
     int64 their declarations' offsets in `text`. Part instances are columns: `kind` int32 (numbers in the
     design's kinds), `pin_start` int64[instances + 1] into `pin_net` int32 (OPEN -1), `inst_names` (an empty
     name for one that has none), `inst_place` int64. `parameters` is the canonical list, `N=4, W=8`.
-    `wired`, `driven` int32: local nets that may have several drivers (`wand`, `tri`, …), and those that
-    need none (`supply0`, `tri1`, …). `links`: what hierarchical names join with nets below.
+    `typed`: local nets, int32, by the type that they are declared with (`wand`, `tri1`, …; those of plain
+    `wire` are not listed) and by what pulls them (`pullup`). `links`: what hierarchical names join with
+    nets below.
     """
 
     module: str
@@ -75,8 +74,7 @@ class Template(NamedTuple):
     inst_names: Sequence[str]
     inst_place: NDArray[np.int64]
     children: tuple[Child, ...]
-    wired: NDArray[np.int32] = _NO_NETS
-    driven: NDArray[np.int32] = _NO_NETS
+    typed: Mapping[str, NDArray[np.int32]] = MappingProxyType({})
     links: tuple[Link, ...] = ()
 
     @property

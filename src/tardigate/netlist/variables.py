@@ -20,9 +20,15 @@ from tardigate.syntax.intern import Interned
 NO_DIRECTION = 3
 """The way of a variable that is no port (others: `Way`)."""
 
-SIGNED, WIRED, DRIVEN, RANGED, REGISTER = 1, 2, 4, 8, 16
-"""Flags: signed; a net type that may have several drivers; one that drives itself; declared with a range; a
-variable (`reg`, `integer`) and no net."""
+SIGNED, RANGED, REGISTER = 1, 2, 4
+"""Flags: signed; declared with a range; a variable (`reg`, `integer`) and no net."""
+
+TYPES = (
+    "wire", "tri", "wand", "wor", "triand", "trior", "tri0", "tri1", "supply0", "supply1", "trireg", "uwire",
+)  # fmt: skip
+"""Types of nets (clause 4.6), by their numbers in the flags from bit TYPE on."""
+
+TYPE = 8
 
 
 class Shape(NamedTuple):
@@ -50,7 +56,7 @@ class Variables:
 
     `name` int32 (number in `names`), `base` int32 (local net of bit `lsb`; bit `i` is `base + |i - lsb|`),
     `msb`, `lsb` int32, `width` int32, `place` int64 (offset of the first declaration), `way` uint8, `flags`
-    uint8. `nets` counts all local nets so far; those after the variables are operators' results, whose
+    uint16. `nets` counts all local nets so far; those after the variables are operators' results, whose
     offsets are in `results`, and names in `result_names` where they are not called by their line.
 
     The module's own variables come first; `scope` int32 is the generate block that the others stand in,
@@ -68,7 +74,7 @@ class Variables:
     width: NDArray[np.int32]
     place: NDArray[np.int64]
     way: NDArray[np.uint8]
-    flags: NDArray[np.uint8]
+    flags: NDArray[np.uint16]
     nets: int
     scope: NDArray[np.int32]
     results: list[int] = field(default_factory=list)

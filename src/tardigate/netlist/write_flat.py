@@ -37,7 +37,13 @@ def write_flat(flat: Flat, top: str, cells: Sequence[CellText] = ()) -> str:
         last[batch.members] = sort_of(batch.kind) == "register"
     ports = desk.sheet.ports()
     header = f"module {spelled(top)} ({', '.join(ports)});" if ports else f"module {spelled(top)};"
-    body = [*desk.sheet.declarations(), *lines[~last].tolist(), *lines[last].tolist(), *_joins(desk)]
+    body = [
+        *desk.sheet.declarations(),
+        *desk.sheet.pulls(),
+        *lines[~last].tolist(),
+        *lines[last].tolist(),
+        *_joins(desk),
+    ]
     flat_module = "\n  ".join([header, *body]) + "\nendmodule\n"
     opening = "`resetall\n`timescale 1fs/1fs\n" if whole else "`resetall\n"  # without one: 1 ns, unrounded
     return "\n".join([opening + flat_module, *desk.helpers, *(cell.text for cell in cells)])

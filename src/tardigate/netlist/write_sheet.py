@@ -16,6 +16,8 @@ from tardigate.netlist.names import Names
 from tardigate.netlist.write_ports import WAY_WORDS, Header, Vector, plan_header
 from tardigate.netlist.write_words import instance_names, net_names, spelled, unlike
 
+PULLS = ("pullup", "pulldown")
+
 
 class Sheet:
     """The names of one flat file.
@@ -112,6 +114,11 @@ class Sheet:
         types = self._types.get(vector.first, ())
         return "\n  ".join([f"{way} {word}" for way in (WAY_WORDS[vector.way], *types[:1])])
 
+    def pulls(self) -> list[str]:
+        """Return the statements that pull nets."""
+        nets = [(net, word) for word in PULLS for net in self.flat.of_type((word,)).tolist()]
+        return [f"{word} ({self.net[net]});" for net, word in sorted(nets) if net >= CONSTANTS]
+
     def same_nets(self) -> list[tuple[str, str]]:
         """Return the pairs of texts that stand for one net each."""
         pairs = [(self._second[key], str(self.net[key[0]])) for key in sorted(self._second)]
@@ -130,8 +137,8 @@ def _apart(name: str) -> str:
 def net_types(flat: Flat) -> Mapping[int, Sequence[str]]:
     """Return the types of the nets that are no mere wires, in order of net."""
     types: dict[int, list[str]] = {}
-    for word, nets in (("wand", flat.wired), ("tri0", flat.driven)):
-        for net in nets.tolist():
+    for word, nets in flat.typed.items():
+        for net in nets.tolist() if word not in PULLS else ():
             if net >= CONSTANTS:
                 types.setdefault(net, []).append(word)
     return dict(sorted(types.items()))

@@ -53,6 +53,8 @@ ONE_INPUT: Mapping[str, int] = {
 NET, THREE_STATE_NET = "wire", "wire z"
 """Operators that stand for a delay of a net (clause 7.14), the second where its drivers may let go of it."""
 
+_PASS_Z = ("copy", "?:")
+
 OPPOSITE = {Edge.RISE: Edge.FALL, Edge.FALL: Edge.RISE}
 
 
@@ -99,33 +101,39 @@ def gate(name: str, inputs: int, outputs: int, delay_of: DelayOf) -> Kind:
     return make_kind(name, "gate", outs + ins, ways, hops)
 
 
-def operator(name: str, inputs: int, delay_of: DelayOf) -> Kind:
-    """Make the kind of an operator: pins `out`, `in1`, ... Raises KeyError for an unknown operator."""
-    if name in (NET, THREE_STATE_NET):
-        return _net(name == THREE_STATE_NET, delay_of)
+def operator(name: str, inputs: int, delay_of: DelayOf, turns_off: bool = False) -> Kind:
+    """Make the kind of an operator: pins `out`, `in1`, ... Raises KeyError for an unknown operator.
+
+    `turns_off`: the source gives a delay to z of its own. It counts where a z may pass: in an assignment of a
+    net or of `?:`, and before a net whose drivers may let go.
+    """
+    if name == NET:
+        return make_kind(
+            NET, "operator", ("out", "in"), [Way.OUTPUT, Way.INPUT], hops_between(1, 0, POSITIVE, delay_of)
+        )
+    if name == THREE_STATE_NET:
+        hops = _with_turn_off(hops_between(1, 0, POSITIVE, delay_of), delay_of)
+        return make_kind(NET, "operator", ("out", "in"), [Way.OUTPUT, Way.INPUT], hops)
     polarity = ONE_INPUT.get(name, OPERATORS[name]) if inputs == 1 else OPERATORS[name]
     hops = []
     for tail in range(1, inputs + 1):
         data = name == "?:" and tail > inputs - 2
         hops += hops_between(tail, 0, POSITIVE if data else polarity, delay_of)
+    if turns_off and name in _PASS_Z:
+        hops = _with_turn_off(hops, delay_of)
     ways = [Way.OUTPUT] + [Way.INPUT] * inputs
     pins = ["out", *(f"in{i + 1}" for i in range(inputs))]
     return make_kind("assign" if name == "copy" else f"assign {name}", "operator", pins, ways, hops)
 
 
-def _net(lets_go: bool, delay_of: DelayOf) -> Kind:
-    """Make the kind of a delay of a net: pins `out`, `in`.
+def _with_turn_off(hops: list[KindHop], delay_of: DelayOf) -> list[KindHop]:
+    """Return hops with others beside them that take the turn-off delay, where that is another one.
 
-    Where its drivers may let go of the net, a change may as well be one to z, with the turn-off delay; hops
-    of both delays stand side by side where they differ.
+    A change to z leaves the high level like a fall and the low one like a rise.
     """
-    hops = hops_between(1, 0, POSITIVE, delay_of)
-    if lets_go:
-        off = {"LH": delay_of("LZ"), "HL": delay_of("HZ")}
-        known = {(hop.tail_edge, hop.delay.triple) for hop in hops}
-        others = hops_between(1, 0, POSITIVE, off.__getitem__)
-        hops += [hop for hop in others if (hop.tail_edge, hop.delay.triple) not in known]
-    return make_kind(NET, "operator", ("out", "in"), [Way.OUTPUT, Way.INPUT], hops)
+    off = {Edge.RISE: delay_of("LZ"), Edge.FALL: delay_of("HZ")}
+    others = [hop._replace(delay=off[hop.head_edge]) for hop in hops]
+    return hops + [o for hop, o in zip(hops, others, strict=True) if o.delay.triple != hop.delay.triple]
 
 
 def source_delays(delay: SourceDelay) -> DelayOf:

@@ -6,16 +6,18 @@ Takes files, gives kinds; equal questions get the same object. Does not know any
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from copy import copy
 from types import MappingProxyType
 
 from tardigate.parts import gates
 from tardigate.parts.build import build_family
 from tardigate.parts.by_kind import ByKind, Choice
 from tardigate.parts.check import check_families, choose_condition, resolve
+from tardigate.parts.function import Values
 from tardigate.parts.kind import Edge, Kind, Origin
 from tardigate.parts.kind_maker import Delay
 from tardigate.parts.model import Family, Part, Pin
-from tardigate.parts.part_kind import part_kind
+from tardigate.parts.part_kind import parameter_values, part_kind
 from tardigate.parts.register_kind import REGISTER, Control, register_kind
 from tardigate.parts.source_delay import SourceDelay
 from tardigate.source.collector import Collector
@@ -50,6 +52,13 @@ class Library:
         aliases = [alias for family in families for alias in family.aliases]
         self._parts.update(resolve(aliases, families, self._parts))
         self._kinds: dict[tuple[object, ...], Kind] = {}
+        self._is_timed = True
+
+    def without_times(self) -> Library:
+        """Return the same parts, with gates, operators and registers that take what the source says only."""
+        other = copy(self)
+        other._kinds, other._is_timed = {}, False
+        return other
 
     @classmethod
     def read(cls, files: Sequence[SourceFile], condition: str | None, collector: Collector) -> Library:
@@ -131,8 +140,16 @@ class Library:
         if key not in self._kinds:
             table = self._choice.operators
             delay_of = gates.source_delays(delay) if delay else self._delay_of(table, operator, inputs)
-            self._kinds[key] = gates.operator(operator, inputs, delay_of)._replace(source=delay)
+            turns_off = delay is not None and len(delay.values) > 2
+            self._kinds[key] = gates.operator(operator, inputs, delay_of, turns_off)._replace(source=delay)
         return self._kinds[key]
+
+    def part(self, module: str, parameters: Mapping[str, int] = NO_PARAMETERS) -> tuple[Part, Values]:
+        """Return a part and the values of its parameters' bits that are known. Raises KeyError."""
+        part = self._parts[module]
+        values = {p: parameters.get(p.name, p.default) for p in part.parameters}
+        chosen = {p.name: value & (1 << p.width) - 1 for p, value in values.items() if value is not None}
+        return part, parameter_values(part, chosen)
 
     def cell_kind(self, part: Part, delay: SourceDelay | None = None) -> Kind:
         """Return the kind of a part that stands in the source, a cell or a primitive with `delay` behind `#`.
@@ -163,6 +180,8 @@ class Library:
 
     def _delay_of(self, table: ByKind, name: str, inputs: int) -> gates.DelayOf:
         def delay_of(transition: str) -> Delay:
+            if not self._is_timed:
+                return gates.NO_DELAY
             if name == "copy":  # a wire unless a parts file says otherwise; no default is meant for it
                 return table.find(name, inputs, transition) or gates.NO_DELAY
             return self._choice.delay(table, name, inputs, transition)

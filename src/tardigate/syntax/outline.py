@@ -16,7 +16,7 @@ from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import did_you_mean
 from tardigate.source.placed import PlacedText
 from tardigate.syntax.plain import NAME
-from tardigate.syntax.scan import OTHER, WORD, Scan
+from tardigate.syntax.scan import OPEN, OTHER, SEMICOLON, WORD, Scan
 
 _PARTS_HINT = "This looks like a parts file: give it with `--parts`."
 _BLOCKS = {
@@ -112,7 +112,7 @@ def _outside(scan: Scan, first: int, stop: int, text: PlacedText, collector: Col
 
 
 def used_names(scan: Scan, marks: NDArray[np.uint8], module: ModuleText) -> list[str]:
-    """Return the names that may be modules which this one uses: names before a name or a `#`.
+    """Return the names that may be modules which this one uses: before a name, a `#`, or as `; name (`.
 
     Neither the module's own name in its header (`module m #(...)`) nor that of a delay (`buf #D g (...)`).
     """
@@ -121,8 +121,9 @@ def used_names(scan: Scan, marks: NDArray[np.uint8], module: ModuleText) -> list
     signs = np.flatnonzero(is_name & (following == OTHER))
     signs = signs[_sharp(scan, module.first + signs + 1)]
     first = np.concatenate((np.flatnonzero(is_name & (following == NAME)), signs))
+    lone = np.flatnonzero((window[1:-1] == NAME) & (window[2:] == OPEN) & (window[:-2] == SEMICOLON)) + 1
     first = first[first > 1]
-    first = first[~_sharp(scan, module.first + first - 1)]
+    first = np.concatenate((first[~_sharp(scan, module.first + first - 1)], lone))
     words = scan.word[scan.word_of[module.first + first]]
     return [scan.names.text(int(name)) for name in distinct(words)]
 

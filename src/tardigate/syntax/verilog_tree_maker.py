@@ -69,8 +69,8 @@ class TreeMaker(CellMaker):
         return children[0]  # type: ignore[no-any-return]
 
     def declared_type(self, children: list[Any]) -> _Type:
-        types = ("NET_TYPE", "VARIABLE")
-        net = next((str(c) for c in children if isinstance(c, Token) and c.type in types), "wire")
+        words = [c for c in children if isinstance(c, Token) and c.type != "SIGNED"]
+        net = str(words[0]) if words else "wire"
         return _Type(net, _signed(children), child_of(children, tree.Range))
 
     def declared_port(self, children: list[Any]) -> tree.HeaderPort:
@@ -110,9 +110,15 @@ class TreeMaker(CellMaker):
         return tree.Declaration(str(children[0]), kind.net, kind.signed, kind.range, None, children[-1], at)
 
     def net_declaration(self, children: list[Any]) -> tree.Declaration:
-        word, bounds, delay = str(children[0]), child_of(children, tree.Range), child_of(children, tree.Delay)
-        at = self._at(children[0])
-        return tree.Declaration("", word, _signed(children), bounds, delay, children[-1], at)
+        shape: _Type = child_of(children, _Type) or _Type(
+            "", _signed(children), child_of(children, tree.Range)
+        )
+        delay, at = child_of(children, tree.Delay), self._at(children[0])
+        word = str(children[0])
+        return tree.Declaration("", word, shape.signed, shape.range, delay, children[-1], at)
+
+    def net_shape(self, children: list[Any]) -> _Type:
+        return _Type("", _signed(children), child_of(children, tree.Range))
 
     def parameter(self, children: list[Any]) -> tree.Parameter:
         return _parameter(children, "parameter", children[-1])
@@ -149,10 +155,10 @@ class TreeMaker(CellMaker):
     def nothing(self, _children: list[Any]) -> None:
         return None
 
-    def vectored(self, _children: list[Any]) -> None:
+    def strength(self, _children: list[Any]) -> None:
         return None
 
-    strength = net_strength = pull_strength = vectored
+    charge = pull_strength = strength
 
     def declared_names(self, children: list[Any]) -> tuple[tree.Named, ...]:
         return tuple(children)
