@@ -9,7 +9,7 @@ from pathlib import Path
 import pytest
 
 from tardigate.cli.main import run
-from tardigate.netlist import build, cell_ways, expression
+from tardigate.netlist import cell_ways, expression, shop
 from tardigate.source import files
 from tardigate.source.code_table import FILES, every_code, look_up
 from tardigate.source.diagnostic import Diagnostic
@@ -156,7 +156,7 @@ def test_n125_more_sets_of_parameters_than_may_be(tmp_path: Path, monkeypatch: p
     path.write_text(
         f"module board(input a);\n{uses}\nendmodule\nmodule half(input a);\nparameter P = 1;\nendmodule\n"
     )
-    monkeypatch.setattr(build, "MOST_TEMPLATES", 5)
+    monkeypatch.setattr(shop, "MOST_SETS", 5)
     assert _codes(path) == ["N125"]
 
 

@@ -47,7 +47,7 @@ from tardigate.syntax.verilog_reader import Unit
 MOST_TEMPLATES = 1 << 16
 """Modules times sets of parameters that one design may have."""
 
-MOST_SETS = 1 << 12
+MOST_SETS = 1 << 13
 """Sets of parameters that one module may be wanted with."""
 
 MOST_DEPTH = 1 << 12
