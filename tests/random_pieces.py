@@ -4,6 +4,7 @@ A `Pieces` writes statements into its scope and keeps what may be read and drive
 modules and generate constructs: see `random_structure`.
 """
 
+# ruff: noqa: E501 - a case of a table stands on one line
 from __future__ import annotations
 
 from collections.abc import Sequence
@@ -22,6 +23,25 @@ STRENGTHS = (
 )
 DELAYS = ("#3", "#(1, 2)", "#(1:2:3, 4)", "#1.5", "#(2)", "#(1:1:1)")
 ATTRIBUTES = ("(* keep *)", '(* note = "a;b", n = 2 *)', "(* a = 1 + 1, b *)", "(* full *) (* soft = 0 *)")
+DIRECTIVES = ("`resetall", "`celldefine", "`endcelldefine", '`line 40 "other.v" 0', "`nounconnected_drive", "`default_nettype tri",
+    "`unconnected_drive pull1\n`nounconnected_drive")  # fmt: skip
+STRINGS = ("fast", "slow", "a b")
+TREE = """module tree #(parameter N = 1, parameter [3:0] LEVEL = 0) (input wire [N-1:0] a, output wire y);
+  wire hook;
+  generate
+    if (N == 1) begin : leaf
+      buf b (y, a[0]);
+    end else begin : fork_
+      localparam L = N / 2;
+      wire p, q;
+      tree #(.N(L), .LEVEL(LEVEL + 1)) low (a[L-1:0], p);
+      tree #(N - L, LEVEL + 1) high (.a(a[N-1:L]), .y(q));
+      nand g (y, p, q);
+    end
+  endgenerate
+endmodule
+"""
+
 Width = int | str
 """A number of bits, or the name of a parameter."""
 
@@ -163,6 +183,13 @@ class Pieces:
         self.scope.nets.append(net)
         self.scope.inner.append(net)
         self.gate_on(net)
+
+    def rail(self) -> None:
+        """Declare a net that is always 0 or 1 (4.6.5)."""
+        net = replace(self.bounds(self.random.choice((1, 2))), name=self.name("r"))
+        self.line(f"{self.random.choice(('supply0', 'supply1'))} {net.range} {net.name};")
+        self.scope.nets.append(net)
+        self.scope.inner.append(net)
 
     def memory(self) -> None:
         """Declare an array of nets (4.9); its words are nets."""

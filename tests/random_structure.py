@@ -7,35 +7,19 @@ unless its type allows more, and every name that is used exists, so the text is 
 # ruff: noqa: E501 - a case of a table stands on one line
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from dataclasses import replace
 from random import Random
 from typing import TYPE_CHECKING
 
+# isort: off
+# fmt: off
 if TYPE_CHECKING:
-    from tests.random_pieces import ATTRIBUTES, Module, Net, Pieces, Port, Scope, Width, under
+    from tests.random_pieces import ATTRIBUTES, DIRECTIVES, STRINGS, TREE, Module, Net, Pieces, Port, Scope, Width, under
 else:  # loaded under this name by conftest.py
-    from random_pieces import ATTRIBUTES, Module, Net, Pieces, Port, Scope, Width, under
-
-
-DIRECTIVES = ("`resetall", "`celldefine", "`endcelldefine", '`line 40 "other.v" 0', "`nounconnected_drive", "`default_nettype tri",
-    "`unconnected_drive pull1\n`nounconnected_drive")  # fmt: skip
-STRINGS = ("fast", "slow", "a b")
-TREE = """module tree #(parameter N = 1, parameter [3:0] LEVEL = 0) (input wire [N-1:0] a, output wire y);
-  wire hook;
-  generate
-    if (N == 1) begin : leaf
-      buf b (y, a[0]);
-    end else begin : fork_
-      localparam L = N / 2;
-      wire p, q;
-      tree #(.N(L), .LEVEL(LEVEL + 1)) low (a[L-1:0], p);
-      tree #(N - L, LEVEL + 1) high (.a(a[N-1:L]), .y(q));
-      nand g (y, p, q);
-    end
-  endgenerate
-endmodule
-"""
+    from random_pieces import ATTRIBUTES, DIRECTIVES, STRINGS, TREE, Module, Net, Pieces, Port, Scope, Width, under
+# fmt: on
+# isort: on
 
 
 class Writer(Pieces):
@@ -215,25 +199,16 @@ class Writer(Pieces):
 
     def condition(self) -> tuple[str, bool | None]:
         """Return a condition and what it comes to, as far as known."""
-        random = self.random
-        parameters: list[tuple[str, bool | None]] = [
-            ("K > 1", None),
-            ("W != 2 && K", None),
-            ('S == "fast"', None),
-            ("Q[0]", None),
-        ]
-        found = [
-            pair
-            for pair in parameters
-            if pair[0][0] in self.defaults and ("K" not in pair[0] or "K" in self.defaults)
-        ]
+        forms = {"K > 1": "K", "W != 2 && K": "WK", 'S == "fast"': "S", "Q[0]": "Q"}
+        found: list[tuple[str, bool | None]] = []
+        found += [(text, None) for text, names in forms.items() if set(names) <= self.defaults.keys()]
         for text, low, _ in self.scope.indices[:1]:
             if text.isalnum() and low >= 0:
                 found.append((f"{text} % 2 == 0", None))
         for name, value in self.known.items():
             found.append((f"{name} > 3", value > 3))
         found += [("1", True), ("2 < 1", False)]
-        return random.choice(found)
+        return self.random.choice(found)
 
     def choice(self, size: int) -> None:
         """Write an `if`, with `else` and `else if`."""
@@ -271,12 +246,13 @@ class Writer(Pieces):
         nested = [self.loop, self.choice, self.case, *([self.loop_of_width] if "W" in self.defaults else [])]
         if size and self.maybe(0.45):
             return self.random.choice(nested)(size)
-        plain: list[Callable[[], None]] = [
+        plain = [
             self.gate,
             self.gate,
             self.assign,
             self.several,
             self.constants,
+            self.rail,
             self.memory,
             self.tree,
         ]
@@ -406,7 +382,7 @@ def structure(seed: int, size: int = 5, fault: str = "", modules: str = "") -> s
     random.shuffle(texts)
     if strict:
         return "`default_nettype none\n" + "\n".join(texts)
-    wrapped = (
-        f"{random.choice(DIRECTIVES)}\n{text}`resetall\n" if random.random() < 0.2 else text for text in texts
-    )
-    return "\n".join(wrapped)
+    for at, text in enumerate(texts):
+        if random.random() < 0.2:
+            texts[at] = f"{random.choice(DIRECTIVES)}\n{text}`resetall\n"
+    return "\n".join(texts)

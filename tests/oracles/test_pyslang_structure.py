@@ -1,8 +1,8 @@
 """The whole structural language against pyslang, a front end of IEEE 1800: the same design, the same verdict.
 
 Compared: scopes with their modules and the values of their parameters, gates, net bits by hierarchical name
-(so the names of generate blocks too), and which pins are on one net. `wanted_differences.toml` lists where the
-two may differ, `structure_faults.toml` what neither may let pass.
+(so the names of generate blocks too), and which pins are on one net. `wanted_differences.toml` lists where
+the two may differ, `structure_faults.toml` what neither may let pass.
 """
 
 from __future__ import annotations
@@ -51,8 +51,8 @@ BAD_SUB = (
 PULLS = ("pullup", "pulldown")
 ERRORS = {
     "CannotIndexScalar", "DuplicateDefinition", "IndexOOB", "InitializerRequired", "MixedVarAssigns",
-    "MultipleContAssigns", "ParameterDoesNotExist", "RangeOOB", "RangeSelectReversed", "RangeWidthOOB", "Redefinition",
-    "RedefinitionDifferentType", "UnknownSystemName",
+    "MultipleContAssigns", "ParameterDoesNotExist", "RangeOOB", "RangeSelectReversed", "RangeWidthOOB",
+    "Redefinition", "RedefinitionDifferentType", "UnknownSystemName",
 }  # fmt: skip
 """What the other side takes as errors unless told otherwise, beside those that always are."""
 
@@ -64,7 +64,7 @@ Pins = dict[tuple[str, int], Bit]
 
 
 class Seen(NamedTuple):
-    """A design: `scopes` name → module and parameters, names of net bits, `pins` of gates → a net's stand-in."""
+    """A design: `scopes` name → module and parameters, names of net bits, `pins` → a net's stand-in."""
 
     scopes: dict[str, tuple[str, dict[str, object]]]
     nets: set[str]
