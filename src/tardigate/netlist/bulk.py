@@ -17,7 +17,7 @@ from tardigate.netlist.flat import CONSTANTS, OPEN
 from tardigate.netlist.implicit import spread
 from tardigate.netlist.interface import Interface
 from tardigate.netlist.lookup import Lookup
-from tardigate.netlist.variables import RANGED, Variables
+from tardigate.netlist.variables import RANGED, REGISTER, Variables
 from tardigate.parts.kind import Way
 from tardigate.source.arrays import distinct
 from tardigate.syntax.verilog_reader import Unit
@@ -111,6 +111,15 @@ class Bulk:
         net[names == -1] = OPEN
         return net
 
+    def _no_nets(self, nets: NDArray[np.int32]) -> NDArray[np.bool_]:
+        """Tell which local nets are variables, which nothing here may drive (clause 7.1.6)."""
+        registers = self.variables.flags & REGISTER > 0
+        if not registers.any():
+            return np.zeros(len(nets), np.bool_)
+        of_net = np.concatenate((np.zeros(CONSTANTS, np.bool_), np.repeat(registers, self.variables.width)))
+        found: NDArray[np.bool_] = of_net[np.maximum(nets, 0)]
+        return found
+
     def _names_and_places(self, statements: NDArray[np.int64]) -> tuple[NDArray[np.int32], NDArray[np.int64]]:
         name = self.plain.name[statements]
         mark = self.plain.first[statements] + np.where(name >= 0, 1, 2)
@@ -131,7 +140,7 @@ class Bulk:
         for statement in np.flatnonzero(many):
             begin = int(rows.start[statement])
             inner[begin : begin + int(rows.counts[statement]) - 1] = False
-        unclear = (rows.net == UNCLEAR) | (~inner & (rows.net < CONSTANTS))
+        unclear = (rows.net == UNCLEAR) | (~inner & ((rows.net < CONSTANTS) | self._no_nets(rows.net)))
         clear = ~np.logical_or.reduceat(unclear, rows.start)
         kind = np.full(len(statements), -1, np.int32)
         widest = int(rows.counts.max()) + 1
@@ -164,7 +173,7 @@ class Bulk:
         wrong = (pin < 0) | (pin >= len(interface.pins)) | (rows.net == UNCLEAR)
         ways = np.array([int(p.way) for p in interface.pins])
         drives = ways[np.clip(pin, 0, len(ways) - 1)] != Way.INPUT
-        wrong |= drives & (rows.net >= 0) & (rows.net < CONSTANTS)
+        wrong |= drives & (rows.net >= 0) & ((rows.net < CONSTANTS) | self._no_nets(rows.net))
         cell = owner * len(interface.pins) + np.clip(pin, 0, len(interface.pins) - 1)
         wrong |= np.bincount(cell, minlength=len(statements) * len(interface.pins))[cell] > 1
         clear = np.ones(len(statements), bool)

@@ -44,7 +44,8 @@ class Connector:
         found: list[tree.Connection | None] = [None] * len(interface.pins)
         named = [c for c in instance.connections if c.pin]
         if named and len(named) < len(instance.connections):
-            self.wiring.collector.tell("N163", self.wiring.span(instance.at, len(instance.name)))
+            span = self.wiring.span(instance.at, len(instance.name))
+            self.wiring.collector.tell("N163", span, what="connections")
             return None
         if not named:
             if len(instance.connections) > len(found):
@@ -91,8 +92,12 @@ class Connector:
         if pin.way != Way.INPUT and not is_target(net):
             self.wiring.collector.tell("N165", self.wiring.span(net.at), pin=pin.name)
             return None
+        if pin.way != Way.INPUT and not self.wiring.may_drive(net):
+            return None
         constant = isinstance(net, tree.Number) and net.width is None
+        self.wiring.driving = pin.way != Way.INPUT
         nets = self.expressions.nets(net, pin.width if constant else None)
+        self.wiring.driving = False
         if not nets:
             return None
         if len(nets) == pin.width:

@@ -202,6 +202,9 @@ class Declarer:
         self, declaration: tree.Declaration, values: Mapping[str, Value], columns: _Columns
     ) -> None:
         way = WAYS.get(declaration.direction, NO_DIRECTION)
+        if way in (Way.INPUT, Way.INOUT) and declaration.net_type in ("reg", *_VARIABLES):
+            name = declaration.names[0].name
+            self.collector.tell("N129", self._span(declaration.names[0].at, name), name=name)
         plain = [named for named in declaration.names if not named.dimensions]
         if plain:
             shape = self._shape(declaration, plain[0], values)

@@ -29,6 +29,7 @@ from tardigate.netlist.wiring import Wiring
 from tardigate.parts.kind import Way
 from tardigate.source.arrays import distinct
 from tardigate.source.diagnostic import Related
+from tardigate.syntax import tree
 
 
 class Elaborator:
@@ -93,6 +94,23 @@ class Elaborator:
             columns.place, tuple(children), self._typed(made.wires), tuple(self.wiring.links),
         )  # fmt: skip
 
+    def _tell_constants(self, numbers: NDArray[np.int32], places: NDArray[np.int64]) -> None:
+        """Tell of instances that have the name of a parameter (N110)."""
+        values = self.hierarchy.scopes[0].values
+        taken = self.declarer.lookup.find_all(values) if values else []
+        for at in np.flatnonzero(np.isin(numbers, taken)).tolist() if taken else ():
+            name = self.unit.scan.names.text(int(numbers[at]))
+            declared = [*self.module.parameters, *self.hierarchy.scopes[0].items]
+            first = [
+                named.at
+                for item in declared
+                if isinstance(item, tree.Parameter)
+                for named in item.names
+                if named.name == name
+            ]
+            one, other = sorted((int(places[at]), *first[:1]))
+            self.declarer.twice_at(name, other, one)
+
     def _typed(self, wires: Mapping[int, int]) -> dict[str, NDArray[np.int32]]:
         """Return the local nets by type and pull; a net's type counts before its delay as well."""
         types = self.variables.flags >> TYPE
@@ -109,11 +127,13 @@ class Elaborator:
 
         Those in blocks were told of before.
         """
-        children = [child for child in self.items.children if "." not in child.name]
-        below = [(self.declarer.lookup.find(child.name), child.place) for child in children]
+        children = [(child.name, child.place) for child in self.items.children if child.name[-1] != "]"]
+        others = [*(one for one in children if "." not in one[0]), *self.items.arrays]
+        below = self.declarer.lookup.find_all([name for name, _ in others])
         named = np.flatnonzero(columns.name >= 0)
-        numbers = np.concatenate((columns.name[named], np.array([n for n, _ in below], np.int32)))
-        places = np.concatenate((columns.place[named], np.array([at for _, at in below], np.int64)))
+        numbers = np.concatenate((columns.name[named], np.array(below, np.int32)))
+        places = np.concatenate((columns.place[named], np.array([at for _, at in others], np.int64)))
+        self._tell_constants(numbers, places)
         net = self.of_name[numbers]
         for at in np.flatnonzero((net >= 0) & (numbers >= 0)).tolist():
             name, other = self.unit.scan.names.text(int(numbers[at])), int(self.variables.place[net[at]])

@@ -215,6 +215,11 @@ class Hierarchy:
         """Return what an instance statement's `#(...)` overrides, None after telling (N168, N120)."""
         found: dict[str, Value] = {}
         names = self.outside.parameter_names(item.module) if item.overrides else None
+        named = [override.pin for override in item.overrides if override.pin]
+        if named and len(named) < len(item.overrides):
+            span = self._span(item.at, len(item.module))
+            self.collector.tell("N163", span, what="parameters")
+            return None
         for at, override in enumerate(item.overrides):
             name = override.pin or (names[at] if names and at < len(names) else "")
             if names is not None and name not in names:
@@ -222,6 +227,9 @@ class Hierarchy:
                     self._span(override.at, max(1, len(override.pin))), item.module,
                     override.pin or f"number {at + 1}", override.pin, names,
                 )  # fmt: skip
+                return None
+            if override.pin and named.count(override.pin) > 1:
+                self.collector.tell("N159", self._span(override.at, len(override.pin)), name=override.pin)
                 return None
             if override.net is not None:
                 try:
@@ -283,6 +291,17 @@ class Hierarchy:
             landing = found
         variable = inside.variable(landing.scope, name)
         return None if variable < 0 else Target(tuple(path), inside, variable)
+
+    def is_delayed(self, variable: int) -> bool:
+        """Tell whether a variable is a net with a delay of its own."""
+        scope, name = int(self.variables.scope[variable]), int(self.variables.name[variable])
+        text = self.variables.names.text(name)
+        return any(
+            named.name == text and named.value is None
+            for item in self.scopes[scope].items
+            if isinstance(item, tree.Declaration) and item.delay is not None
+            for named in item.names
+        )
 
     def variable(self, scope: int, name: str) -> int:
         """Return the variable that is declared in a scope under a name, -1 for none."""

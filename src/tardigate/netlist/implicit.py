@@ -14,7 +14,7 @@ from numpy.typing import NDArray
 
 from tardigate.netlist.declare import Declarer
 from tardigate.netlist.scopes import Scope, chain
-from tardigate.netlist.variables import Declared, Variables
+from tardigate.netlist.variables import TYPE, TYPES, Declared, Variables
 from tardigate.syntax import tree
 from tardigate.syntax.verilog_reader import Unit
 
@@ -24,14 +24,16 @@ def declare_implicit(
     scopes: Sequence[Scope],
     variables: Variables,
     of_name: NDArray[np.int32],
-    allowed: bool,
+    net_type: str,
 ) -> None:
-    """Add implicit nets to `variables` and `of_name`, or tell of them (N138)."""
+    """Add implicit nets of a type to `variables` and `of_name`, or tell of them where it is `none` (N138)."""
+    flags = TYPES.index(net_type) << TYPE if net_type in TYPES else 0
     found = _of_module(declarer, scopes[0], of_name)
-    declared = [Declared(number, 0, 0, 1, at, 0, 0) for number, at in found.items()]
+    declared = [Declared(number, 0, 0, 1, at, flags, 0) for number, at in found.items()]
     for scope in scopes[1:]:
-        declared += _of_block(declarer, scope, scopes, variables, of_name, found)
-    if not allowed:
+        found_here = _of_block(declarer, scope, scopes, variables, of_name, found)
+        declared += [one._replace(flags=flags) for one in found_here]
+    if net_type == "none":
         for one in declared:
             name = variables.names.text(one.name)
             room = declarer.collector.room("N138")
@@ -53,10 +55,10 @@ def _of_module(declarer: Declarer, scope: Scope, of_name: NDArray[np.int32]) -> 
     if len(plain):
         names, places = _plain_names(declarer.unit, plain, of_name)
         found = dict(zip(names.tolist(), places.tolist(), strict=True))
-        for name in scope.values:
+        for name in (*scope.values, *scope.genvars):
             found.pop(declarer.lookup.find(name), None)
     for name, at in connection_names(scope.items):
-        if name not in scope.values:
+        if name not in scope.values and name not in scope.genvars:
             number = declarer.lookup.find(name)
             if of_name[number] < 0:
                 found[number] = min(at, found.get(number, at))
@@ -73,7 +75,8 @@ def _of_block(
     for name, at in connection_names(scope.items):
         number = declarer.lookup.find(name)
         known = of_name[number] >= 0 or found.get(number, at) < at or number in declared
-        if known or name in scope.values or any((one.number, number) in variables.scoped for one in around):
+        known = known or name in scope.values or name in scope.genvars
+        if known or any((one.number, number) in variables.scoped for one in around):
             continue
         declared[number] = Declared(number, 0, 0, 1, at, 0, scope.number)
     for one in declared.values():  # seen by the blocks inside, which come later

@@ -82,6 +82,7 @@ class Items:
         self.strangers: list[Strange] = []
         self.pulled: dict[str, list[int]] = {}
         self.net_delays: dict[int, NetDelay] = {}
+        self.arrays: list[tuple[str, int]] = []
         self.expressions = Expressions(wiring, self._emit)
         self.connector = Connector(wiring, self.expressions)
         self._delay: SourceDelay | None = None
@@ -147,10 +148,13 @@ class Items:
             if len(gate.terminals) != 1:
                 span = self.wiring.span(gate.at, max(1, len(gate.name)))
                 self.collector.tell("N167", span, gate=item.word, count=len(gate.terminals))
-            elif not is_target(gate.terminals[0]):
-                self.collector.tell("N165", self.wiring.span(gate.at), pin=item.word)
-            else:
-                self.pulled.setdefault(item.word, []).extend(self.expressions.nets(gate.terminals[0]))
+                continue
+            indices = self.connector.array(gate.range)
+            pin = InterfacePin(item.word, Way.OUTPUT, 1)
+            connection = tree.Connection("", gate.terminals[0], gate.terminals[0].at)
+            nets = None if indices is None else self._pins([pin], [connection], len(indices), scalar=True)
+            for of_copy in nets or ():
+                self.pulled.setdefault(item.word, []).extend(of_copy)
 
     def _pins(
         self, interface: Sequence[InterfacePin], connections: Sequence[tree.Connection | None], copies: int,
@@ -170,7 +174,7 @@ class Items:
         self, kind: int, name: str, is_array: bool, indices: Sequence[int], at: int, pins: list[list[int]]
     ) -> None:
         if name:
-            self._note_name(name, at)
+            self._note_name(name, at, is_array)
         for index, nets in zip(indices, pins, strict=True):
             number = -1
             if is_array and name:
@@ -180,8 +184,10 @@ class Items:
                 number = number if number >= 0 else self.instances.other_name(self._prefix + name)
             self.instances.add(kind, at, number, nets)
 
-    def _note_name(self, name: str, at: int) -> None:
+    def _note_name(self, name: str, at: int, is_array: bool) -> None:
         """Tell of two things with one name in a generate block (clause 4.11; N115, N110)."""
+        if is_array and not self._prefix:
+            self.arrays.append((name, at))
         first = self._named.setdefault(name, at) if self._prefix else at
         net = self.wiring.variables.scoped.get((self.wiring.scope, self.lookup.find(name)), -1)
         if net >= 0:
@@ -238,7 +244,8 @@ class Items:
         if part is not None:
             self._add(number, instance.name, is_array, indices, instance.at, nets)
             return
-        self._note_name(instance.name, instance.at)
+        if not only:
+            self._note_name(instance.name, instance.at, is_array)
         for index, of_copy in zip(indices, nets, strict=True):
             name = f"{self._prefix}{instance.name}" + (f"[{index}]" if is_array else "")
             self.children.append(Child(name, number, np.array(of_copy, np.int32), instance.at))
@@ -298,7 +305,11 @@ class Items:
         if not is_target(target):
             self.collector.tell("N165", self.wiring.span(target.at), pin="left side")
             return
+        if not self.wiring.may_drive(target):
+            return
+        self.wiring.driving = True
         nets = self.expressions.nets(target)
+        self.wiring.driving = False
         if nets:
             self._delay = delay
             self.expressions.nets(value, len(nets), nets)

@@ -13,6 +13,7 @@ from tardigate.netlist.constants import NotConstantError, evaluate
 from tardigate.netlist.delays import Delays
 from tardigate.netlist.expression import Expressions
 from tardigate.netlist.flat import CONSTANTS
+from tardigate.netlist.variables import REGISTER
 from tardigate.netlist.wiring import Wiring
 from tardigate.parts.function import Network
 from tardigate.parts.source_delay import SourceDelay
@@ -169,12 +170,26 @@ class Moves:
             if value != net and moved.delays.setdefault(net, delay) != delay:
                 raise NoRegisterError("it moves one reg after different delays", move.at)
 
+    def _is_variable(self, target: tree.Expression) -> bool:
+        """Tell whether all of a target is declared as a variable (clause 9.2)."""
+        work, variables = [target], self._wiring.variables
+        while work:
+            node = work.pop()
+            work.extend(tree.operands(node))
+            if isinstance(node, tree.Reference) and len(node.path) == 1:
+                variable = self._wiring.variable(node.path[0])
+                if variable >= 0 and not variables.flags[variable] & REGISTER:
+                    return False
+        return True
+
     def _sides(self, move: tree.Move) -> tuple[list[int], list[int]]:
         """Return the nets of both sides, as many of each."""
         if not is_target(move.target):
             self._wiring.collector.tell("N165", self._wiring.span(move.target.at), pin="left side")
             raise NoRegisterError
         self._only_nets(move.value)
+        if not self._is_variable(move.target):
+            raise NoRegisterError("what it moves into is a net and no `reg`", move.target.at)
         targets = self._expressions.nets(move.target)
         values = self._expressions.nets(move.value, len(targets)) if targets else []
         if not values:

@@ -159,7 +159,7 @@ class Shop:
             states = unit.source.default_nettypes
             at = _in_force([s[0] for s in states], self.modules.text(name).start)
             with self.tables.of(unit, variables) as table:
-                declare_implicit(declarer, scopes, variables, table, at < 0 or states[at][1] != "none")
+                declare_implicit(declarer, scopes, variables, table, states[at][1] if at >= 0 else "wire")
             self._hierarchies[template] = Hierarchy(module, declarer, scopes, variables, settings, self)
         return self._hierarchies[template]
 

@@ -20,7 +20,7 @@ from tardigate.netlist.lookup import Lookup
 from tardigate.netlist.name_columns import bit_name
 from tardigate.netlist.scopes import Scope
 from tardigate.netlist.template import Link
-from tardigate.netlist.variables import RANGED, SIGNED, Shape, Variables
+from tardigate.netlist.variables import RANGED, REGISTER, SIGNED, Shape, Variables
 from tardigate.source.collector import Collector
 from tardigate.source.span import Span
 from tardigate.syntax import tree
@@ -50,6 +50,7 @@ class Wiring:
         self.declarer, self.variables, self.scopes = declarer, variables, scopes
         self.values: Mapping[str, Value] = scopes[0].values
         self.scope = 0
+        self.driving = False
         self.links: list[Link] = []
         self._hierarchy = hierarchy
         self._linked: dict[tuple[tuple[str, ...], int, int], int] = {}
@@ -65,6 +66,20 @@ class Wiring:
     def span(self, at: int, length: int = 1) -> Span:
         """Return a place in the module's text."""
         return self.unit.text.span(at, at + length)
+
+    def may_drive(self, target: tree.Expression) -> bool:
+        """Tell whether nets stand where something drives; tells of variables (N129; clause 12.3.9.2)."""
+        work = [target]
+        while work:
+            node = work.pop()
+            work.extend(tree.operands(node))
+            if isinstance(node, tree.Reference) and len(node.path) == 1:
+                variable = self.variable(node.path[0])
+                if variable >= 0 and self.variables.flags[variable] & REGISTER:
+                    span = self.span(node.at, len(node.path[0]))
+                    self.collector.tell("N129", span, name=node.path[0])
+                    return False
+        return True
 
     def variable(self, name: str) -> int:
         """Return the number of a variable, -1 when there is none."""
@@ -123,8 +138,12 @@ class Wiring:
             self.collector.tell("N137", self.span(reference.at, len(reference.path[0])), name=dotted)
             return []
         inside = target.inside.variables
+        outside = target.inside is not self._hierarchy
+        if outside and self.driving and target.inside.is_delayed(target.variable):
+            self.collector.tell("N169", self.span(reference.at, len(reference.path[0])), net=dotted)
+            return []
         bits = self._selected(reference, inside, target.variable)
-        if target.inside is self._hierarchy:
+        if not outside:
             return bits
         return [self._link(target, bit, reference.at) for bit in bits]
 

@@ -24,6 +24,9 @@ FAR = 40
 LONGEST = 20_000
 """Tokens of a statement that is still read a second time."""
 
+MOST_FAULTS = 100_000
+"""Faults after which nobody counts on."""
+
 MOST_REPAIRS = 100
 """Faults for which a repair is looked for."""
 
@@ -209,6 +212,8 @@ class _Pass:
                 found.append(self._trouble(token, repair))
             elif not follows:
                 more += 1
+                if more >= MOST_FAULTS:
+                    break
             if not self._go_on(token, repair):
                 break
             self._quiet = True

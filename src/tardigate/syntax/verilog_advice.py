@@ -21,7 +21,9 @@ from tardigate.syntax.words import GATES, PROCEDURAL, RESERVED
 FRIENDLY: Mapping[str, str] = {
     "IDENT": "a name", "NUMBER": "a number", "STRING": "a text in quotes", "SYSTEM": "a system function",
     "GATE": "a gate", "PULL": "a gate", "DIRECTION": "`input`, `output` or `inout`",
-    "NET_TYPE": "a type of net", "VARIABLE": "a type of variable", "STRENGTH": "a strength",
+    "NET_TYPE": "a type of net", "VARIABLE": "a type of variable", "REG": "`reg`",
+    "TRIREG": "a type of net", "SUPPLY0": "`supply0`", "SUPPLY1": "`supply1`", "STRENGTH0": "a strength",
+    "STRENGTH1": "a strength", "HIGHZ0": "a strength", "HIGHZ1": "a strength",
     "CHARGE": "a size of charge", "EDGE": "an edge", "EDGE_LIST": "an edge",
     "PULSE_STYLE": "a style of pulses",
     "ARROW": "`=>` or `*>`", "OR": "`or`", "UNARY": "an operator", "AND_OR": "an operator",
