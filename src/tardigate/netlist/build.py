@@ -9,7 +9,6 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import NamedTuple
 
-from tardigate.netlist.cell_shop import Cells
 from tardigate.netlist.flat import Flat
 from tardigate.netlist.hierarchy import Overrides
 from tardigate.netlist.modules import Modules, collect, find_top
@@ -47,7 +46,10 @@ def build(
     collector.refuse()
     assert found is not None
     shop = Shop(modules, library, collector)
-    shop.cells = Cells(shop)
+    if any(unit.cells for unit in units):
+        from tardigate.netlist.cell_shop import Cells  # few designs have any
+
+        shop.cells = Cells(shop)
     modules.readable(found, collector)
     collector.refuse()
     if shop.is_cell(found):

@@ -14,6 +14,7 @@ from tardigate.netlist.cells import cell_part
 from tardigate.netlist.constants import Value, rounded
 from tardigate.netlist.hierarchy import Overrides
 from tardigate.netlist.interface import Interface
+from tardigate.netlist.primitives import Primitives
 from tardigate.netlist.rings import tell_ring
 from tardigate.netlist.shop import Shop
 from tardigate.netlist.stamp import TooLargeError, stamp
@@ -71,9 +72,14 @@ class _BodyShop(Shop):
         super().__init__(outer.modules, library, outer.collector)
         self.lookups, self.tables = outer.lookups, outer.tables
         self.cells = self._cells = cells
-        self.primitives = outer.primitives
+        self._outer = outer
         self.inner: dict[int, Inner] = {}
         self.is_opaque = False
+
+    @property
+    def primitives(self) -> Primitives:
+        """Those of the design."""
+        return self._outer.primitives
 
     def no_register(self, _told: Diagnostic) -> None:
         """Take an `always` that is no register for procedural code that nobody reads."""

@@ -25,12 +25,6 @@ from tardigate.parts.timing_checks import build_checks, delayed_signals
 from tardigate.syntax import tree
 
 
-def says_times(module: tree.Module) -> bool:
-    """Tell whether a module has a specify block with paths or checks, and so is a part."""
-    blocks = [item for item in module.items if isinstance(item, tree.Specify)]
-    return any(isinstance(item, tree.Path | tree.TimingCheck) for block in blocks for item in block.items)
-
-
 def cell_part(module: tree.Module, body: Body, delays: Delays) -> Part:
     """Return a module as a part with one column of times; what is wrong is told to the delays' collector."""
     items = [item for each in module.items if isinstance(each, tree.Specify) for item in each.items]

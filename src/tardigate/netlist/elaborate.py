@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from operator import attrgetter
+from types import MappingProxyType
 
 import numpy as np
 from numpy.typing import NDArray
@@ -20,7 +21,6 @@ from tardigate.netlist.hierarchy import Hierarchy
 from tardigate.netlist.implicit import plain_statements
 from tardigate.netlist.items import Items, Workshop
 from tardigate.netlist.name_columns import InstanceNames, NetNames
-from tardigate.netlist.net_delay import delay_nets, marked
 from tardigate.netlist.plain_tree import instance_tree
 from tardigate.netlist.ports import template_ports
 from tardigate.netlist.template import Template, TemplatePort
@@ -30,6 +30,8 @@ from tardigate.parts.kind import Way
 from tardigate.source.arrays import distinct
 from tardigate.source.diagnostic import Related
 from tardigate.syntax import tree
+
+_NOTHING: Mapping[int, int] = MappingProxyType({})
 
 
 class Elaborator:
@@ -73,25 +75,23 @@ class Elaborator:
         return left
 
     def _made(self, parameters: str, ports: tuple[TemplatePort, ...]) -> Template:
-        made = delay_nets(
-            self.items.net_delays,
-            self.items.instances,
-            ports,
-            self.items.children,
-            self.wiring,
-            self.workshop,
-        )
-        columns = made.columns
+        columns, children, before = self.items.instances.columns(), self.items.children, _NOTHING
+        if self.items.net_delays:
+            from tardigate.netlist.net_delay import delay_nets  # few designs have any
+
+            columns, ports, children, before = delay_nets(
+                self.items.net_delays, columns, ports, children, self.wiring, self.workshop
+            )
         start = np.concatenate(([0], np.cumsum(columns.counts)))
         names = InstanceNames(self.unit.scan.names, columns.name, self.items.instances.others)
-        children = sorted(made.children, key=lambda child: child.place)
+        children = sorted(children, key=lambda child: child.place)
         self._tell_same_names(columns)
         if self.items.strangers:
-            self.workshop.undescribed(self.items.strangers, self._driven(made.ports, columns))
+            self.workshop.undescribed(self.items.strangers, self._driven(ports, columns))
         return Template(
-            self.module.name, parameters, self.unit.text, self.module.at, made.ports,
+            self.module.name, parameters, self.unit.text, self.module.at, ports,
             NetNames(self.variables), self.variables.net_places(), columns.kind, start, columns.pins, names,
-            columns.place, tuple(children), self._typed(made.wires), tuple(self.wiring.links),
+            columns.place, tuple(children), self._typed(before), tuple(self.wiring.links),
         )  # fmt: skip
 
     def _tell_constants(self, numbers: NDArray[np.int32], places: NDArray[np.int64]) -> None:
@@ -111,7 +111,7 @@ class Elaborator:
             one, other = sorted((int(places[at]), *first[:1]))
             self.declarer.twice_at(name, other, one)
 
-    def _typed(self, wires: Mapping[int, int]) -> dict[str, NDArray[np.int32]]:
+    def _typed(self, before: Mapping[int, int]) -> dict[str, NDArray[np.int32]]:
         """Return the local nets by type and pull; a net's type counts before its delay as well."""
         types = self.variables.flags >> TYPE
         found = {word: np.array(nets, np.int32) for word, nets in self.items.pulled.items()}
@@ -119,7 +119,8 @@ class Elaborator:
             of_net = np.repeat(types, self.variables.width)
             for number in distinct(types[types > 0]).tolist():
                 nets = (np.flatnonzero(of_net == number) + CONSTANTS).astype(np.int32)
-                found[TYPES[number]] = marked(nets, wires)
+                more = [before[net] for net in nets.tolist() if net in before] if before else []
+                found[TYPES[number]] = np.concatenate((nets, np.array(more, np.int32)))
         return found
 
     def _tell_same_names(self, columns: Block) -> None:

@@ -19,15 +19,10 @@ from tardigate.syntax import tree
 MOST_BLOCKS = 1 << 16
 """Generate blocks that one module may become."""
 
-_SILENT = (tree.Genvars, *GENERATE)
-
 
 def expand(module: tree.Module, values: Mapping[str, Value], declarer: Declarer) -> list[Scope]:
     """Return the scopes of a module, each after the one around it; tells N110, N116 to N119, N120."""
     root = Scope(0, -1, "", "", values, module.at)
-    if not any(isinstance(item, _SILENT) for item in module.items):
-        root.items = list(module.items)
-        return [root]
     return _Expansion(declarer).run(root, module.items)
 
 

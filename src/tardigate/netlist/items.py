@@ -7,7 +7,7 @@ statements that `bulk` has read do not come here.
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
-from typing import NamedTuple, Protocol
+from typing import TYPE_CHECKING, NamedTuple, Protocol
 
 import numpy as np
 from numpy.typing import NDArray
@@ -20,25 +20,36 @@ from tardigate.netlist.delays import NO_DELAY, Delays
 from tardigate.netlist.expression import Expressions
 from tardigate.netlist.hierarchy import Hierarchy, Outside, Overrides, Seat
 from tardigate.netlist.interface import Interface, InterfacePin
-from tardigate.netlist.net_delay import Desk, NetDelay, declared_delays
-from tardigate.netlist.registers import RegisterBit, registers_of
 from tardigate.netlist.scopes import Scope
 from tardigate.netlist.template import Child
 from tardigate.netlist.wiring import Wiring
-from tardigate.parts.kind import Way
+from tardigate.parts.kind import Kind, Way
 from tardigate.parts.source_delay import SourceDelay
 from tardigate.source.diagnostic import Diagnostic, Related
 from tardigate.syntax import tree
+
+if TYPE_CHECKING:
+    from tardigate.netlist.net_delay import NetDelay
+    from tardigate.netlist.registers import RegisterBit
 
 _DELAYS = {"bufif0": 3, "bufif1": 3, "notif0": 3, "notif1": 3}
 """Most delays of a gate (clause 7.14); the others take two."""
 
 
-class Workshop(Outside, Desk, Protocol):
+class Workshop(Outside, Protocol):
     """What elaboration needs from outside a module."""
 
     def gate(self, gate: str, inputs: int, outputs: int, delay: SourceDelay | None) -> int:
         """Return the number of a gate's kind."""
+
+    def operator(self, operator: str, inputs: int, delay: SourceDelay | None) -> int:
+        """Return the number of an operator's kind."""
+
+    def kind(self, number: int) -> Kind:
+        """Return a kind by number."""
+
+    def interface_of(self, template: int) -> Interface:
+        """Return the interface of a module below that has been asked for."""
 
     def part(self, module: str, parameters: Mapping[str, Value]) -> tuple[Interface, int] | None:
         """Return the interface and kind of a described part or a cell, None for anything else."""
@@ -283,6 +294,8 @@ class Items:
         self.strangers.append(Strange(item.module, item.at, len(indices), pins))
 
     def _registers(self, item: tree.Always) -> None:
+        from tardigate.netlist.registers import registers_of  # few designs have any
+
         name = self.hierarchy.module.name
         for bit in registers_of(item, name, self.wiring, self.expressions, self.delays, self.workshop):
             kind = self.workshop.register(bit)
@@ -292,6 +305,8 @@ class Items:
 
     def _declaration(self, item: tree.Declaration) -> None:
         if item.delay is not None:
+            from tardigate.netlist.net_delay import declared_delays  # few designs have any
+
             self.net_delays |= declared_delays(item, self.wiring, self.delays)
         assigned = [named for named in item.names if named.value is not None]
         if not assigned or item.net_type in ("reg", "integer", "time", "real", "realtime", "event"):

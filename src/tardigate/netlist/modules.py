@@ -15,7 +15,7 @@ from tardigate.source.diagnostic import Related, did_you_mean
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.span import Span
 from tardigate.syntax.outline import ModuleText
-from tardigate.syntax.tree import Module, Parameter
+from tardigate.syntax.tree import Module, Parameter, Path, Specify, TimingCheck
 from tardigate.syntax.verilog_reader import Unit, parse_module
 
 
@@ -82,6 +82,11 @@ class Modules:
         """Return the parameter declarations of a module that can be parsed, in order."""
         module = self.tree(name)
         return [*module.parameters, *(item for item in module.items if isinstance(item, Parameter))]
+
+    def says_times(self, name: str) -> bool:
+        """Tell whether a module that can be parsed has a specify block with paths or checks."""
+        blocks = [item for item in self.tree(name).items if isinstance(item, Specify)]
+        return any(isinstance(item, Path | TimingCheck) for block in blocks for item in block.items)
 
     def has_specify(self, name: str) -> bool:
         """Tell whether a module has a specify block."""

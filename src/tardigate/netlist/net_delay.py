@@ -86,13 +86,10 @@ def declared_delays(declaration: tree.Declaration, wiring: Wiring, delays: Delay
 
 
 def delay_nets(
-    delays: Mapping[int, NetDelay], instances: Instances, ports: tuple[TemplatePort, ...],
+    delays: Mapping[int, NetDelay], columns: Block, ports: tuple[TemplatePort, ...],
     children: list[Child], wiring: Wiring, desk: Desk,
 ) -> Delayed:  # fmt: skip
-    """Put the delays of nets in place. `delays` by local net; with none everything stays as it is."""
-    columns = instances.columns()
-    if not delays:
-        return Delayed(columns, ports, children, {})
+    """Put the delays of nets in place. `delays` by local net."""
     work = _Pass(delays, wiring, desk)
     columns = work.instances(columns)
     children = [work.child(child) for child in children]
@@ -207,11 +204,3 @@ def _floating(kind: Kind, start: NDArray[np.int64], pins: NDArray[np.int32]) -> 
         return np.zeros(len(start), np.bool_)
     fed: NDArray[np.bool_] = (pins[start[:, None] + np.arange(len(kind.pins))] == _FLOATING).any(axis=1)
     return fed
-
-
-def marked(nets: NDArray[np.int32], wires: Mapping[int, int]) -> NDArray[np.int32]:
-    """Return nets with a mark (wired, driven) and the nets before their delays, which have it too."""
-    if not wires:
-        return nets
-    more = [wires[net] for net in nets.tolist() if net in wires]
-    return np.concatenate((nets, np.array(more, np.int32)))

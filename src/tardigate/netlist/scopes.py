@@ -31,6 +31,12 @@ class Scope:
     blocks: dict[str, int] = field(default_factory=dict)
 
 
+def has_generate(items: Sequence[tree.Item]) -> bool:
+    """Tell whether there is a generate construct or a genvar among items."""
+    kinds = (tree.Genvars, tree.GenerateFor, tree.GenerateIf, tree.GenerateCase)
+    return any(isinstance(item, kinds) for item in items)
+
+
 def chain(scopes: Sequence[Scope], number: int) -> list[Scope]:
     """Return a scope and those around it, the module last."""
     found = []

@@ -9,18 +9,16 @@ from __future__ import annotations
 from bisect import bisect_right
 from collections import Counter
 from collections.abc import Iterable, Mapping, Sequence
-from typing import Protocol
+from typing import TYPE_CHECKING, Protocol
 
 import numpy as np
 from numpy.typing import NDArray
 
-from tardigate.netlist.cells import says_times
 from tardigate.netlist.columns import Block, Kinds
 from tardigate.netlist.constants import Value, rounded, words_of
 from tardigate.netlist.declare import Declarer
 from tardigate.netlist.delays import Delays
 from tardigate.netlist.elaborate import Elaborator
-from tardigate.netlist.generate import expand
 from tardigate.netlist.hierarchy import Hierarchy, Overrides, Setting
 from tardigate.netlist.implicit import declare_implicit
 from tardigate.netlist.interface import Interface, InterfacePin
@@ -30,8 +28,7 @@ from tardigate.netlist.modules import Modules
 from tardigate.netlist.name_table import NameTables
 from tardigate.netlist.parameters import triple_trees
 from tardigate.netlist.ports import template_ports
-from tardigate.netlist.primitives import Primitives
-from tardigate.netlist.registers import RegisterBit
+from tardigate.netlist.scopes import Scope, has_generate
 from tardigate.netlist.strangers import Strangers
 from tardigate.netlist.template import Child, Template
 from tardigate.netlist.wiring import Wiring
@@ -42,7 +39,12 @@ from tardigate.parts.source_delay import SourceDelay, Triple
 from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Diagnostic
+from tardigate.syntax.tree import Module
 from tardigate.syntax.verilog_reader import Unit
+
+if TYPE_CHECKING:
+    from tardigate.netlist.primitives import Primitives
+    from tardigate.netlist.registers import RegisterBit
 
 MOST_TEMPLATES = 1 << 16
 """Modules times sets of parameters that one design may have."""
@@ -85,7 +87,7 @@ class Shop:
         self._delays: dict[tuple[Triple, ...], SourceDelay] = {}
         self.tables = NameTables()
         self.cells: PartsOfCells | None = None
-        self.primitives = Primitives(modules, collector)
+        self._primitives: Primitives | None = None
         self._now = -1
 
     def elaborate_all(self) -> list[Template]:
@@ -154,7 +156,7 @@ class Shop:
             name, values, settings = self._work[template]
             unit, module = self.modules.unit(name), self.modules.tree(name)
             declarer = self._declarer(unit)
-            scopes = expand(module, dict(values), declarer)
+            scopes = _scopes(module, dict(values), declarer)
             variables = declarer.variables(module, scopes)
             states = unit.source.default_nettypes
             at = _in_force([s[0] for s in states], self.modules.text(name).start)
@@ -254,7 +256,7 @@ class Shop:
         """Tell whether a module is a part because a specify block gives it times or checks."""
         if self.cells is None or not self.modules.has_specify(module) or self.library.describes(module):
             return False
-        return self.modules.readable(module, self.collector) and says_times(self.modules.tree(module))
+        return self.modules.readable(module, self.collector) and self.modules.says_times(module)
 
     def cell(self, module: str, parameters: Mapping[str, Value]) -> tuple[Interface, int] | None:
         """Return the interface and kind of a module with a specify block, None if it cannot be read."""
@@ -269,6 +271,15 @@ class Shop:
         """Tell whether a name is that of a user-defined primitive and no parts file describes it."""
         return name in self.modules.primitives and not self.library.describes(name)
 
+    @property
+    def primitives(self) -> Primitives:
+        """The user-defined primitives as parts."""
+        if self._primitives is None:
+            from tardigate.netlist.primitives import Primitives  # few designs have any
+
+            self._primitives = Primitives(self.modules, self.collector)
+        return self._primitives
+
     def primitive(self, name: str, delay: SourceDelay | None) -> tuple[Interface, int] | None:
         """Return the interface and kind of a user-defined primitive, None after telling what is wrong."""
         part = self.primitives.part(name)
@@ -280,3 +291,12 @@ class Shop:
 
 def _in_force(offsets: Sequence[int], at: int) -> int:
     return bisect_right(offsets, at) - 1
+
+
+def _scopes(module: Module, values: Mapping[str, Value], declarer: Declarer) -> list[Scope]:
+    """Return the scopes of a module; of one without generate that is the module itself."""
+    if not has_generate(module.items):
+        return [Scope(0, -1, "", "", values, module.at, items=list(module.items))]
+    from tardigate.netlist.generate import expand  # few modules need it
+
+    return expand(module, values, declarer)

@@ -25,7 +25,7 @@ LONGEST = 20_000
 """Tokens of a statement that is still read a second time."""
 
 MOST_FAULTS = 100_000
-"""Faults after which nobody counts on."""
+"""Faults, those that follow from others among them, after which nobody counts on."""
 
 MOST_REPAIRS = 100
 """Faults for which a repair is looked for."""
@@ -195,14 +195,15 @@ class _Pass:
 
     def run(self, most: int) -> tuple[list[Trouble], int]:
         found: list[Trouble] = []
-        more = 0
-        while True:
+        more = faults = 0
+        while faults < MOST_FAULTS:
             token = self._look(0)
             if self.scout.step(self.stack, token.kind):
                 if token.kind == END:
                     break
                 self._shifted(self._ahead.popleft())
                 continue
+            faults += 1
             repair = self._repair()
             closes = token.kind == END or token.text in self.language.closers
             if closes and found and not (repair and repair.sign == STOP):
@@ -212,8 +213,6 @@ class _Pass:
                 found.append(self._trouble(token, repair))
             elif not follows:
                 more += 1
-                if more >= MOST_FAULTS:
-                    break
             if not self._go_on(token, repair):
                 break
             self._quiet = True
