@@ -26,7 +26,7 @@ def test_drivers_are_before_the_delay_and_readers_behind(instances: Lines) -> No
     )
     assert instances(text) == [
         "assign assign:5: out=z, in1=w", "buf h: out=y, in=w",
-        "nand g: out=assign:2.0, in1=a, in2=b", "wire wire:2: out=w, in=assign:2.0",
+        "nand g: out=w:in, in1=a, in2=b", "wire wire:2: out=w, in=w:in",
     ]  # fmt: skip
 
 
@@ -38,8 +38,8 @@ def test_a_delay_for_each_bit_and_each_name(instances: Lines) -> None:
     )
     wires = [line for line in instances(text) if line.startswith("wire ")]
     assert wires == [
-        "wire wire:2: out=v[0], in=assign:2.1", "wire wire:2: out=v[1], in=assign:2.0",
-        "wire wire:2: out=w[0], in=assign:2.2", "wire wire:2: out=w[1], in=assign:2.3",
+        "wire wire:2: out=v[0], in=v[0]:in", "wire wire:2: out=v[1], in=v[1]:in",
+        "wire wire:2: out=w[0], in=w[0]:in", "wire wire:2: out=w[1], in=w[1]:in",
     ]  # fmt: skip
 
 

@@ -50,7 +50,7 @@ def _told(flat: Flat) -> list[object]:
         name = names.instance(inst)
         nets = flat.pin_net[flat.pin_start[inst] : flat.pin_start[inst + 1]].tolist()
         held = [column.tolist() if isinstance(column, np.ndarray) else column for column in kind]
-        instances.append(("" if ":" in name else name, nets, repr(held)))
+        instances.append(("" if ":" in name or kind.name == "register" else name, nets, repr(held)))
     instances.sort(key=lambda instance: "'register', 'operator'" in instance[2])
     nets = [names.net(net) for net in range(flat.nets)]
     return [nets, flat.ports, instances, {word: nets.tolist() for word, nets in flat.typed.items()}]

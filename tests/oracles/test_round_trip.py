@@ -97,13 +97,16 @@ def _check(design: Loaded, parts: tuple[str | SourceFile, ...], twice: bool = Tr
 
 
 def _connections(design: Loaded) -> Counter[object]:
-    """Return the kind and nets of each part instance: what figures come of, where loops keep them from it."""
+    """Return the kind and nets of each part instance: what figures come of, where loops keep them from it.
+
+    The delay of a net is written as that of an assignment, with the same hops.
+    """
     flat, names = design.flat, design.names
     nets = [names.net(net) for net in range(flat.nets)]
     pins, start = flat.pin_net.tolist(), flat.pin_start.tolist()
     hops = [repr(kind.delays.tolist()) for kind in flat.kinds]
     return Counter(
-        (flat.kinds[kind].name, hops[kind], *(nets[pin] if pin >= 0 else "" for pin in pins[first:last]))
+        (flat.kinds[kind].name.replace("wire", "assign"), hops[kind], *(nets[pin] if pin >= 0 else "" for pin in pins[first:last]))
         for kind, first, last in zip(flat.inst_kind.tolist(), start, start[1:], strict=False)
     )
 

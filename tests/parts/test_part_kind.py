@@ -145,7 +145,6 @@ def test_a_table_follows_its_parameter(library: Read) -> None:
     assert len(lines(read, "P", INIT=0)) == 1  # constant
     assert lines(read, "P", INIT=0b0101)[1:] == ["A fall -> Y rise 1:1:1", "A rise -> Y fall 1:1:1"]
     assert read.parameters("P") == {"INIT": 8}
-    assert read.parameter_width("P", "INIT") == 4
     assert read.part_kind("P") is read.part_kind("P", {"INIT": 8})
 
 

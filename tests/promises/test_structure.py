@@ -94,6 +94,7 @@ def test_the_public_names_are_there() -> None:
     [
         ("tardigate.grammars", "verilog.lark"),
         ("tardigate.grammars", "parts.lark"),
+        ("tardigate.grammars", "udp.lark"),
         ("tardigate.grammars", "parts.md"),
         ("tardigate.report", "schema.json"),
         ("tardigate", "py.typed"),

@@ -11,11 +11,9 @@ from collections.abc import Collection, Iterator, Sequence
 import numpy as np
 
 from tardigate.netlist.declare import Declarer
+from tardigate.netlist.scopes import CHOICES, GENERATE
 from tardigate.syntax import tree
 from tardigate.syntax.verilog_reader import Unit
-
-CHOICES = (tree.GenerateIf, tree.GenerateCase)
-GENERATE = (tree.GenerateFor, *CHOICES)
 
 
 def block_names(constructs: Sequence[tree.Item], taken: Collection[str]) -> dict[int, str]:

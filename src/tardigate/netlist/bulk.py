@@ -14,17 +14,14 @@ from numpy.typing import NDArray
 
 from tardigate.netlist.columns import Block
 from tardigate.netlist.flat import CONSTANTS, OPEN
-from tardigate.netlist.implicit import spread
 from tardigate.netlist.interface import Interface
 from tardigate.netlist.lookup import Lookup
 from tardigate.netlist.variables import RANGED, REGISTER, Variables
+from tardigate.parts.gates import BUFFERS, THREE_STATE
 from tardigate.parts.kind import Way
-from tardigate.source.arrays import distinct
+from tardigate.source.arrays import distinct, spread
 from tardigate.syntax.verilog_reader import Unit
 from tardigate.syntax.words import GATES
-
-_THREE_STATE = ("bufif0", "bufif1", "notif0", "notif1")
-_ONE_INPUT = ("buf", "not")
 
 
 class Rows(NamedTuple):
@@ -136,7 +133,7 @@ class Bulk:
         heads = self.plain.head[statements]
         inner = np.ones(len(rows.row), bool)  # rows that are inputs
         inner[rows.start] = False
-        many = np.isin(heads, [gate_numbers[GATES.index(gate)] for gate in _ONE_INPUT]) & (rows.counts > 2)
+        many = np.isin(heads, [gate_numbers[GATES.index(gate)] for gate in BUFFERS]) & (rows.counts > 2)
         for statement in np.flatnonzero(many):
             begin = int(rows.start[statement])
             inner[begin : begin + int(rows.counts[statement]) - 1] = False
@@ -147,7 +144,7 @@ class Bulk:
         pairs, back = np.unique(heads.astype(np.int64) * widest + rows.counts, return_inverse=True)
         for at, pair in enumerate(pairs.tolist()):
             gate, count = self.unit.scan.names.text(pair // widest), pair % widest
-            legal = count == 3 if gate in _THREE_STATE else count >= 2
+            legal = count == 3 if gate in THREE_STATE else count >= 2
             if legal:
                 kind[back == at] = self.gate_kind(gate, *gate_terminals(gate, count))
         clear &= kind >= 0
@@ -200,4 +197,4 @@ class Bulk:
 
 def gate_terminals(gate: str, count: int) -> tuple[int, int]:
     """Return how many inputs and outputs a gate with so many terminals has (clauses 7.2 to 7.4)."""
-    return (1, count - 1) if gate in _ONE_INPUT else (count - 1, 1)
+    return (1, count - 1) if gate in BUFFERS else (count - 1, 1)

@@ -11,16 +11,15 @@ from typing import NamedTuple
 import numpy as np
 
 from tardigate.netlist.body import Body, Inner
-from tardigate.netlist.flat import FLOATING, OPEN
+from tardigate.netlist.flat import FLOATING, OPEN, PULLS
 from tardigate.netlist.gate_nodes import Maker
 from tardigate.parts.function import Network
-from tardigate.parts.gates import THREE_STATE
+from tardigate.parts.gates import THREE_STATE, operator_of
 from tardigate.parts.kind import Edge, Kind, Way
 from tardigate.parts.model import Part, Pin, Place, Register
 from tardigate.parts.register_kind import REGISTER
 
 UNKNOWN = -1
-PULLS = ("pullup", "pulldown")
 
 
 class Driver(NamedTuple):
@@ -177,8 +176,9 @@ class Functions:
             value = self.maker.gate(kind.name, inputs)
             enable = self.maker.enable(kind.name, inputs[1]) if kind.name in THREE_STATE else -1
         else:
-            operator = kind.name.removeprefix("assign").strip() or "copy"
-            value, enable = self.maker.operator(operator, inputs) if kind.group == "operator" else None, -1
+            value, enable = None, -1
+            if kind.group == "operator":
+                value = self.maker.operator(operator_of(kind), inputs)
         return None if value is None else Drive(value, enable)
 
     def _choice_drive(self, nets: list[int], inputs: list[int]) -> Drive | None:

@@ -110,12 +110,9 @@ class CellNames:
 
 
 def _is_read(expression: tree.Expression) -> bool:
-    work = [expression]
-    while work:
-        node = work.pop()
+    for node in tree.walk(expression):
         if isinstance(node, tree.Unary | tree.Binary) and node.operator not in _READ:
             return False
         if isinstance(node, tree.Call | tree.Decimal | tree.String | tree.Triplet):
             return False
-        work.extend(tree.operands(node))
     return True

@@ -107,13 +107,7 @@ def edge_sources(paths: Sequence[tree.Path], desk: CellDesk) -> set[Clock]:
 
 
 def _is_constant(expression: tree.Expression) -> bool:
-    work = [expression]
-    while work:
-        node = work.pop()
-        if isinstance(node, tree.Reference):
-            return False
-        work.extend(tree.operands(node))
-    return True
+    return not any(isinstance(node, tree.Reference) for node in tree.walk(expression))
 
 
 def implied_registers(

@@ -12,7 +12,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tardigate.netlist.batches import Batch, batches
-from tardigate.netlist.flat import CONSTANTS, FLOATING, OPEN, Flat
+from tardigate.netlist.flat import CONSTANTS, FLOATING, OPEN, PULLS, Flat
 from tardigate.netlist.names import Names
 from tardigate.parts.kind import Way
 from tardigate.source.collector import Collector
@@ -23,7 +23,7 @@ _SHOWN = 4
 WIRED = ("wand", "wor", "triand", "trior")
 """Types of nets that say what several drivers come to (clause 4.6.2)."""
 
-DRIVEN = ("tri0", "tri1", "supply0", "supply1", "pullup", "pulldown")
+DRIVEN = ("tri0", "tri1", "supply0", "supply1", *PULLS)
 """What holds a net without any driver (clauses 4.6.4, 4.6.5, 7.8)."""
 
 

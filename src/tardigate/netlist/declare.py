@@ -17,7 +17,7 @@ from numpy.typing import NDArray
 from tardigate.netlist.constants import NotConstantError, Value, evaluate, whole
 from tardigate.netlist.flat import CONSTANTS
 from tardigate.netlist.lookup import Lookup
-from tardigate.netlist.parameters import parameter_values
+from tardigate.netlist.parameters import declarations_of, parameter_values
 from tardigate.netlist.scopes import Scope
 from tardigate.netlist.variables import (
     NO_DIRECTION,
@@ -26,11 +26,13 @@ from tardigate.netlist.variables import (
     SIGNED,
     TYPE,
     TYPES,
+    VARIABLES,
     Declared,
     Shape,
     Variables,
 )  # fmt: skip
 from tardigate.parts.kind import Way
+from tardigate.source.arrays import spread
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Related, did_you_mean
 from tardigate.source.placed import PlacedText
@@ -46,7 +48,6 @@ MOST_BITS = 1 << 25
 
 WAYS = {"input": Way.INPUT, "output": Way.OUTPUT, "inout": Way.INOUT}
 _WORDS = {"integer": 32, "time": 64}
-_VARIABLES = ("integer", "time", "real", "realtime", "event")
 _TYPES = {word: number << TYPE for number, word in enumerate(TYPES)}
 
 
@@ -92,8 +93,7 @@ class Declarer:
 
     def parameters(self, module: tree.Module, overrides: Mapping[str, Value]) -> dict[str, Value]:
         """Return the values of all parameters; tells of one declared twice (N110) or not constant (N120)."""
-        declared = [*module.parameters, *(item for item in module.items if isinstance(item, tree.Parameter))]
-        return parameter_values(declared, overrides, self)
+        return parameter_values(declarations_of(module), overrides, self)
 
     def twice_at(self, name: str, at: int, first: int) -> None:
         """Tell of a name declared twice, at `first` and at `at` (N110)."""
@@ -183,7 +183,7 @@ class Declarer:
         found = [self.range(bounds, values) for bounds in ranges]
         bounds = tuple(bound for bound in found if bound is not None)
         flags = SIGNED * item.signed | _TYPES.get(item.net_type, 0)
-        flags |= REGISTER * (item.net_type == "reg" or item.net_type in _VARIABLES)
+        flags |= REGISTER * (item.net_type in VARIABLES)
         width = prod(abs(left - right) + 1 for left, right in bounds)
         if width > WIDEST:
             self.collector.tell("N121", self.text.span(named.at, named.at + len(named.name)), most=WIDEST)
@@ -202,7 +202,7 @@ class Declarer:
         self, declaration: tree.Declaration, values: Mapping[str, Value], columns: _Columns
     ) -> None:
         way = WAYS.get(declaration.direction, NO_DIRECTION)
-        if way in (Way.INPUT, Way.INOUT) and declaration.net_type in ("reg", *_VARIABLES):
+        if way in (Way.INPUT, Way.INOUT) and declaration.net_type in VARIABLES:
             name = declaration.names[0].name
             self.collector.tell("N129", self._span(declaration.names[0].at, name), name=name)
         plain = [named for named in declaration.names if not named.dimensions]
@@ -231,8 +231,7 @@ class Declarer:
         way = np.full(len(statements), NO_DIRECTION, np.int64)
         for name, value in ways.items():
             way[heads == name] = value
-        first = plain.start[statements]
-        rows = np.arange(count.sum()) + np.repeat(first - (np.cumsum(count) - count), count)
+        rows = spread(plain.start[statements], count)
         numbers = np.zeros((len(rows), 4), np.int64)
         numbers[:, 2] = np.repeat(way, count)
         columns.name.append(plain.net[rows])

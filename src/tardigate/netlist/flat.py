@@ -25,6 +25,9 @@ FLOATING = 3
 
 CONSTANT_NAMES = ("1'b0", "1'b1", "1'bx", "1'bz")
 
+PULLS = ("pullup", "pulldown")
+"""What pulls nets (IEEE 1364-2005 clause 7.8), by the words of `Flat.typed` and the names of kinds."""
+
 OPEN = -1
 """The net number of a pin that is connected to nothing."""
 

@@ -10,7 +10,7 @@ from collections.abc import Sequence
 from functools import reduce
 
 from tardigate.parts.function import Network
-from tardigate.parts.gates import THREE_STATE
+from tardigate.parts.gates import BUFFERS, NET, THREE_STATE
 from tardigate.parts.kind import Edge
 
 _BY_GATE = {"and": "and", "nand": "and", "or": "or", "nor": "or", "xor": "xor", "xnor": "xor"}
@@ -69,7 +69,7 @@ class Maker:
         """Return the node of a gate's data output; of a three-state gate while it drives."""
         if name in THREE_STATE:
             return self.inverted(inputs[0]) if name.startswith("not") else inputs[0]
-        if name in ("buf", "not"):
+        if name in BUFFERS:
             made = inputs[0]
         elif name in _BY_GATE:
             made = self.joined(_BY_GATE[name], inputs)
@@ -83,7 +83,7 @@ class Maker:
 
     def operator(self, name: str, inputs: Sequence[int]) -> int | None:
         """Return the node of an operator; of a `&&` of more than two bits the split is not known."""
-        if name in ("copy", "wire", "~"):
+        if name in ("copy", NET, "~"):
             made = inputs[0]
         elif name in ("==", "!="):
             half = len(inputs) // 2

@@ -8,12 +8,12 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
 
-from tardigate.netlist.block_names import CHOICES, GENERATE, block_names, declared_names, tell_same_names
+from tardigate.netlist.block_names import block_names, declared_names, tell_same_names
 from tardigate.netlist.constants import NotConstantError, Value, evaluate, whole
 from tardigate.netlist.declare import Declarer
 from tardigate.netlist.parameters import parameter_values
 from tardigate.netlist.plain_tree import trees_of
-from tardigate.netlist.scopes import Scope
+from tardigate.netlist.scopes import CHOICES, GENERATE, Scope
 from tardigate.syntax import tree
 
 MOST_BLOCKS = 1 << 16

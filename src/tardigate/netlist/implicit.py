@@ -15,6 +15,7 @@ from numpy.typing import NDArray
 from tardigate.netlist.declare import Declarer
 from tardigate.netlist.scopes import Scope, chain
 from tardigate.netlist.variables import TYPE, TYPES, Declared, Variables
+from tardigate.source.arrays import spread
 from tardigate.syntax import tree
 from tardigate.syntax.verilog_reader import Unit
 
@@ -104,12 +105,6 @@ def _plain_names(
     unknown = row[of_name[plain.net[row]] < 0]
     names, first = np.unique(plain.net[unknown], return_index=True)
     return names, plain.at[unknown[first]].astype(np.int64)
-
-
-def spread(start: NDArray[np.int64], count: NDArray[np.int64]) -> NDArray[np.int64]:
-    """Return the numbers `start[i]` to `start[i] + count[i]` of all `i`, joined."""
-    joined: NDArray[np.int64] = np.arange(count.sum()) + np.repeat(start - (np.cumsum(count) - count), count)
-    return joined
 
 
 def connection_names(items: Iterable[tree.Item]) -> Iterator[tuple[str, int]]:

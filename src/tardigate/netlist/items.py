@@ -20,9 +20,12 @@ from tardigate.netlist.delays import NO_DELAY, Delays
 from tardigate.netlist.expression import Expressions
 from tardigate.netlist.hierarchy import Hierarchy, Outside, Overrides, Seat
 from tardigate.netlist.interface import Interface, InterfacePin
+from tardigate.netlist.name_columns import NetNames
 from tardigate.netlist.scopes import Scope
 from tardigate.netlist.template import Child
+from tardigate.netlist.variables import VARIABLES
 from tardigate.netlist.wiring import Wiring
+from tardigate.parts.gates import THREE_STATE
 from tardigate.parts.kind import Kind, Way
 from tardigate.parts.source_delay import SourceDelay
 from tardigate.source.diagnostic import Diagnostic, Related
@@ -31,9 +34,6 @@ from tardigate.syntax import tree
 if TYPE_CHECKING:
     from tardigate.netlist.net_delay import NetDelay
     from tardigate.netlist.registers import RegisterBit
-
-_DELAYS = {"bufif0": 3, "bufif1": 3, "notif0": 3, "notif1": 3}
-"""Most delays of a gate (clause 7.14); the others take two."""
 
 
 class Workshop(Outside, Protocol):
@@ -131,10 +131,10 @@ class Items:
         return self.workshop.gate(gate, inputs, outputs, delay)
 
     def _gates(self, item: tree.Gates) -> None:
-        delay = self.delays.read(item.delay, _DELAYS.get(item.gate, 2))
+        delay = self.delays.read(item.delay, 3 if item.gate in THREE_STATE else 2)  # clause 7.14
         for gate in item.gates:
             count = len(gate.terminals)
-            if count < 2 or (item.gate in _DELAYS and count != 3):
+            if count < 2 or (item.gate in THREE_STATE and count != 3):
                 span = self.wiring.span(gate.at, max(1, len(gate.name)))
                 self.collector.tell("N167", span, gate=item.gate, count=count)
                 continue
@@ -296,10 +296,11 @@ class Items:
     def _registers(self, item: tree.Always) -> None:
         from tardigate.netlist.registers import registers_of  # few designs have any
 
-        name = self.hierarchy.module.name
+        name, names = self.hierarchy.module.name, NetNames(self.wiring.variables)
         for bit in registers_of(item, name, self.wiring, self.expressions, self.delays, self.workshop):
             kind = self.workshop.register(bit)
-            self.instances.add(kind, bit.place, -1, bit.pins)
+            called = self.instances.other_name(names.one(bit.q))  # as what it stores
+            self.instances.add(kind, bit.place, called, bit.pins)
 
     # Assignments (clause 6.1)
 
@@ -309,7 +310,7 @@ class Items:
 
             self.net_delays |= declared_delays(item, self.wiring, self.delays)
         assigned = [named for named in item.names if named.value is not None]
-        if not assigned or item.net_type in ("reg", "integer", "time", "real", "realtime", "event"):
+        if not assigned or item.net_type in VARIABLES:
             return  # the first value of a variable is none that it drives (clause 6.2.1)
         delay = self.delays.read(item.delay, 3)
         for named in assigned:

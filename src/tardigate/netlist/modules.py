@@ -6,15 +6,16 @@ and of a hierarchy that contains itself. Does not elaborate.
 
 from __future__ import annotations
 
-from bisect import bisect_right
 from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass, field
 
+from tardigate.netlist.parameters import declarations_of
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Related, did_you_mean
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.span import Span
 from tardigate.syntax.outline import ModuleText
+from tardigate.syntax.placing import in_force
 from tardigate.syntax.tree import Module, Parameter, Path, Specify, TimingCheck
 from tardigate.syntax.verilog_reader import Unit, parse_module
 
@@ -80,8 +81,7 @@ class Modules:
 
     def declarations(self, name: str) -> list[Parameter]:
         """Return the parameter declarations of a module that can be parsed, in order."""
-        module = self.tree(name)
-        return [*module.parameters, *(item for item in module.items if isinstance(item, Parameter))]
+        return declarations_of(self.tree(name))
 
     def says_times(self, name: str) -> bool:
         """Tell whether a module that can be parsed has a specify block with paths or checks."""
@@ -107,7 +107,6 @@ def collect(
     """Put the modules of all files together; tells of doubles (N101) and of configurations (V006)."""
     modules = Modules(described, bulk)
     for unit in units:
-        marked = [offset for offset, is_cell in unit.source.cells if is_cell]
         for text in unit.modules:
             span = unit.text.span(text.at, text.at + max(1, len(text.name)))
             known = modules._texts.get(text.name) or modules.primitives.get(text.name)
@@ -124,15 +123,9 @@ def collect(
                 modules.primitives[text.name] = (unit, text)
             else:
                 modules._texts[text.name] = (unit, text)
-                if text.name in unit.cells or (marked and _is_marked(unit, text.start)):
+                if text.name in unit.cells or in_force(unit.source.cells, text.start):
                     modules.cells.add(text.name)
     return modules
-
-
-def _is_marked(unit: Unit, start: int) -> bool:
-    """Tell whether a module stands between `celldefine` and `endcelldefine`."""
-    at = bisect_right([offset for offset, _ in unit.source.cells], start) - 1
-    return at >= 0 and unit.source.cells[at][1]
 
 
 def find_top(modules: Modules, wanted: str | None, collector: Collector) -> str | None:

@@ -12,7 +12,7 @@ from tardigate.netlist.connect import is_target
 from tardigate.netlist.constants import NotConstantError, evaluate
 from tardigate.netlist.delays import Delays
 from tardigate.netlist.expression import Expressions
-from tardigate.netlist.flat import CONSTANTS
+from tardigate.netlist.flat import CONSTANTS, FLOATING
 from tardigate.netlist.variables import REGISTER
 from tardigate.netlist.wiring import Wiring
 from tardigate.parts.function import Network
@@ -25,7 +25,6 @@ HOLD, UNKNOWN = -1, -2
 MOST_MOVES = 1 << 20
 """Bits that the statements of one `always` may move, joined by their conditions and all their inputs."""
 
-_FLOATING = 3
 _COMPARED = {"==": True, "===": True, "!=": False, "!==": False}
 
 
@@ -161,7 +160,7 @@ class Moves:
         for net, value in zip(targets, values, strict=True):
             if constants and value > 1:
                 raise NoRegisterError("an asynchronous branch moves no constant of 0s and 1s", move.value.at)
-            if value == _FLOATING:
+            if value == FLOATING:
                 raise NoRegisterError("it moves z, and a register never lets go", move.value.at)
             moved.places.setdefault(net, move.at)
             (self.blocking if move.blocking else self.flowing).setdefault(net, move.at)
@@ -172,10 +171,8 @@ class Moves:
 
     def _is_variable(self, target: tree.Expression) -> bool:
         """Tell whether all of a target is declared as a variable (clause 9.2)."""
-        work, variables = [target], self._wiring.variables
-        while work:
-            node = work.pop()
-            work.extend(tree.operands(node))
+        variables = self._wiring.variables
+        for node in tree.walk(target):
             if isinstance(node, tree.Reference) and len(node.path) == 1:
                 variable = self._wiring.variable(node.path[0])
                 if variable >= 0 and not variables.flags[variable] & REGISTER:

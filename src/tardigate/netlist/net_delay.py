@@ -16,16 +16,15 @@ from numpy.typing import NDArray
 
 from tardigate.netlist.columns import Block, Instances
 from tardigate.netlist.delays import Delays
+from tardigate.netlist.flat import FLOATING
 from tardigate.netlist.interface import Interface
+from tardigate.netlist.name_columns import NetNames
 from tardigate.netlist.template import Child, TemplatePort
 from tardigate.netlist.wiring import Wiring
 from tardigate.parts.gates import NET, THREE_STATE_NET
 from tardigate.parts.kind import Kind, Way
 from tardigate.parts.source_delay import SourceDelay
 from tardigate.syntax import tree
-
-_FLOATING = 3
-"""The local net of the constant z."""
 
 
 class NetDelay(NamedTuple):
@@ -113,6 +112,7 @@ class _Pass:
 
     def __post_init__(self) -> None:
         nets = self.wiring.variables.nets
+        self._names = NetNames(self.wiring.variables)
         self.is_delayed = np.zeros(nets + 1, np.bool_)
         self.is_delayed[list(self.delays)] = True
 
@@ -120,7 +120,8 @@ class _Pass:
         """Return where drivers of nets go: before the delay, to a net made when the first one comes."""
         for net in nets[self.is_delayed[nets]].tolist():
             if net not in self.before:
-                self.before[net] = self.wiring.variables.new_result(self.delays[net].place)
+                name = f"{self._names.one(net)}:in"  # of the instance that is the delay
+                self.before[net] = self.wiring.variables.new_result(self.delays[net].place, name)
         return np.array([self.before.get(net, net) for net in nets.tolist()], np.int32)
 
     def instances(self, columns: Block) -> Block:
@@ -202,5 +203,5 @@ def _floating(kind: Kind, start: NDArray[np.int64], pins: NDArray[np.int32]) -> 
         return np.ones(len(start), np.bool_)
     if kind.group != "operator":
         return np.zeros(len(start), np.bool_)
-    fed: NDArray[np.bool_] = (pins[start[:, None] + np.arange(len(kind.pins))] == _FLOATING).any(axis=1)
+    fed: NDArray[np.bool_] = (pins[start[:, None] + np.arange(len(kind.pins))] == FLOATING).any(axis=1)
     return fed

@@ -64,6 +64,11 @@ def parameter_values(
     return found
 
 
+def declarations_of(module: tree.Module) -> list[tree.Parameter]:
+    """Return the declarations of a module's own constants, in order of the text."""
+    return [*module.parameters, *(item for item in module.items if isinstance(item, tree.Parameter))]
+
+
 def _width(declaration: tree.Parameter, bounds: tuple[int, int] | None) -> int | None:
     """Return the bits that a declaration asks of its value, 0 where it asks for none."""
     if bounds is not None:
@@ -108,12 +113,9 @@ def triple_trees(
 
 
 def _has_triple(expression: tree.Expression, names: Mapping[str, tree.Expression]) -> bool:
-    work = [expression]
-    while work:
-        node = work.pop()
+    for node in tree.walk(expression):
         if isinstance(node, tree.Triplet):
             return True
         if isinstance(node, tree.Reference) and node.path[0] in names:
             return True
-        work += tree.operands(node)
     return False

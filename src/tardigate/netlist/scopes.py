@@ -9,6 +9,11 @@ from tardigate.netlist.constants import Value
 from tardigate.syntax import tree
 
 
+CHOICES = (tree.GenerateIf, tree.GenerateCase)
+GENERATE = (tree.GenerateFor, *CHOICES)
+"""The generate constructs."""
+
+
 @dataclass(slots=True)
 class Scope:
     """A scope: the module (number 0, no name) or one generate block (IEEE 1364-2005 clause 12.4).
@@ -33,8 +38,7 @@ class Scope:
 
 def has_generate(items: Sequence[tree.Item]) -> bool:
     """Tell whether there is a generate construct or a genvar among items."""
-    kinds = (tree.Genvars, tree.GenerateFor, tree.GenerateIf, tree.GenerateCase)
-    return any(isinstance(item, kinds) for item in items)
+    return any(isinstance(item, (tree.Genvars, *GENERATE)) for item in items)
 
 
 def chain(scopes: Sequence[Scope], number: int) -> list[Scope]:

@@ -6,7 +6,6 @@ elaborating one may put others on the list.
 
 from __future__ import annotations
 
-from bisect import bisect_right
 from collections import Counter
 from collections.abc import Iterable, Mapping, Sequence
 from typing import TYPE_CHECKING, Protocol
@@ -34,11 +33,12 @@ from tardigate.netlist.template import Child, Template
 from tardigate.netlist.wiring import Wiring
 from tardigate.parts.kind import Kind, Way
 from tardigate.parts.library import Library
-from tardigate.parts.model import Part
+from tardigate.parts.model import Part, Pin
 from tardigate.parts.source_delay import SourceDelay, Triple
 from tardigate.source.arrays import distinct
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Diagnostic
+from tardigate.syntax.placing import in_force
 from tardigate.syntax.tree import Module
 from tardigate.syntax.verilog_reader import Unit
 
@@ -111,8 +111,7 @@ class Shop:
     def delays_of(self, name: str, values: Mapping[str, Value]) -> Delays:
         """Return the reader of a module's delays."""
         unit, start = self.modules.unit(name), self.modules.text(name).start
-        state = _in_force([s[0] for s in unit.source.timescales], start)
-        _, step, precision = unit.source.timescales[state] if state >= 0 else (0, None, None)
+        step, precision = in_force(unit.source.timescales, start)
         trees = triple_trees(self.modules.declarations(name))
         return Delays(unit.text, step, precision, values, self.collector, self._delays, trees=trees)
 
@@ -158,10 +157,9 @@ class Shop:
             declarer = self._declarer(unit)
             scopes = _scopes(module, dict(values), declarer)
             variables = declarer.variables(module, scopes)
-            states = unit.source.default_nettypes
-            at = _in_force([s[0] for s in states], self.modules.text(name).start)
+            net_type = in_force(unit.source.default_nettypes, self.modules.text(name).start)
             with self.tables.of(unit, variables) as table:
-                declare_implicit(declarer, scopes, variables, table, states[at][1] if at >= 0 else "wire")
+                declare_implicit(declarer, scopes, variables, table, net_type)
             self._hierarchies[template] = Hierarchy(module, declarer, scopes, variables, settings, self)
         return self._hierarchies[template]
 
@@ -182,9 +180,8 @@ class Shop:
             wiring = Wiring(hierarchy.declarer, hierarchy.variables, hierarchy.scopes, table, hierarchy)
             ports = template_ports(hierarchy.module, wiring)
         pins = [InterfacePin(port.name, port.way, len(port.nets)) for port in ports]
-        states = unit.source.drives
-        at = _in_force([s[0] for s in states], self.modules.text(name).start)
-        return Interface(name, pins, _PULLS.get(states[at][1]) if at >= 0 else None)
+        drive = in_force(unit.source.drives, self.modules.text(name).start)
+        return Interface(name, pins, _PULLS.get(drive))
 
     def parameter_names(self, module: str) -> list[str] | None:
         """Return the parameters that an instance may override; None where nobody says which there are."""
@@ -247,9 +244,8 @@ class Shop:
         values = {name: rounded(value) for name, value in parameters.items()}
         key = (module, tuple(sorted(values.items())))
         if key not in self._parts:
-            pins = [InterfacePin(pin.name, pin.way, pin.width) for pin in self.library.pins(module)]
             kind = self.kinds.number(self.library.part_kind(module, values))
-            self._parts[key] = (Interface(module, pins), kind)
+            self._parts[key] = (_interface(module, self.library.pins(module)), kind)
         return self._parts[key]
 
     def is_cell(self, module: str) -> bool:
@@ -264,8 +260,7 @@ class Shop:
         part = self.cells.part(module, parameters)
         if part is None:
             return None
-        pins = [InterfacePin(pin.name, pin.way, pin.width) for pin in part.pins]
-        return Interface(module, pins), self.kinds.number(self.library.cell_kind(part))
+        return _interface(module, part.pins), self.kinds.number(self.library.cell_kind(part))
 
     def is_primitive(self, name: str) -> bool:
         """Tell whether a name is that of a user-defined primitive and no parts file describes it."""
@@ -285,12 +280,11 @@ class Shop:
         part = self.primitives.part(name)
         if part is None:
             return None
-        pins = [InterfacePin(pin.name, pin.way, pin.width) for pin in part.pins]
-        return Interface(name, pins), self.kinds.number(self.library.cell_kind(part, delay))
+        return _interface(name, part.pins), self.kinds.number(self.library.cell_kind(part, delay))
 
 
-def _in_force(offsets: Sequence[int], at: int) -> int:
-    return bisect_right(offsets, at) - 1
+def _interface(name: str, pins: Iterable[Pin]) -> Interface:
+    return Interface(name, [InterfacePin(pin.name, pin.way, pin.width) for pin in pins])
 
 
 def _scopes(module: Module, values: Mapping[str, Value], declarer: Declarer) -> list[Scope]:

@@ -30,6 +30,9 @@ TYPES = (
 
 TYPE = 8
 
+VARIABLES = ("reg", "integer", "time", "real", "realtime", "event")
+"""Words that declare no net: the types of variables, and of events (clauses 4.7, 4.8 and 9.7.3)."""
+
 
 class Shape(NamedTuple):
     """An array: left and right bound of each of its `dimensions`, and last those of its elements' vector."""

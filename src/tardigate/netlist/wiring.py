@@ -69,10 +69,7 @@ class Wiring:
 
     def may_drive(self, target: tree.Expression) -> bool:
         """Tell whether nets stand where something drives; tells of variables (N129; clause 12.3.9.2)."""
-        work = [target]
-        while work:
-            node = work.pop()
-            work.extend(tree.operands(node))
+        for node in tree.walk(target):
             if isinstance(node, tree.Reference) and len(node.path) == 1:
                 variable = self.variable(node.path[0])
                 if variable >= 0 and self.variables.flags[variable] & REGISTER:

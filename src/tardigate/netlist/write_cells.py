@@ -6,13 +6,13 @@ use in turn, each under the directives that were in force. What a parts file des
 
 from __future__ import annotations
 
-from bisect import bisect_right
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable
 from typing import NamedTuple
 
 from tardigate.netlist.modules import Modules
 from tardigate.source.arrays import distinct
 from tardigate.syntax.outline import ModuleText
+from tardigate.syntax.placing import in_force
 from tardigate.syntax.preprocess import Preprocessed
 from tardigate.syntax.verilog_reader import Unit
 
@@ -56,17 +56,13 @@ def _words(unit: Unit, text: ModuleText) -> set[str]:
 
 def _directives(source: Preprocessed, at: int) -> str:
     """Return the directives in force at an offset that a module's meaning hangs on (clause 19)."""
-    _, unit, precision = source.timescales[_in_force([state[0] for state in source.timescales], at)]
-    _, net_type = source.default_nettypes[_in_force([state[0] for state in source.default_nettypes], at)]
+    unit, precision = in_force(source.timescales, at)
+    net_type = in_force(source.default_nettypes, at)
     scale = ""
     if unit is not None and precision is not None:
         scale = f"`timescale {_time_words(unit)}/{_time_words(precision)}\n"
     nets = "" if net_type == "wire" else f"`default_nettype {net_type}\n"
     return f"`resetall\n{scale}{nets}"
-
-
-def _in_force(offsets: Sequence[int], at: int) -> int:
-    return bisect_right(offsets, at) - 1  # the first is 0
 
 
 def _time_words(femtoseconds: float) -> str:

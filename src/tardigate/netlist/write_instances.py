@@ -18,13 +18,11 @@ from tardigate.netlist.flat import OPEN
 from tardigate.netlist.write_registers import register_module
 from tardigate.netlist.write_sheet import Sheet
 from tardigate.netlist.write_words import delay_words, spelled
+from tardigate.parts.gates import NET, operator_of
 from tardigate.parts.kind import Kind
 from tardigate.parts.register_kind import REGISTER
 
 Texts = NDArray[np.object_]
-COPY, NET_DELAY = "copy", "wire"
-"""Operators that pass on what they get; the delay of a net is written as that of an assignment."""
-
 _TRUTH = ("!", "&&", "||")
 _EQUAL = ("==", "!=")
 
@@ -105,8 +103,7 @@ class _Shape(NamedTuple):
 
 def _operators(batch: Batch, desk: Desk) -> list[str]:
     kind = batch.kind
-    operator = kind.name.removeprefix("assign").strip() or COPY
-    operator = COPY if operator == NET_DELAY else operator
+    operator = operator_of(kind)
     shape = _shape(operator, kind.inputs)
     sheet = desk.sheet
     texts = [
@@ -122,7 +119,7 @@ def _operators(batch: Batch, desk: Desk) -> list[str]:
 def _shape(operator: str, inputs: int) -> _Shape:
     """Return how an operator with so many input bits is written; the first input is the lowest bit."""
     pins = list(range(1, inputs + 1))
-    if operator == COPY:
+    if operator in ("copy", NET):  # the delay of a net is written as that of an assignment
         return _Shape("%s", pins, [False])
     sides = [pins]
     if operator == "?:":

@@ -11,12 +11,11 @@ from collections.abc import Mapping, Sequence
 
 import numpy as np
 
-from tardigate.netlist.flat import CONSTANTS, Flat, Port
+from tardigate.netlist.flat import CONSTANTS, PULLS, Flat, Port
 from tardigate.netlist.names import Names
 from tardigate.netlist.write_ports import WAY_WORDS, Header, Vector, plan_header
 from tardigate.netlist.write_words import instance_names, net_names, spelled, unlike
 
-PULLS = ("pullup", "pulldown")
 
 
 class Sheet:
@@ -65,10 +64,11 @@ class Sheet:
         """Return the text of a net's second name of a number, counted from 1."""
         key = (net, number)
         if key not in self._second:
-            self._second[key] = self._new(f"{self.names[net]}~{number}")
+            self._second[key] = self.free(f"{self.names[net]}~{number}")
         return self._second[key]
 
-    def _new(self, name: str) -> str:
+    def free(self, name: str) -> str:
+        """Return an identifier that nothing has yet, like `name`."""
         name = unlike([name], self._taken)[0]
         self._taken.add(name)
         return spelled(name)
@@ -84,7 +84,7 @@ class Sheet:
         text = self.net[port.net]
         if self.header.ways.get(port.net) != port.way:
             first = text
-            text = self._new(port.name)
+            text = self.free(port.name)
             self._extra.append((f"{WAY_WORDS[port.way]} {text};", text, first))
         word = spelled(port.name)
         return word if word == text else f".{word}({text})"
@@ -98,7 +98,7 @@ class Sheet:
             first = f"{types[0]} {self.net[net]};"
             lines[net] = f"{lines[net]}\n  {first}" if net in self.header.ways else first
             for other in types[1:]:
-                text = self._new(self.names[net])
+                text = self.free(self.names[net])
                 self._extra.append((f"{other} {text};", text, self.net[net]))
         left = np.ones(len(lines), np.bool_)
         left[:CONSTANTS] = False
@@ -123,10 +123,6 @@ class Sheet:
         """Return the pairs of texts that stand for one net each."""
         pairs = [(self._second[key], str(self.net[key[0]])) for key in sorted(self._second)]
         return pairs + [(text, first) for _, text, first in self._extra]
-
-    def free(self, name: str) -> str:
-        """Return an identifier that nothing has yet, like `name`."""
-        return self._new(name)
 
 
 def _apart(name: str) -> str:

@@ -80,7 +80,7 @@ def _gate_entry(kind: Kind) -> tuple[str, int, bool]:
 def _operator_entry(kind: Kind) -> tuple[str, int, bool]:
     if kind.name == REGISTER:
         return (f'"{REGISTER}"', 0, False)
-    name = kind.name.removeprefix("assign").strip() or "copy"
+    name = operator_of(kind)
     inputs = len(kind.pins) - 1
     return (f'"{name}"' if inputs == 1 else f'"{name}"({inputs})', inputs, False)
 

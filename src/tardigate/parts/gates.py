@@ -126,6 +126,11 @@ def operator(name: str, inputs: int, delay_of: DelayOf, turns_off: bool = False)
     return make_kind("assign" if name == "copy" else f"assign {name}", "operator", pins, ways, hops)
 
 
+def operator_of(kind: Kind) -> str:
+    """Return the name that `operator` made a kind of; of a net's delay, however it floats, `NET`."""
+    return kind.name.removeprefix("assign").strip() or "copy"
+
+
 def _with_turn_off(hops: list[KindHop], delay_of: DelayOf) -> list[KindHop]:
     """Return hops with others beside them that take the turn-off delay, where that is another one.
 

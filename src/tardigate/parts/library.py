@@ -98,18 +98,13 @@ class Library:
         """Return the names of a part's parameters with their defaults, None where there is none."""
         return {parameter.name: parameter.default for parameter in self._parts[module].parameters}
 
-    def parameter_width(self, module: str, name: str) -> int:
-        """Return the number of bits of a parameter. Raises KeyError when it is unknown."""
-        return {p.name: p.width for p in self._parts[module].parameters}[name]
-
     def part_kind(self, module: str, parameters: Mapping[str, int] = NO_PARAMETERS) -> Kind:
         """Return the kind of a part: bits of its pins in the order of `pins`, most significant first.
 
         Parameters that the part does not have make no difference. Raises KeyError for an unknown part.
         """
         part = self._parts[module]
-        values = {p: parameters.get(p.name, p.default) for p in part.parameters}
-        chosen = {p.name: value & (1 << p.width) - 1 for p, value in values.items() if value is not None}
+        chosen = _chosen(part, parameters)
         key = ("part", part.name, *chosen.items())
         if key not in self._kinds:
             column, condition = self._column[part.name], self._condition[part.name]
@@ -147,9 +142,7 @@ class Library:
     def part(self, module: str, parameters: Mapping[str, int] = NO_PARAMETERS) -> tuple[Part, Values]:
         """Return a part and the values of its parameters' bits that are known. Raises KeyError."""
         part = self._parts[module]
-        values = {p: parameters.get(p.name, p.default) for p in part.parameters}
-        chosen = {p.name: value & (1 << p.width) - 1 for p, value in values.items() if value is not None}
-        return part, parameter_values(part, chosen)
+        return part, parameter_values(part, _chosen(part, parameters))
 
     def cell_kind(self, part: Part, delay: SourceDelay | None = None) -> Kind:
         """Return the kind of a part that stands in the source, a cell or a primitive with `delay` behind `#`.
@@ -187,6 +180,12 @@ class Library:
             return self._choice.delay(table, name, inputs, transition)
 
         return delay_of
+
+
+def _chosen(part: Part, parameters: Mapping[str, int]) -> dict[str, int]:
+    """Return the values of a part's parameters that are known, each cut to its width."""
+    values = {p: parameters.get(p.name, p.default) for p in part.parameters}
+    return {p.name: value & (1 << p.width) - 1 for p, value in values.items() if value is not None}
 
 
 def _hashable(delay: SourceDelay | None) -> object:

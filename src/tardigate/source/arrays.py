@@ -1,4 +1,4 @@
-"""What numpy has only at a price.
+"""What numpy has only at a price, or not at all.
 
 Takes arrays, gives arrays.
 """
@@ -24,3 +24,9 @@ def distinct(values: NDArray[Integer]) -> NDArray[Integer]:
         np.not_equal(ordered[1:], ordered[:-1], out=first[1:])
         ordered = ordered[first]
     return ordered
+
+
+def spread(start: NDArray[np.int64], count: NDArray[np.int64]) -> NDArray[np.int64]:
+    """Return the numbers `start[i]` to `start[i] + count[i]` of all `i`, joined."""
+    joined: NDArray[np.int64] = np.arange(count.sum()) + np.repeat(start - (np.cumsum(count) - count), count)
+    return joined

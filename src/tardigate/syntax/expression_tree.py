@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from typing import NamedTuple
 
 
@@ -131,6 +132,15 @@ def operands(node: Expression) -> tuple[Expression, ...]:
     if isinstance(node, Call):
         return node.arguments
     return ()
+
+
+def walk(root: Expression) -> Iterator[Expression]:
+    """Yield a node and all that it operates on, however deep (see `operands`), in no order."""
+    work = [root]
+    while work:
+        node = work.pop()
+        yield node
+        work += operands(node)
 
 
 class Range(NamedTuple):

@@ -6,6 +6,7 @@ Takes stretches of files and expansions of macros, gives one `PlacedText`. Does 
 from __future__ import annotations
 
 from bisect import bisect_right
+from collections.abc import Sequence
 from typing import Generic, NamedTuple, TypeVar
 
 from tardigate.source.files import SourceFile
@@ -122,6 +123,6 @@ class States(Generic[T]):
         return tuple(self._found)
 
 
-def in_force(states: tuple[tuple[int, T], ...], offset: int) -> T:
-    """Return the value in force at an offset of the placed text."""
+def in_force(states: Sequence[tuple[int, T]], offset: int) -> T:
+    """Return the value in force at an offset of the placed text; `states` as `States.all` gives them."""
     return states[max(0, bisect_right(states, offset, key=lambda state: state[0]) - 1)][1]

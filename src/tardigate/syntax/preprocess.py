@@ -14,7 +14,7 @@ from tardigate.source.collector import Collector
 from tardigate.source.files import SourceFile
 from tardigate.source.placed import PlacedText
 from tardigate.syntax.conditions import condition_handlers
-from tardigate.syntax.directives import Directives, Settings
+from tardigate.syntax.directives import Directives, Settings, Timescale
 from tardigate.syntax.expansion import Run
 from tardigate.syntax.frames import Frame
 from tardigate.syntax.illegal import check_bytes
@@ -41,7 +41,7 @@ class Preprocessed(NamedTuple):
     """
 
     text: PlacedText
-    timescales: tuple[tuple[int, float | None, float | None], ...]
+    timescales: tuple[tuple[int, Timescale], ...]
     default_nettypes: tuple[tuple[int, str], ...]
     cells: tuple[tuple[int, bool], ...]
     drives: tuple[tuple[int, str], ...]
@@ -64,7 +64,7 @@ def preprocess(
     check_bytes(text, collector)
     return Preprocessed(
         text,
-        tuple((offset, *timescale) for offset, timescale in settings.timescales.all()),
+        settings.timescales.all(),
         settings.nettypes.all(),
         settings.cells.all(),
         settings.drives.all(),
@@ -102,5 +102,5 @@ def _given(options: PreprocessOptions, collector: Collector) -> dict[bytes, Macr
 def _settings(after: Preprocessed | None) -> Settings:
     if not after:
         return Settings((None, None), "wire", False, "none")
-    timescale = after.timescales[-1][1:]
+    timescale = after.timescales[-1][1]
     return Settings(timescale, after.default_nettypes[-1][1], after.cells[-1][1], after.drives[-1][1])

@@ -101,6 +101,9 @@ from tardigate.syntax.expression_tree import (
 from tardigate.syntax.expression_tree import (
     operands as operands,
 )
+from tardigate.syntax.expression_tree import (
+    walk as walk,
+)
 
 
 class Declaration(NamedTuple):

@@ -66,9 +66,7 @@ def explain_first(
     start, word = where(found.start), found.text
     if found.kind == END:
         start = where(len(source.rstrip()) - 1)
-    hint = near(word, trouble.accepted, scout) if word else None
-    if hint is None and opens_line(text.data, start) and scout.kinds.get(";") in trouble.accepted:
-        hint = "Perhaps a `;` is missing at the end of the line before."
+    hint = _likely(scout, word, trouble, text.data, start)
     shown = f"`{word}`" if word else "the end of the text"
     wanted = listed(trouble.accepted, scout, friendly)
     return Diagnostic.of(
@@ -116,12 +114,18 @@ def _explain(
     shown = advice.found or (f"`{word}`" if word else "the end of the file")
     hint = advice.hint
     if hint is None and found.kind and word:
-        hint = near(word, trouble.accepted, scout)
-        if hint is None and opens_line(text.data, start) and scout.kinds.get(";") in trouble.accepted:
-            hint = "Perhaps a `;` is missing at the end of the line before."
+        hint = _likely(scout, word, trouble, text.data, start)
     return Diagnostic.of(
         code, text.span(start, start + max(1, len(word))), hint=hint, found=shown, wanted=wanted
     )
+
+
+def _likely(scout: Scout, word: str, trouble: Trouble, data: bytes, start: int) -> str | None:
+    """Return the hint that any language may need: a word that is near, or a `;` that may be missing."""
+    hint = near(word, trouble.accepted, scout)
+    if hint is None and opens_line(data, start) and scout.kinds.get(";") in trouble.accepted:
+        hint = "Perhaps a `;` is missing at the end of the line before."
+    return hint
 
 
 def near(word: str, accepted: Iterable[str], scout: Scout) -> str | None:
