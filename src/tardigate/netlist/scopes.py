@@ -8,7 +8,6 @@ from dataclasses import dataclass, field
 from tardigate.netlist.constants import Value
 from tardigate.syntax import tree
 
-
 CHOICES = (tree.GenerateIf, tree.GenerateCase)
 GENERATE = (tree.GenerateFor, *CHOICES)
 """The generate constructs."""

@@ -17,7 +17,6 @@ from tardigate.netlist.write_ports import WAY_WORDS, Header, Vector, plan_header
 from tardigate.netlist.write_words import instance_names, net_names, spelled, unlike
 
 
-
 class Sheet:
     """The names of one flat file.
 

@@ -12,7 +12,7 @@ from types import MappingProxyType
 from typing import NamedTuple
 
 from tardigate.parts.draft_guess import Guess, guessed
-from tardigate.parts.gates import BUFFERS, THREE_STATE
+from tardigate.parts.gates import BUFFERS, THREE_STATE, operator_of
 from tardigate.parts.kind import Kind, Way
 from tardigate.parts.register_kind import REGISTER
 from tardigate.syntax.parts_reader import reserved_words

@@ -141,6 +141,13 @@ def _with_turn_off(hops: list[KindHop], delay_of: DelayOf) -> list[KindHop]:
     return hops + [o for hop, o in zip(hops, others, strict=True) if o.delay.triple != hop.delay.triple]
 
 
+def with_turn_off(delay: SourceDelay) -> SourceDelay:
+    """Return a delay with its turn-off value written out, where rise and fall differ (clause 7.14)."""
+    if len(delay.values) != 2:
+        return delay
+    return delay._replace(values=(*delay.values, _smaller(*delay.values)))
+
+
 def source_delays(delay: SourceDelay) -> DelayOf:
     """Return the delays of transitions that a delay written in the source stands for (clause 7.14).
 

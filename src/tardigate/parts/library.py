@@ -136,7 +136,10 @@ class Library:
             table = self._choice.operators
             delay_of = gates.source_delays(delay) if delay else self._delay_of(table, operator, inputs)
             turns_off = delay is not None and len(delay.values) > 2
-            self._kinds[key] = gates.operator(operator, inputs, delay_of, turns_off)._replace(source=delay)
+            written = delay
+            if delay is not None and operator == gates.THREE_STATE_NET:
+                written = gates.with_turn_off(delay)
+            self._kinds[key] = gates.operator(operator, inputs, delay_of, turns_off)._replace(source=written)
         return self._kinds[key]
 
     def part(self, module: str, parameters: Mapping[str, int] = NO_PARAMETERS) -> tuple[Part, Values]:
