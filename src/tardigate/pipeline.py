@@ -5,6 +5,7 @@ Takes a request, gives the loaded design; from that the graph, times, trails and
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from typing import NamedTuple
 
 import numpy as np
@@ -61,7 +62,8 @@ class Request(NamedTuple):
 class Loaded(NamedTuple):
     """A design, read and checked for structure.
 
-    `missing` are the kinds in use that have no delay, `undescribed` the modules that nobody describes;
+    `missing` are the kinds in use that have no delay, `undescribed` the modules that nobody describes (of
+    those in `behavioural` there is but procedural code);
     `units_assumed` counts delays in the source without a `timescale`.
     """
 
@@ -76,6 +78,7 @@ class Loaded(NamedTuple):
     missing: tuple[Kind, ...]
     undescribed: tuple[Undescribed, ...]
     units_assumed: int
+    behavioural: Mapping[str, tuple[Diagnostic, ...]]
 
 
 def load(request: Request) -> Loaded:
@@ -93,7 +96,7 @@ def load(request: Request) -> Loaded:
     return Loaded(
         request, built.top, built.flat, names, library, built.modules,
         tuple(module.name for unit in units for module in unit.modules), collector.warnings(), missing,
-        built.undescribed, built.units_assumed,
+        built.undescribed, built.units_assumed, built.behavioural,
     )  # fmt: skip
 
 
@@ -112,6 +115,10 @@ def graph_of(loaded: Loaded) -> Graph:
 
 def _tell_undescribed(loaded: Loaded, collector: Collector) -> None:
     for stranger in loaded.undescribed:
+        if stranger.name in loaded.behavioural:
+            for diagnostic in loaded.behavioural[stranger.name]:
+                collector.add(diagnostic)
+            continue
         known = [*GATES, *loaded.library.part_names(), *loaded.module_names]
         hint = did_you_mean(stranger.name, known) if collector.room("N301") else None
         collector.tell("N301", stranger.place, name=stranger.name, count=stranger.count, hint=hint)

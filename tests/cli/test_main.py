@@ -236,7 +236,8 @@ def test_each_use_code_is_raised_by_its_faulty_sample_and_not_by_its_mended_one(
     entry = look_up(code)
     for sample, raised in ((entry.faulty, True), (entry.mended, False)):
         if not sample:
-            assert code in ("U102", "U109", "U110")  # a file of 1 GiB, no text: shown in tests/source; a full disk: see below
+            # A file of 1 GiB, no text: shown in tests/source; a full disk: see below.
+            assert code in ("U102", "U109", "U110")
             continue
         for name, text in sample.items():
             if name != "arguments":

@@ -12,8 +12,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from hypothesis import given, settings
-from hypothesis import strategies as st
+from hypothesis import given, settings, strategies as st
 
 from tardigate.pipeline import Request, graph_of, load, times_of
 from tardigate.source.code_table import every_code, look_up

@@ -7,8 +7,7 @@ from collections.abc import Callable
 from pathlib import Path
 
 import pytest
-from hypothesis import given, settings
-from hypothesis import strategies as st
+from hypothesis import given, settings, strategies as st
 
 from tardigate.netlist.dump import dump
 from tardigate.pipeline import Request, load

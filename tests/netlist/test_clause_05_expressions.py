@@ -256,3 +256,27 @@ def test_constant_expressions(expression: str, told: Codes, instances: Lines) ->
     assert instances(text) == [f"buf g: out=y, in=a[{value}]"]
     other = text.replace(f"[{value}:{value}]", f"[{value + 1}:{value + 1}]")
     assert told(other) == ["N132"]
+
+
+def test_5_1_14_a_replication_of_zero_times_stands_beside_others(instances: Lines, told: Codes) -> None:
+    """It has no bits; alone, or as an operand of anything but a concatenation, it is refused."""
+    found = [_pins(line) for line in instances(_module("assign y = {{0{c}}, a};"))]
+    assert [pins for _, pins in found] == [[f"y[{i}]", f"a[{i}]"] for i in range(4)]
+    for alone in ("{0{c}}", "{{0{c}}}", "{0{c}} & a", "~{0{c}}"):
+        assert told(_module(f"assign y = {alone};")) == ["N121"], alone
+
+
+def test_5_2_3_strings_are_compared_as_numbers(instances: Lines, told: Codes) -> None:
+    """Constants by then: `"A" == "A"` is 1; a string is eight bits a character, padded on the left with 0."""
+    lines = ('localparam S = "MINI";', 'assign z = c & (S != "NONE");', 'assign w = "AB";')
+    found = [_pins(line) for line in instances(_module(*lines))]
+    assert found[0] == ("assign &", ["z", "c", "1'b1"])
+    assert "".join(pins[1][-1] for _, pins in reversed(found[1:])) == f"{ord('B'):08b}"
+    assert "N135" not in told(_module('assign z = c & ("" == "A");'))
+
+
+def test_5_5_signed_and_unsigned_change_no_bit(instances: Lines) -> None:
+    found = [_pins(line)[1] for line in instances(_module("assign w = $signed(a);"))]
+    assert found == [[f"w[{i}]", f"a[{min(i, 3)}]"] for i in range(8)]
+    found = [_pins(line)[1] for line in instances(_module("assign w = $unsigned(s);"))]
+    assert found == [[f"w[{i}]", f"s[{i}]" if i < 3 else "1'b0"] for i in range(8)]

@@ -19,8 +19,7 @@ from fractions import Fraction
 from typing import Any
 
 import pytest
-from hypothesis import given, settings
-from hypothesis import strategies as st
+from hypothesis import given, settings, strategies as st
 from pyslang.ast import Compilation
 from pyslang.syntax import SyntaxTree
 

@@ -53,3 +53,25 @@ def test_the_skeleton_describes_what_it_is_drafted_for(part: str) -> None:
     assert design.loaded.undescribed == ()
     filled = skeleton.replace("-:-:-", "1:2:3")
     assert tardigate.read_text(verilog, parts=filled).settle().outputs()[0].settles_ns == 6.0
+
+
+BEHAVIOUR = """
+module board(input ck, d, output q); ff u (.C(ck), .D(d), .Q(q)); endmodule
+{}
+module ff(input C, D, output reg Q); initial Q = 0; always @(posedge C) Q <= D; endmodule
+"""
+
+
+def test_a_cell_of_procedural_code_is_undescribed_and_its_reason_told_when_figures_are_asked_for() -> None:
+    design = tardigate.read_text(BEHAVIOUR.format("`celldefine"))
+    assert [module.name for module in design.loaded.undescribed] == ["ff"]
+    assert "part ff" in design.draft()
+    with pytest.raises(tardigate.InputRefusedError) as refused:
+        design.settle()
+    assert [told.code for told in refused.value.diagnostics] == ["V004"]
+
+
+def test_any_other_module_of_procedural_code_is_refused_at_once() -> None:
+    with pytest.raises(tardigate.InputRefusedError) as refused:
+        tardigate.read_text(BEHAVIOUR.format(""))
+    assert [told.code for told in refused.value.diagnostics] == ["V004"]

@@ -13,8 +13,7 @@ from typing import Any, NamedTuple
 import networkx
 import numpy as np
 import pytest
-from hypothesis import HealthCheck, assume, given, settings
-from hypothesis import strategies as st
+from hypothesis import HealthCheck, assume, given, settings, strategies as st
 
 from tardigate.analysis.audit import audit
 from tardigate.analysis.model import GRADES, Grade, Trail

@@ -14,8 +14,7 @@ from pathlib import Path
 from typing import Any, NamedTuple
 
 import pytest
-from hypothesis import given, settings
-from hypothesis import strategies as st
+from hypothesis import given, settings, strategies as st
 from pyslang import Bag
 from pyslang.ast import (
     Compilation,

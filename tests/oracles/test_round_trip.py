@@ -13,8 +13,7 @@ from importlib.util import find_spec
 from pathlib import Path
 
 import pytest
-from hypothesis import given, settings
-from hypothesis import strategies as st
+from hypothesis import given, settings, strategies as st
 
 from tardigate.graph.model import Graph
 from tardigate.netlist.flat import CONSTANTS
@@ -106,7 +105,11 @@ def _connections(design: Loaded) -> Counter[object]:
     pins, start = flat.pin_net.tolist(), flat.pin_start.tolist()
     hops = [repr(kind.delays.tolist()) for kind in flat.kinds]
     return Counter(
-        (flat.kinds[kind].name.replace("wire", "assign"), hops[kind], *(nets[pin] if pin >= 0 else "" for pin in pins[first:last]))
+        (
+            flat.kinds[kind].name.replace("wire", "assign"),
+            hops[kind],
+            *(nets[pin] if pin >= 0 else "" for pin in pins[first:last]),
+        )
         for kind, first, last in zip(flat.inst_kind.tolist(), start, start[1:], strict=False)
     )
 

@@ -3,8 +3,7 @@
 import re
 from importlib import resources
 
-from hypothesis import given, settings
-from hypothesis import strategies as st
+from hypothesis import given, settings, strategies as st
 
 from tardigate.parts.kind import Kind
 from tardigate.parts.library import Library

@@ -4,8 +4,7 @@ import math
 from collections.abc import Callable
 
 import pytest
-from hypothesis import given
-from hypothesis import strategies as st
+from hypothesis import given, strategies as st
 
 from tardigate.parts.library import Library
 from tardigate.parts.units import FEMTOSECONDS, amount, time_in_fs

@@ -3,8 +3,7 @@
 from collections.abc import Callable
 
 import pytest
-from hypothesis import given
-from hypothesis import strategies as st
+from hypothesis import given, strategies as st
 
 from tardigate.parts.draft import UndescribedModule, draft_text
 from tardigate.parts.dump import dump_kind

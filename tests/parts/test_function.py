@@ -2,8 +2,7 @@
 
 from itertools import product
 
-from hypothesis import given
-from hypothesis import strategies as st
+from hypothesis import given, strategies as st
 
 from tardigate.parts.function import EXACT, NEGATIVE, POSITIVE, Network
 

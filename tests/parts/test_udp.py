@@ -2,8 +2,7 @@
 
 from itertools import product
 
-from hypothesis import assume, given
-from hypothesis import strategies as st
+from hypothesis import assume, given, strategies as st
 
 from tardigate.parts.by_kind import ByKind, Choice
 from tardigate.parts.function import NEGATIVE, POSITIVE, Network

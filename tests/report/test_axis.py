@@ -2,8 +2,7 @@
 
 from __future__ import annotations
 
-from hypothesis import given
-from hypothesis import strategies as st
+from hypothesis import given, strategies as st
 
 from tardigate.report.axis import Axis, with_unit
 from tardigate.report.looks import BARS, Look

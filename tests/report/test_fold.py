@@ -3,8 +3,7 @@
 from __future__ import annotations
 
 import numpy as np
-from hypothesis import given
-from hypothesis import strategies as st
+from hypothesis import given, strategies as st
 from numpy.typing import NDArray
 
 from tardigate.report.fold import fold

@@ -5,8 +5,7 @@ from __future__ import annotations
 from fractions import Fraction
 
 import pytest
-from hypothesis import given
-from hypothesis import strategies as st
+from hypothesis import given, strategies as st
 
 from tardigate.parts.units import FEMTOSECONDS, LONGEST
 from tardigate.report.numbers import MOST_DECIMALS, scale_of

@@ -7,8 +7,7 @@ from pathlib import Path
 from zlib import crc32
 
 import pytest
-from hypothesis import given, settings
-from hypothesis import strategies as st
+from hypothesis import given, settings, strategies as st
 from lark import Token, Tree
 from lark.exceptions import UnexpectedInput
 

@@ -101,3 +101,10 @@ def test_a_module_with_parameters_does_not_use_itself() -> None:
     source = SourceFile("m.v", b"module m #(parameter N = 1) (input a);\nendmodule\n")
     unit = read_unit(preprocess(source, PreprocessOptions(), collector, None), collector)
     assert unit.uses(unit.modules[0]) == []
+
+
+def test_a_quote_in_a_string_makes_no_number_of_the_word_behind_it() -> None:
+    body = '(* test = "don\'t" *)\nleaf u1 (a, b);\nleaf #(.N("it\'s")) u2 (a, y);\nnand leaf (y, a, b);'
+    assert _statements(body)[-1] == "nand leaf y a b"
+    unit = _unit(body)
+    assert "leaf" in unit.uses(unit.modules[0])

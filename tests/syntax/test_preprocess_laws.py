@@ -6,8 +6,7 @@ from contextlib import suppress
 from pathlib import Path
 
 import pytest
-from hypothesis import given, settings
-from hypothesis import strategies as st
+from hypothesis import given, settings, strategies as st
 
 from tardigate.source.collector import Collector
 from tardigate.source.faults import InputRefusedError

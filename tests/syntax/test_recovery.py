@@ -7,8 +7,7 @@ from collections.abc import Callable
 from random import Random
 
 import pytest
-from hypothesis import given, settings
-from hypothesis import strategies as st
+from hypothesis import given, settings, strategies as st
 
 from tardigate.source.collector import Collector
 from tardigate.source.diagnostic import Diagnostic

@@ -5,8 +5,7 @@ from __future__ import annotations
 import re
 
 import pytest
-from hypothesis import example, given
-from hypothesis import strategies as st
+from hypothesis import example, given, strategies as st
 
 from tardigate.syntax.scan import SPACE, WORD, Scan, scan
 

@@ -4,8 +4,7 @@ from collections.abc import Iterator
 from itertools import product
 
 import pytest
-from hypothesis import assume, given
-from hypothesis import strategies as st
+from hypothesis import assume, given, strategies as st
 
 from tardigate.source.code_table import look_up
 from tardigate.source.collector import Collector

@@ -6,7 +6,7 @@ instances undescribed: `check` and the pipeline refuse what a figure would need.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from typing import NamedTuple
 
 from tardigate.netlist.flat import Flat
@@ -20,18 +20,23 @@ from tardigate.netlist.template import Template
 from tardigate.parts.kind import Kind
 from tardigate.parts.library import Library
 from tardigate.source.collector import Collector
+from tardigate.source.diagnostic import Diagnostic
 from tardigate.source.faults import InputRefusedError
 from tardigate.syntax.verilog_reader import Unit
 
 
 class Built(NamedTuple):
-    """What elaboration gives: the flat design, the undescribed, and the delays whose unit was assumed."""
+    """What elaboration gives: the flat design, the undescribed, and the delays whose unit was assumed.
+
+    `behavioural`: what is to be told of those undescribed modules that are there and hold procedural code.
+    """
 
     top: str
     flat: Flat
     modules: int
     undescribed: tuple[Undescribed, ...]
     units_assumed: int
+    behavioural: Mapping[str, tuple[Diagnostic, ...]]
 
 
 def build(
@@ -60,7 +65,10 @@ def build(
     tell_ring(templates, collector)
     collector.refuse()
     flat = _stamped(templates, first, shop.kinds.kinds, found, modules, collector)
-    return Built(found, flat, len({t.module for t in templates}), shop.strangers.resolved(), shop.assumed)
+    return Built(
+        found, flat, len({t.module for t in templates}), shop.strangers.resolved(), shop.assumed,
+        modules.behavioural,
+    )  # fmt: skip
 
 
 def _stamped(

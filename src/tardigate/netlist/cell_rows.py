@@ -98,33 +98,3 @@ def _structural(heads: set[int], place: Place, matched: Matched, ways: Ways) -> 
             triples = (inside.late, inside.early) if ways.written(tail[0], head[0]) else (UNKNOWN,)
             for triple in dict.fromkeys(triples):
                 yield _row(need, triple, place, "+" if tail[1] == head[1] else "-")
-
-
-# States for which no path is (14.3.3: there the delays inside count, or none)
-
-
-def uncovered(part: Part) -> Iterator[tuple[Need, list[Row]]]:
-    """Yield the changes that can happen in states in which none of their rows holds, with those rows."""
-    rows: dict[Need, list[Row]] = {}
-    conditional = any(row.when >= 0 for row in part.rows)
-    for need, row in match(part, {}).timed if conditional else ():
-        rows.setdefault(need, []).append(row)
-    for need, some in rows.items():
-        whens = [row.when for row in some]
-        if need.root != NOBODY and min(whens) >= 0 and _open_states(part.network, need, whens):
-            yield need, some
-
-
-def _open_states(network: Network, need: Need, whens: list[int]) -> int:
-    """Return the states in which a change passes and no condition holds; none when they are too many."""
-    tables = network.tables([need.root, *whens], {})
-    if tables is None:
-        return 0
-    follow, against = tables.changes(need.root, need.tail)
-    follows = need.tail_edge == need.head_edge
-    if "Z" in need.transition:  # the root is what makes the output drive
-        follows = (need.tail_edge == Edge.RISE) == need.transition.startswith("Z")
-    states = follow if follows else against
-    for when in whens:
-        states &= ~(tables.of[when] | tables.of[when] >> tables.step(need.tail))
-    return states

@@ -13,12 +13,13 @@ from tardigate.netlist.body import Body
 from tardigate.netlist.cell_function import Drive, Functions
 from tardigate.netlist.cell_names import CellNames
 from tardigate.netlist.cell_registers import body_registers, edge_sources, implied_registers
-from tardigate.netlist.cell_rows import timed_rows, uncovered
+from tardigate.netlist.cell_rows import timed_rows
 from tardigate.netlist.cell_times import CellTimes
 from tardigate.netlist.cell_ways import Ways
 from tardigate.netlist.delays import Delays
 from tardigate.netlist.template import TemplatePort
 from tardigate.parts.kind import Way
+from tardigate.parts.match import match, uncovered
 from tardigate.parts.model import Check, Part, Pin, Place, Register, Row
 from tardigate.parts.paths import build_paths
 from tardigate.parts.timing_checks import build_checks, delayed_signals
@@ -142,7 +143,8 @@ def _pin(port: TemplatePort, outputs: Sequence[int], first: int, place: Place) -
 def _tell_uncovered(part: Part, names: CellNames, ways: Ways) -> None:
     """Warn of states for which a change has no path nor a delay inside (N180), once for a pair of pins."""
     told = set()
-    for need, rows in uncovered(part):
+    conditional = any(row.when >= 0 for row in part.rows)
+    for need, rows in uncovered(part, match(part, {})) if conditional else ():
         pair = (need.tail, need.head)
         if pair in told or ways.written(*pair):
             continue

@@ -215,6 +215,18 @@ def call_shape(name: str, operand: Shape) -> Shape:
     return UNSIZED_SIGNED
 
 
+def ends_of(mode: str, high: int, low: int, step: int) -> tuple[int, int]:
+    """Return the left and right index of what a selection `[high:low]`, `[high]`, or `[high +: low]` means.
+
+    Of the last two modes `low` is the width, and they count up and down from `high` whichever way the vector
+    is declared (clause 5.2.1): `step` is 1 where its left index is the larger, else -1.
+    """
+    if mode not in ("up", "down"):
+        return high, low
+    bottom = high if mode == "up" else high - low + 1
+    return (bottom + low - 1, bottom) if step > 0 else (bottom, bottom + low - 1)
+
+
 def selected(value: Value, mode: str, high: int, low: int) -> Value | None:
     """Return bits of a parameter; None when they are not there (clause 5.2.1).
 
@@ -222,9 +234,7 @@ def selected(value: Value, mode: str, high: int, low: int) -> Value | None:
     """
     msb, lsb = value.bounds or ((LARGEST if value.width is None else value.width) - 1, 0)
     step = 1 if msb >= lsb else -1
-    if mode in ("up", "down"):
-        bottom = high if mode == "up" else high - low + 1
-        high, low = (bottom + low - 1, bottom) if step > 0 else (bottom, bottom + low - 1)
+    high, low = ends_of(mode, high, low, step)
     first, last = (low - lsb) * step, (high - lsb) * step
     if not 0 <= first <= last <= abs(msb - lsb):
         return None

@@ -12,13 +12,18 @@ from typing import NamedTuple
 
 from tardigate.netlist import constant_operators as operators
 from tardigate.netlist.constant_operators import BIT, REAL, Shape, fitted, joined, shape_of
-from tardigate.netlist.constant_value import LARGEST as LARGEST
-from tardigate.netlist.constant_value import NotConstantError as NotConstantError
-from tardigate.netlist.constant_value import Value as Value
-from tardigate.netlist.constant_value import assigned, decimal, real, text_value
-from tardigate.netlist.constant_value import rounded as rounded
-from tardigate.netlist.constant_value import whole as whole
-from tardigate.netlist.constant_value import words_of as words_of
+from tardigate.netlist.constant_value import (
+    LARGEST as LARGEST,
+    NotConstantError as NotConstantError,
+    Value as Value,
+    assigned,
+    decimal,
+    real,
+    rounded as rounded,
+    text_value,
+    whole as whole,
+    words_of as words_of,
+)
 from tardigate.syntax import tree
 
 MIN, TYP, MAX = range(3)

@@ -21,6 +21,9 @@ _BITWISE = {"&": "&", "|": "|", "^": "^", "~^": "~^", "^~": "~^"}
 _EQUAL = {"==": "==", "===": "==", "!=": "!=", "!==": "!="}
 _SHIFTS = ("<<", ">>", "<<<", ">>>")
 _REDUCE = {op: f"reduce {op}" for op in ("&", "|", "^", "~&", "~|", "~^")} | {"^~": "reduce ~^"}
+_SIGNS = ("$signed", "$unsigned")
+"""Functions that say how an operand is meant and change no bit (clause 5.5)."""
+
 MOST_RESULTS = 1 << 21
 """Gates that the operators of one module may become."""
 
@@ -105,8 +108,12 @@ class Expressions:
         flat.constant[at] = bool(below) and all(flat.constant[child] for child in below)
         flat.signed[at] = bool(below) and all(flat.signed[child] for child in below)
         width = 1
+        if 0 in widths and not isinstance(node, tree.Concatenation):
+            return self._tell_width(node.at)
         if isinstance(node, tree.Number):
             width, flat.signed[at], flat.constant[at] = node.width or 32, node.signed, True
+        elif isinstance(node, tree.String):
+            width, flat.signed[at], flat.constant[at] = evaluate(node, {}).width or 8, False, True
         elif isinstance(node, tree.Reference):
             return self._measure_reference(flat, at, node)
         elif isinstance(node, tree.Concatenation | tree.Replication):
@@ -124,6 +131,8 @@ class Expressions:
             width, flat.signed[at] = max(widths[1:]), flat.signed[below[1]] and flat.signed[below[2]]
         elif isinstance(node, tree.Call):
             width, flat.signed[at] = 32, True
+            if node.name in _SIGNS and len(widths) == 1:
+                width, flat.signed[at] = widths[0], node.name == "$signed"
         else:
             self.wiring.collector.tell("N135", self.wiring.span(node.at))
             return False
@@ -162,10 +171,14 @@ class Expressions:
         flat.signed[at] = False
         flat.constant[at] = False
         flat.width[at] = times * sum(flat.width[child] for child in flat.below[at])
-        if not 0 < flat.width[at] <= WIDEST:
-            self.wiring.collector.tell("N121", self.wiring.span(node.at), most=WIDEST)
-            return False
+        nothing = isinstance(node, tree.Replication) and not times and at  # beside others (clause 5.1.14)
+        if not (0 < flat.width[at] <= WIDEST or nothing):
+            return self._tell_width(node.at)
         return True
+
+    def _tell_width(self, at: int) -> bool:
+        self.wiring.collector.tell("N121", self.wiring.span(at), most=WIDEST)
+        return False
 
     # Widths, from the root (clause 5.4.1)
 
@@ -205,8 +218,8 @@ class Expressions:
             bits = flat.bits[at]
         elif isinstance(node, tree.Concatenation | tree.Replication):
             joined = [bit for part in reversed(operands) for bit in part]
-            bits = joined * (flat.width[at] // len(joined))
-        elif isinstance(node, tree.Binary | tree.Unary) and self._is_wiring(node):
+            bits = joined * (flat.width[at] // max(1, len(joined)))
+        elif isinstance(node, tree.Binary | tree.Unary | tree.Call) and self._is_wiring(node):
             bits = self._wired(flat, at, node, operands[0])
         else:
             made = self._gates(flat, at, operands, target)
@@ -216,7 +229,7 @@ class Expressions:
             if root and target is not None and len(made) < len(target):
                 self._copy(flat.bits[at][len(made) :], target[len(made) :], node.at)
             return True
-        if not bits:
+        if not bits and flat.width[at]:
             return False
         flat.bits[at] = self._extended(flat, at, bits)
         if target is not None:
@@ -248,11 +261,15 @@ class Expressions:
         width = flat.want[at] if value.width is None else value.width
         return [number >> i & 1 for i in range(width)]
 
-    def _is_wiring(self, node: tree.Binary | tree.Unary) -> bool:
+    def _is_wiring(self, node: tree.Binary | tree.Unary | tree.Call) -> bool:
+        if isinstance(node, tree.Call):
+            return node.name in _SIGNS and len(node.arguments) == 1
         return node.operator in _SHIFTS if isinstance(node, tree.Binary) else node.operator == "+"
 
-    def _wired(self, flat: _Flat, at: int, node: tree.Binary | tree.Unary, operand: list[int]) -> list[int]:
-        if isinstance(node, tree.Unary):
+    def _wired(
+        self, flat: _Flat, at: int, node: tree.Binary | tree.Unary | tree.Call, operand: list[int]
+    ) -> list[int]:
+        if not isinstance(node, tree.Binary):
             return operand
         try:
             by = evaluate_whole(node.right, self.wiring.values)

@@ -10,8 +10,9 @@ from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass, field
 
 from tardigate.netlist.parameters import declarations_of
+from tardigate.netlist.rings import ring_below, tell_names
 from tardigate.source.collector import Collector
-from tardigate.source.diagnostic import Related, did_you_mean
+from tardigate.source.diagnostic import Diagnostic, Related, did_you_mean
 from tardigate.source.faults import InputRefusedError
 from tardigate.source.span import Span
 from tardigate.syntax.outline import ModuleText
@@ -25,13 +26,15 @@ class Modules:
     """The modules that may be elaborated; `bulk` says whether plain statements go past the grammar.
 
     `primitives` are the user-defined primitives, `cells` the modules that a part of a library looks like:
-    with a specify block, or between `celldefine` and `endcelldefine`.
+    with a specify block, or between `celldefine` and `endcelldefine`. Those of the latter that hold
+    procedural code are taken as undescribed; `behavioural` says why.
     """
 
     described: Callable[[str], bool]
     bulk: bool = True
     primitives: dict[str, tuple[Unit, ModuleText]] = field(default_factory=dict)
     cells: set[str] = field(default_factory=set)
+    behavioural: dict[str, tuple[Diagnostic, ...]] = field(default_factory=dict)
     _broken: set[str] = field(default_factory=set)
     _texts: dict[str, tuple[Unit, ModuleText]] = field(default_factory=dict)
     _trees: dict[str, Module] = field(default_factory=dict)
@@ -74,6 +77,9 @@ class Modules:
             self.tree(name)
         except InputRefusedError as refused:
             self._broken.add(name)
+            if name in self.cells and all(told.code == "V004" for told in refused.diagnostics):
+                self.behavioural[name] = refused.diagnostics
+                return False
             for diagnostic in refused.diagnostics:
                 collector.add(diagnostic)
             return False
@@ -154,38 +160,9 @@ def find_top(modules: Modules, wanted: str | None, collector: Collector) -> str 
         related = tuple(Related(modules.span(name), f"`{name}`") for name in tops[:8])
         collector.tell("N103", count=len(tops), names=_some(tops), related=related)
     else:
-        find_ring(modules, names, collector)
+        ring = ring_below(names, modules.uses)
+        tell_names([(name, modules.span(name)) for name in ring], collector)
     return None
-
-
-def find_ring(modules: Modules, starts: Sequence[str], collector: Collector) -> bool:
-    """Tell of a module that contains itself, as the ring of modules (N106); return whether there is one.
-
-    Depth-first search with a stack of its own.
-    """
-    done: set[str] = set()
-    for start in starts:
-        path: list[str] = []
-        on_path: set[str] = set()
-        stack: list[tuple[str, bool]] = [(start, True)]
-        while stack:
-            name, enter = stack.pop()
-            if not enter:
-                on_path.discard(path.pop())
-                done.add(name)
-            elif name in on_path:
-                ring = path[path.index(name) :]
-                related = tuple(Related(modules.span(m), f"`{m}`") for m in ring[:12])
-                collector.tell(
-                    "N106", modules.span(ring[0]), ring=" > ".join([*ring, ring[0]]), related=related
-                )
-                return True
-            elif name not in done:
-                path.append(name)
-                on_path.add(name)
-                stack.append((name, False))
-                stack += [(below, True) for below in modules.uses(name)]
-    return False
 
 
 def _some(names: Sequence[str]) -> str:

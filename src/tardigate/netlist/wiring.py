@@ -13,6 +13,7 @@ from typing import NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
+from tardigate.netlist.constant_operators import ends_of
 from tardigate.netlist.constants import NotConstantError, Value, evaluate_whole
 from tardigate.netlist.declare import WIDEST, Declarer
 from tardigate.netlist.hierarchy import Hierarchy, Target
@@ -205,14 +206,10 @@ class Wiring:
         except NotConstantError as error:
             self.collector.tell("N133", self.span(error.at), reason=error.reason)
             return []
-        if chosen.mode in ("up", "down"):
-            count, start = low, high
-            if not 0 < count <= WIDEST:
-                self.collector.tell("N121", self.span(reference.at), most=WIDEST)
-                return []
-            # `[b +: w]` counts up from b whichever way the net is declared (clause 5.2.1).
-            bottom = start if chosen.mode == "up" else start - count + 1
-            high, low = (bottom + count - 1, bottom) if step > 0 else (bottom, bottom + count - 1)
+        if chosen.mode in ("up", "down") and not 0 < low <= WIDEST:
+            self.collector.tell("N121", self.span(reference.at), most=WIDEST)
+            return []
+        high, low = ends_of(chosen.mode, high, low, step)
         first, last = (low - lsb) * step, (high - lsb) * step
         if first < 0 or last < 0 or max(first, last) > abs(msb - lsb):
             self.collector.tell(

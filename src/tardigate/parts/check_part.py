@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from tardigate.parts.function import NEGATIVE, POSITIVE
 from tardigate.parts.kind import Edge, Way
-from tardigate.parts.match import Matched, match
+from tardigate.parts.match import Matched, match, uncovered
 from tardigate.parts.model import SYMBOLS, Part, Place, Register, Row
 from tardigate.parts.needs import NOBODY, Need, function_of
 from tardigate.source.collector import Collector
@@ -169,31 +169,9 @@ def _missing(part: Part, matched: Matched, collector: Collector) -> None:
 
 
 def _uncovered(part: Part, matched: Matched, collector: Collector) -> None:
-    """Tell changes that can happen in a state for which no row is, though there are rows with `when`."""
-    whens: dict[Need, list[Row]] = {}
-    for need, row in matched.timed:
-        whens.setdefault(need, []).append(row)
-    for need, rows in whens.items():
-        if need.root == NOBODY or any(row.when < 0 for row in rows):
-            continue
-        if _open_states(part, need, rows):
-            ends = part.bit_names[need.tail], part.bit_names[need.head]
-            symbol = SYMBOLS[need.transition]
-            collector.tell("P033", rows[0].place.span(), symbols=symbol, tail=ends[0], head=ends[1])
-            return
-
-
-def _open_states(part: Part, need: Need, rows: list[Row]) -> int:
-    """Return the states in which a change passes and no row's `when` holds; none when there are too many."""
-    tables = part.network.tables([need.root, *(row.when for row in rows)], {})
-    if tables is None:
-        return 0
-    follow, against = tables.changes(need.root, need.tail)
-    follows = need.tail_edge == need.head_edge
-    if "Z" in need.transition:  # the root is what makes the output drive
-        follows = (need.tail_edge == Edge.RISE) == need.transition.startswith("Z")
-    states = follow if follows else against
-    for row in rows:
-        holds = tables.of[row.when]
-        states &= ~(holds | holds >> tables.step(need.tail))
-    return states
+    """Tell a change that can happen in a state for which no row is, though there are rows with `when`."""
+    for need, rows in uncovered(part, matched):
+        ends = part.bit_names[need.tail], part.bit_names[need.head]
+        symbol = SYMBOLS[need.transition]
+        collector.tell("P033", rows[0].place.span(), symbols=symbol, tail=ends[0], head=ends[1])
+        return

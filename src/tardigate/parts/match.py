@@ -1,14 +1,16 @@
 """Rows of times against what a part's functions can do.
 
-Takes a part, gives for each change that can pass the rows that time it, the changes that no row times, and
-the rows that time nothing. Tells nothing: `check_part` and `part_kind` do with it what they must.
+Takes a part, gives for each change that can pass the rows that time it, the changes that no row times or
+that some time in certain states only, and the rows that time nothing. Tells nothing: `check_part` and
+`part_kind` do with it what they must.
 """
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from typing import NamedTuple
 
-from tardigate.parts.function import NEGATIVE, POSITIVE, Values
+from tardigate.parts.function import NEGATIVE, POSITIVE, Network, Values
 from tardigate.parts.kind import Edge, Way
 from tardigate.parts.model import Part, Row
 from tardigate.parts.needs import DISABLING, ENABLING, NOBODY, Need, function_of, needs_of, output_bits
@@ -121,3 +123,32 @@ def _everything(part: Part, head: int) -> list[Need]:
                 ]
             tail += 1
     return found
+
+
+# States of the other pins in which no row holds
+
+
+def uncovered(part: Part, matched: Matched) -> Iterator[tuple[Need, list[Row]]]:
+    """Yield the changes that can happen in states in which none of their rows holds, with those rows."""
+    rows: dict[Need, list[Row]] = {}
+    for need, row in matched.timed:
+        rows.setdefault(need, []).append(row)
+    for need, some in rows.items():
+        whens = [row.when for row in some]
+        if need.root != NOBODY and min(whens) >= 0 and _open_states(part.network, need, whens):
+            yield need, some
+
+
+def _open_states(network: Network, need: Need, whens: list[int]) -> int:
+    """Return the states in which a change passes and no condition holds; none when they are too many."""
+    tables = network.tables([need.root, *whens], {})
+    if tables is None:
+        return 0
+    follow, against = tables.changes(need.root, need.tail)
+    follows = need.tail_edge == need.head_edge
+    if "Z" in need.transition:  # the root is what makes the output drive
+        follows = (need.tail_edge == Edge.RISE) == need.transition.startswith("Z")
+    states = follow if follows else against
+    for when in whens:
+        states &= ~(tables.of[when] | tables.of[when] >> tables.step(need.tail))
+    return states

@@ -82,10 +82,11 @@ def _hold_quote(scan: Scan) -> NDArray[np.bool_]:
     found = np.zeros(len(scan.names), bool)
     if b"'" in scan.data:
         quotes = np.flatnonzero(np.frombuffer(scan.data, np.uint8) == 0x27)
-        starts = scan.word_stop
-        owner = np.searchsorted(starts, quotes, "right")
-        owner = owner[owner < len(scan.word)]
-        found[scan.word[owner]] = True
+        owner = np.searchsorted(scan.word_stop, quotes, "right")
+        inside = owner < len(scan.word)
+        owner, quotes = owner[inside], quotes[inside]
+        starts = scan.at[np.flatnonzero(scan.kind == WORD)]
+        found[scan.word[owner[starts[owner] <= quotes]]] = True  # others stand in strings
     return found
 
 

@@ -10,98 +10,38 @@ from typing import NamedTuple
 
 from tardigate.syntax.cell_tree import (
     Always as Always,
-)
-from tardigate.syntax.cell_tree import (
     Begin as Begin,
-)
-from tardigate.syntax.cell_tree import (
     CheckEvent as CheckEvent,
-)
-from tardigate.syntax.cell_tree import (
     Event as Event,
-)
-from tardigate.syntax.cell_tree import (
     If as If,
-)
-from tardigate.syntax.cell_tree import (
     Move as Move,
-)
-from tardigate.syntax.cell_tree import (
     Opaque as Opaque,
-)
-from tardigate.syntax.cell_tree import (
     Path as Path,
-)
-from tardigate.syntax.cell_tree import (
     Primitive as Primitive,
-)
-from tardigate.syntax.cell_tree import (
     Row as Row,
-)
-from tardigate.syntax.cell_tree import (
     Specify as Specify,
-)
-from tardigate.syntax.cell_tree import (
     Statement as Statement,
-)
-from tardigate.syntax.cell_tree import (
     TimingCheck as TimingCheck,
 )
 from tardigate.syntax.expression_tree import (
     Binary as Binary,
-)
-from tardigate.syntax.expression_tree import (
     Call as Call,
-)
-from tardigate.syntax.expression_tree import (
     Concatenation as Concatenation,
-)
-from tardigate.syntax.expression_tree import (
     Conditional as Conditional,
-)
-from tardigate.syntax.expression_tree import (
     Decimal as Decimal,
-)
-from tardigate.syntax.expression_tree import (
     Delay as Delay,
-)
-from tardigate.syntax.expression_tree import (
     Expression as Expression,
-)
-from tardigate.syntax.expression_tree import (
     Named as Named,
-)
-from tardigate.syntax.expression_tree import (
     Number as Number,
-)
-from tardigate.syntax.expression_tree import (
     Parameter as Parameter,
-)
-from tardigate.syntax.expression_tree import (
     Range as Range,
-)
-from tardigate.syntax.expression_tree import (
     Reference as Reference,
-)
-from tardigate.syntax.expression_tree import (
     Replication as Replication,
-)
-from tardigate.syntax.expression_tree import (
     Selection as Selection,
-)
-from tardigate.syntax.expression_tree import (
     String as String,
-)
-from tardigate.syntax.expression_tree import (
     Triplet as Triplet,
-)
-from tardigate.syntax.expression_tree import (
     Unary as Unary,
-)
-from tardigate.syntax.expression_tree import (
     operands as operands,
-)
-from tardigate.syntax.expression_tree import (
     walk as walk,
 )
 

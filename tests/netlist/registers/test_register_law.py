@@ -7,8 +7,7 @@ from dataclasses import dataclass
 from itertools import product
 from typing import Any
 
-from hypothesis import given, settings
-from hypothesis import strategies as st
+from hypothesis import given, settings, strategies as st
 
 from tardigate.parts.kind import Edge
 
