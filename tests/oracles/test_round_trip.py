@@ -215,3 +215,26 @@ def test_a_design_of_the_whole_structural_language_written_flat_gives_the_same_f
 
     law()
     assert ends["timed"] + ends["looped"] > 20, ends
+
+
+CELLS_WITH_PARAMETERS = """
+`timescale 1ns/1ps
+module top(input a, b, output y, z);
+  dl #(.T(1.25), .MODE("FAST")) u1 (y, a);
+  dl #(.T(2)) u2 (z, b);
+  defparam u2.K = 3;
+endmodule
+module dl #(parameter T = 1, MODE = "SLOW", parameter [3:0] K = 0) (output y, input a);
+  buf (y, a);
+  specify
+    specparam s = T + K;
+    (a => y) = (s, MODE == "FAST" ? 7 : 9);
+  endspecify
+endmodule
+"""
+
+
+def test_parameters_of_cells_are_written_with_their_instances() -> None:
+    design = load(Request((SourceFile("board.v", CELLS_WITH_PARAMETERS.encode()),)))
+    assert Figures(design).times["y"] != Figures(design).times["z"]
+    _check(design, ())

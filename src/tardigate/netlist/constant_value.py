@@ -124,6 +124,20 @@ def words_of(value: Value) -> str:
     return str(number)
 
 
+def literal(value: Value) -> str:
+    """Return an expression of constants that has exactly this value, type and width."""
+    number = value.value
+    if isinstance(number, Fraction):
+        return (
+            f"{number.numerator}.0"
+            if number.denominator == 1
+            else f"({number.numerator}.0 / {number.denominator}.0)"
+        )
+    if value.width is None:
+        return str(number)
+    return f"{value.width}'{'s' * value.signed}h{number & (1 << value.width) - 1:x}"
+
+
 def decimal(text: str) -> Fraction:
     """Return a decimal number exactly. Raises ValueError for one with absurdly many digits."""
     mantissa, _, exponent = text.lower().partition("e")

@@ -241,6 +241,9 @@ class Items:
         if part is None and child is None:
             self._strange(item, instance)
             return
+        for setting in overrides.below if part is not None else ():  # a part has no instances inside
+            name = ".".join((*setting.path, setting.parameter))
+            self.collector.tell("N127", setting.place, name=name)
         interface, number = part or child or (Interface("", ()), 0)
         connections = self.connector.by_pin(instance, interface)
         indices = self.connector.array(instance.range)

@@ -14,6 +14,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tardigate.netlist.columns import Block, Kinds
+from tardigate.netlist.constant_value import literal
 from tardigate.netlist.constants import Value, rounded, words_of
 from tardigate.netlist.declare import Declarer
 from tardigate.netlist.delays import Delays
@@ -260,7 +261,9 @@ class Shop:
         part = self.cells.part(module, parameters)
         if part is None:
             return None
-        return _interface(module, part.pins), self.kinds.number(self.library.cell_kind(part))
+        written = tuple((name, literal(value)) for name, value in sorted(parameters.items()))
+        kind = self.library.cell_kind(part, written=written)
+        return _interface(module, part.pins), self.kinds.number(kind)
 
     def is_primitive(self, name: str) -> bool:
         """Tell whether a name is that of a user-defined primitive and no parts file describes it."""

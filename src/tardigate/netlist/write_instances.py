@@ -208,7 +208,9 @@ def _parameters(kind: Kind) -> str:
     return f"#({values}) "
 
 
-def _value(value: int) -> str:
+def _value(value: int | str) -> str:
+    if isinstance(value, str):
+        return value
     return str(value) if value < 1 << 31 else f"{value.bit_length()}'h{value:x}"
 
 

@@ -79,7 +79,7 @@ class Kind(NamedTuple):
     three_state: bool = False
     unknown_function: bool = False
     source: SourceDelay | None = None
-    parameters: tuple[tuple[str, int], ...] = ()
+    parameters: tuple[tuple[str, int | str], ...] = ()
     control_sources: tuple[SourceDelay | None, ...] = ()
 
     @property

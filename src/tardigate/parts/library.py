@@ -147,14 +147,18 @@ class Library:
         part = self._parts[module]
         return part, parameter_values(part, _chosen(part, parameters))
 
-    def cell_kind(self, part: Part, delay: SourceDelay | None = None) -> Kind:
+    def cell_kind(
+        self, part: Part, delay: SourceDelay | None = None, written: tuple[tuple[str, str], ...] = ()
+    ) -> Kind:
         """Return the kind of a part that stands in the source, a cell or a primitive with `delay` behind `#`.
 
-        What its rows do not time takes the default of the parts files.
+        What its rows do not time takes the default of the parts files. `written` are the parameters that made
+        the part, as constants of Verilog.
         """
         key = ("cell", part.name, id(part), _hashable(delay))
         if key not in self._kinds:
-            self._kinds[key] = part_kind(part, 0, {}, self._choice, delay=delay)._replace(source=delay)
+            made = part_kind(part, 0, {}, self._choice, delay=delay)
+            self._kinds[key] = made._replace(source=delay, parameters=written)
         return self._kinds[key]
 
     def register_kind(
