@@ -20,11 +20,38 @@ from collections.abc import Callable
 from dataclasses import asdict, dataclass
 from importlib.util import find_spec
 from pathlib import Path
+from random import Random
 
 ROOT = Path(__file__).parents[2]
 PYTHON = sys.executable
 IMPORTS = [PYTHON, "-c", "import numpy, lark, rich.console"]
 CIRCUIT_PARTS = ROOT / "tests" / "data" / "circuits.parts"
+
+
+_BODIES = ("nand (y, a, b);", "xor (y, a, b);", "udp_pick (y, a, b, a);", "and (n, a, b);\n  or (y, n, b);")
+_CELL = """module C{number} (output y, input a, b);
+  wire n;
+  {body}
+  specify
+    specparam t = {time}.35, u = 0.8:1.0:1.3;
+    (a => y) = (t, u);
+    if (a) (b => y) = (1.1:1.2:1.4, t);
+    ifnone (b => y) = (u, u);
+    $width(posedge a, 0.5);
+  endspecify
+endmodule
+"""
+_PRIMITIVE = """primitive udp_pick (y, a, b, s);
+  output y;
+  input a, b, s;
+  table
+    0 ? 0 : 0;
+    1 ? 0 : 1;
+    ? 0 1 : 0;
+    ? 1 1 : 1;
+  endtable
+endprimitive
+"""
 
 
 @dataclass(frozen=True)
@@ -184,6 +211,69 @@ def deep_chain(runs: int) -> Row:
     )
 
 
+def write_collection(path: Path, cells: int, used: int, instances: int, others: bool = True) -> None:
+    """Write one file: a netlist of `instances` over `used` of the `cells`, which stand behind it.
+
+    Without `others` only the cells that are used are written.
+    """
+    random = Random(7)
+    chosen = sorted(random.sample(range(cells), used))
+    lines = ["`timescale 1 ns / 1 ps", "module board (a, b, y);", "input a, b;", "output y;"]
+    nets = ["a", "b"]
+    for number in range(instances):
+        net = f"n{number}" if number < instances - 1 else "y"
+        one, other = nets[-1], random.choice(nets[-40:])
+        lines.append(f"C{random.choice(chosen)} u{number} (.y({net}), .a({one}), .b({other}));")
+        nets.append(net)
+    lines += ["endmodule", "`celldefine"]
+    kept = range(cells) if others else chosen
+    lines += [_CELL.format(number=n, body=_BODIES[n % len(_BODIES)], time=n % 3) for n in kept]
+    path.write_text("\n".join([*lines, "`endcelldefine", _PRIMITIVE]))
+
+
+def cells(runs: int) -> Row:
+    """`pace` on a netlist of some cells out of a large collection, against pyslang on the same file."""
+    with tempfile.TemporaryDirectory() as folder:
+        file = Path(folder, "board.v")
+        write_collection(file, cells=2000, used=40, instances=20_000)
+        slang = process([PYTHON, str(Path(__file__).parent / "elaborate_with_pyslang.py"), str(file)])
+        times = in_turn(process(tardigate("pace", file)), slang, runs)
+    return Row(
+        "cells", "pace, 20,000 of 40 cells of 2,000", "pyslang parse + elaborate, process", *times, "< 1"
+    )
+
+
+def unused_cells(runs: int) -> Row:
+    """What cells cost that nobody uses: the collection of 2,000 against the 40 alone."""
+    with tempfile.TemporaryDirectory() as folder:
+        whole, alone = Path(folder, "whole.v"), Path(folder, "alone.v")
+        write_collection(whole, cells=2000, used=40, instances=20_000)
+        write_collection(alone, cells=2000, used=40, instances=20_000, others=False)
+        times = in_turn(process(tardigate("pace", whole)), process(tardigate("pace", alone)), runs)
+    return Row("unused-cells", "pace with 1,960 unused cells", "pace without them", *times, "<= 1.3")
+
+
+def generate_rounds(runs: int) -> Row:
+    """A generate loop against the same gates written out, by the gate."""
+    from tardigate.pipeline import Request, load
+    from tardigate.source.files import SourceFile
+
+    count = 2_000
+    head = f"module board (input [{count}:0] a, output [{count}:0] y);\n"
+    loop = f"genvar i;\nfor (i = 0; i < {count}; i = i + 1) begin : g\n  wire n;\n  not #1 (n, a[i]);\n"
+    loop = f"{head}{loop}  nand #1 h (y[i], n, a[i+1]);\nend\nendmodule\n"
+    rounds = [
+        f"wire n{i};\nnot #1 (n{i}, a[{i}]);\nnand #1 h{i} (y[{i}], n{i}, a[{i + 1}]);" for i in range(count)
+    ]
+    flat = head + "\n".join(rounds) + "\nendmodule\n"
+
+    def read(text: str) -> Callable[[], None]:
+        return lambda: void(load(Request((SourceFile("board.v", text.encode()),))))
+
+    times = in_turn(read(loop), read(flat), runs)
+    return Row("generate", "load 2,000 rounds of a generate loop", "the same written out", *times, "<= 2")
+
+
 def void(_result: object) -> None:
     """Take a result and do nothing with it."""
 
@@ -195,6 +285,9 @@ ROWS: dict[str, Callable[[int], Row]] = {
     "sweeps": sweeps,
     "many-trails": many_trails,
     "deep-chain": deep_chain,
+    "cells": cells,
+    "unused-cells": unused_cells,
+    "generate": generate_rounds,
 }
 
 

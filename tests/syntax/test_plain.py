@@ -93,18 +93,19 @@ def test_what_is_left_to_the_grammar(text: str) -> None:
 
 def test_uses_are_the_modules_that_a_module_names() -> None:
     unit = _unit("NA2 u1 (a);\nhalf #(3) h (b);\nbuf #delay g (y, a);\nwire w;\nnot (y, a);")
-    assert sorted(unit.uses(unit.modules[0])) == ["NA2", "half"]
+    known = ["NA2", "half", "u2", "board", "nobody"]
+    assert sorted(unit.uses(known)["board"]) == ["NA2", "half"]
 
 
 def test_a_module_with_parameters_does_not_use_itself() -> None:
     collector = Collector()
     source = SourceFile("m.v", b"module m #(parameter N = 1) (input a);\nendmodule\n")
     unit = read_unit(preprocess(source, PreprocessOptions(), collector, None), collector)
-    assert unit.uses(unit.modules[0]) == []
+    assert unit.uses(["m"]) == {}
 
 
 def test_a_quote_in_a_string_makes_no_number_of_the_word_behind_it() -> None:
     body = '(* test = "don\'t" *)\nleaf u1 (a, b);\nleaf #(.N("it\'s")) u2 (a, y);\nnand leaf (y, a, b);'
     assert _statements(body)[-1] == "nand leaf y a b"
     unit = _unit(body)
-    assert "leaf" in unit.uses(unit.modules[0])
+    assert unit.uses(["leaf"]) == {"board": ["leaf"]}

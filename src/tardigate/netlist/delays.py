@@ -101,14 +101,14 @@ class Delays:
         if number < 0:
             self.collector.tell("N151", self.text.span(value.at))
             return None
-        time = number * Fraction(ASSUMED_UNIT if self.unit is None else self.unit)
-        if time > LONGEST:
+        above, below = number.numerator * int(self.unit or ASSUMED_UNIT), number.denominator
+        if above > int(LONGEST) * below:
             self.collector.tell("N153", self.text.span(value.at))
             return None
-        if self.precision:
-            step = Fraction(self.precision)
-            time = (time / step + Fraction(1, 2)).__floor__() * step
-        return float(time)
+        if not self.precision:
+            return above / below
+        step = int(self.precision)
+        return float((2 * above + below * step) // (2 * below * step) * step)  # half a step goes up
 
     def _number(self, value: tree.Expression, grade: int) -> Fraction:
         """Return a value in units. Raises NotConstantError, and ValueError for too many digits."""
@@ -119,6 +119,10 @@ class Delays:
         if self._graded is None or self._graded[0] is not self.values:  # another scope's turn
             made = [graded_values(self.values, self.trees, each) for each in (MIN, TYP, MAX)]
             self._graded = (self.values, *made)
+        if isinstance(value, tree.Reference) and len(value.path) == 1 and not value.selections:
+            known = self._graded[1 + grade].get(value.path[0])
+            if known is not None:  # the usual specparam
+                return Fraction(known.value)
         return Fraction(evaluate(value, self._graded[1 + grade], grade=grade).value)
 
 

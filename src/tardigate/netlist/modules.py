@@ -38,7 +38,7 @@ class Modules:
     _broken: set[str] = field(default_factory=set)
     _texts: dict[str, tuple[Unit, ModuleText]] = field(default_factory=dict)
     _trees: dict[str, Module] = field(default_factory=dict)
-    _uses: dict[str, list[str]] = field(default_factory=dict)
+    _uses: dict[int, dict[str, list[str]]] = field(default_factory=dict)
 
     def __contains__(self, name: str) -> bool:
         return name in self._texts
@@ -100,11 +100,11 @@ class Modules:
 
     def uses(self, name: str) -> list[str]:
         """Return the modules, none of them a described part, that a module uses."""
-        if name not in self._uses:
-            unit, text = self._texts[name]
-            used = (below for below in unit.uses(text) if below in self._texts and not self.described(below))
-            self._uses[name] = list(used)
-        return self._uses[name]
+        unit, _ = self._texts[name]
+        if id(unit) not in self._uses:
+            known = [below for below in self._texts if not self.described(below)]
+            self._uses[id(unit)] = unit.uses(known)
+        return self._uses[id(unit)].get(name, [])
 
 
 def collect(
@@ -114,17 +114,14 @@ def collect(
     modules = Modules(described, bulk)
     for unit in units:
         for text in unit.modules:
-            span = unit.text.span(text.at, text.at + max(1, len(text.name)))
             known = modules._texts.get(text.name) or modules.primitives.get(text.name)
             if text.word == "config":
-                collector.tell("V006", span, word=text.word, name=text.name)
+                collector.tell("V006", _span(unit, text), word=text.word, name=text.name)
             elif not text.name:
-                collector.tell("V007", span)
+                collector.tell("V007", _span(unit, text))
             elif known is not None and not described(text.name):
-                first = Related(
-                    known[0].text.span(known[1].at, known[1].at + len(text.name)), "first one here"
-                )
-                collector.tell("N101", span, name=text.name, related=(first,))
+                first = (Related(_span(*known), "first one here"),)
+                collector.tell("N101", _span(unit, text), name=text.name, related=first)
             elif text.word == "primitive":
                 modules.primitives[text.name] = (unit, text)
             else:
@@ -132,6 +129,11 @@ def collect(
                 if text.name in unit.cells or in_force(unit.source.cells, text.start):
                     modules.cells.add(text.name)
     return modules
+
+
+def _span(unit: Unit, text: ModuleText) -> Span:
+    """Return the place of a module's name, or of the word where it should be."""
+    return unit.text.span(text.at, text.at + max(1, len(text.name)))
 
 
 def find_top(modules: Modules, wanted: str | None, collector: Collector) -> str | None:

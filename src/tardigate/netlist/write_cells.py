@@ -38,7 +38,7 @@ def cell_texts(modules: Modules, names: Iterable[str]) -> tuple[CellText, ...]:
             continue
         unit, text = modules.primitives[name] if primitive else (modules.unit(name), modules.text(name))
         if not primitive:
-            work += unit.uses(text)
+            work += modules.uses(name)
             work += _words(unit, text).intersection(modules.primitives)  # which may stand without a name
         body = unit.text.data[text.start : text.end].decode("latin-1")
         lines = [line.rstrip() for line in body.splitlines()]

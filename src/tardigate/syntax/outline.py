@@ -6,6 +6,7 @@ it uses. Does not check the modules.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import NamedTuple
 
 import numpy as np
@@ -111,21 +112,37 @@ def _outside(scan: Scan, first: int, stop: int, text: PlacedText, collector: Col
         place = int(np.searchsorted(scan.at, np.int32(close + 2)))
 
 
-def used_names(scan: Scan, marks: NDArray[np.uint8], module: ModuleText) -> list[str]:
-    """Return the names that may be modules which this one uses: before a name, a `#`, or as `; name (`.
+def used_names(
+    scan: Scan, marks: NDArray[np.uint8], modules: Sequence[ModuleText], known: Sequence[str]
+) -> dict[str, list[str]]:
+    """Return, by module, which of the names in `known` it may use as modules, in order of their numbers.
 
-    Neither the module's own name in its header (`module m #(...)`) nor that of a delay (`buf #D g (...)`).
+    Those are names before a name or a `#`, or as `; name (`; neither a module's own name in its header
+    (`module m #(...)`) nor that of a delay (`buf #D g (...)`).
     """
-    window = marks[module.first : module.stop]
-    is_name, following = window[:-1] == NAME, window[1:]
-    signs = np.flatnonzero(is_name & (following == OTHER))
-    signs = signs[_sharp(scan, module.first + signs + 1)]
-    first = np.concatenate((np.flatnonzero(is_name & (following == NAME)), signs))
-    lone = np.flatnonzero((window[1:-1] == NAME) & (window[2:] == OPEN) & (window[:-2] == SEMICOLON)) + 1
-    first = first[first > 1]
-    first = np.concatenate((first[~_sharp(scan, module.first + first - 1)], lone))
-    words = scan.word[scan.word_of[module.first + first]]
-    return [scan.names.text(int(name)) for name in distinct(words)]
+    numbers = scan.names.find_all(known)
+    is_known = np.zeros(len(scan.names), np.bool_)
+    is_known[numbers[numbers >= 0]] = True
+    at = np.flatnonzero(marks == NAME)
+    at = at[(at > 0) & (at < len(marks) - 1)]
+    at = at[is_known[scan.word[scan.word_of[at]]]]
+    before, behind = marks[at - 1], marks[at + 1]
+    uses = (behind == NAME) | ((behind == OPEN) & (before == SEMICOLON))
+    other = np.flatnonzero(behind == OTHER)
+    uses[other] = _sharp(scan, at[other] + 1)
+    behind_sign = np.flatnonzero(uses & (before == OTHER))
+    uses[behind_sign] &= ~_sharp(scan, at[behind_sign] - 1)
+    at = at[uses]
+    first = np.array([module.first for module in modules], np.int64)
+    stop = np.array([module.stop for module in modules], np.int64)
+    owner = np.searchsorted(first, at, "right") - 1
+    inside = (owner >= 0) & (at < stop[owner]) & (at > first[owner] + 1)
+    pairs = owner[inside].astype(np.int64) * len(scan.names) + scan.word[scan.word_of[at[inside]]]
+    found: dict[str, list[str]] = {}
+    for pair in distinct(pairs).tolist():
+        module, name = divmod(pair, len(scan.names))
+        found.setdefault(modules[module].name, []).append(scan.names.text(name))
+    return found
 
 
 def _sharp(scan: Scan, marks: NDArray[np.int64]) -> NDArray[np.bool_]:

@@ -48,9 +48,9 @@ class Unit(NamedTuple):
         """The placed text."""
         return self.source.text
 
-    def uses(self, module: ModuleText) -> list[str]:
-        """Return the names that may be modules which `module` uses."""
-        return used_names(self.scan, self.marks, module)
+    def uses(self, known: Sequence[str]) -> dict[str, list[str]]:
+        """Return, by module, which of the names in `known` it may use as modules."""
+        return used_names(self.scan, self.marks, self.modules, known)
 
 
 def read_unit(source: Preprocessed, collector: Collector) -> Unit:
