@@ -8,16 +8,20 @@ Looks into modules below through `Outside`. Does not connect anything.
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from functools import cached_property
 from typing import NamedTuple, Protocol
 
 import numpy as np
+from numpy.typing import NDArray
 
 from tardigate.netlist.constants import NotConstantError, Value, evaluate, evaluate_whole
 from tardigate.netlist.declare import Declarer
+from tardigate.netlist.implicit import plain_statements
 from tardigate.netlist.interface import Interface
 from tardigate.netlist.plain_tree import instance_tree
 from tardigate.netlist.scopes import Scope, chain
 from tardigate.netlist.variables import Variables
+from tardigate.source.arrays import Places
 from tardigate.source.diagnostic import did_you_mean
 from tardigate.source.span import Span
 from tardigate.syntax import tree
@@ -111,15 +115,26 @@ class Hierarchy:
     def _plain_seat(self, name: str) -> Seat | None:
         """Return an instance among the plain statements."""
         unit, number = self.declarer.unit, self.declarer.lookup.find(name)
-        for item in self.scopes[0].items if number >= 0 else ():
-            if isinstance(item, tree.Run):
-                hits = np.flatnonzero(unit.plain.name[item.first : item.last] == number) + item.first
-                for hit in hits[~unit.plain.is_declaration[hits]].tolist():
-                    found = instance_tree(unit, hit)
-                    if isinstance(found, tree.Instances):
-                        seat = Seat(found, found.instances[0], 0)
-                        return self._seats[0].setdefault(name, seat)
+        statements, places = self._plain_names
+        for place in places.of(number) if number >= 0 else ():
+            found = instance_tree(unit, int(statements[place]))
+            if isinstance(found, tree.Instances):
+                seat = Seat(found, found.instances[0], 0)
+                return self._seats[0].setdefault(name, seat)
         return None
+
+    @cached_property
+    def _plain_names(self) -> tuple[NDArray[np.int64], Places]:
+        """The plain instance statements of the module, and the places of their names."""
+        unit = self.declarer.unit
+        statements = plain_statements(unit, self.scopes[0].items)
+        return statements, Places(unit.plain.name[statements])
+
+    @cached_property
+    def _own_names(self) -> tuple[NDArray[np.int64], Places]:
+        """The variables that the module itself declares, and the places of their names."""
+        own = np.flatnonzero(self.variables.scope == 0)
+        return own, Places(self.variables.name[own])
 
     def elements(self, reference: tree.Reference, scope: int) -> tuple[str, ...] | None:
         """Return the names on the way to what a reference means, with their indices; None after telling."""
@@ -310,5 +325,6 @@ class Hierarchy:
             return -1
         if scope:
             return self.variables.scoped.get((scope, number), -1)
-        found = np.flatnonzero((self.variables.name == number) & (self.variables.scope == 0))
-        return int(found[0]) if len(found) else -1
+        own, places = self._own_names
+        found = places.of(number)
+        return int(own[found[0]]) if found else -1

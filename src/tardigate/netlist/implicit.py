@@ -30,23 +30,26 @@ def declare_implicit(
     """Add implicit nets of a type to `variables` and `of_name`, or tell of them where it is `none` (N138)."""
     flags = TYPES.index(net_type) << TYPE if net_type in TYPES else 0
     found = _of_module(declarer, scopes[0], of_name)
-    declared = [Declared(number, 0, 0, 1, at, flags, 0) for number, at in found.items()]
+    declared = np.zeros((len(found), 7), np.int64)
+    declared[:, 0], declared[:, 3] = np.array(list(found), np.int64), 1
+    declared[:, 4] = np.array(list(found.values()), np.int64)
     for scope in scopes[1:]:
-        found_here = _of_block(declarer, scope, scopes, variables, of_name, found)
-        declared += [one._replace(flags=flags) for one in found_here]
+        more = _of_block(declarer, scope, scopes, variables, of_name, found)
+        declared = np.concatenate((declared, np.array(more, np.int64).reshape(-1, 7)))
+    declared[:, 5] = flags
     if net_type == "none":
-        for one in declared:
-            name = variables.names.text(one.name)
-            room = declarer.collector.room("N138")
-            hint = declarer.suggestion(name, variables) if room else None
-            span = declarer.text.span(one.place, one.place + len(name))
-            declarer.collector.tell("N138", span, name=name, hint=hint)
-    if declared:
-        before = len(variables)
+        _tell_undeclared(declarer, variables, declared)
+    if len(declared):
+        own = np.flatnonzero(declared[:, 6] == 0)
+        of_name[declared[own, 0]] = len(variables) + own
         variables.add(declared)
-        for at, one in enumerate(declared, before):
-            if not one.scope:
-                of_name[one.name] = at
+
+
+def _tell_undeclared(declarer: Declarer, variables: Variables, declared: NDArray[np.int64]) -> None:
+    for number, _, _, _, at, _, _ in declared.tolist():
+        name = variables.names.text(number)
+        hint = declarer.suggestion(name, variables) if declarer.collector.room("N138") else None
+        declarer.collector.tell("N138", declarer.text.span(at, at + len(name)), name=name, hint=hint)
 
 
 def _of_module(declarer: Declarer, scope: Scope, of_name: NDArray[np.int32]) -> dict[int, int]:

@@ -98,8 +98,8 @@ class Variables:
         base = int(self.base[variable])
         return list(range(base + int(self.width[variable]) - 1, base - 1, -1))
 
-    def add(self, declared: Sequence[Declared]) -> None:
-        """Add names beyond the module's own declarations, in the order given."""
+    def add(self, declared: Sequence[Declared] | NDArray[np.int64]) -> None:
+        """Add names beyond the module's own declarations, in order: int64[names, 7] like `Declared`."""
         if self.results:
             raise AssertionError("variables come before results")
         before = len(self)
@@ -114,9 +114,8 @@ class Variables:
             old = getattr(self, column)
             setattr(self, column, np.concatenate((old, added.astype(old.dtype))))
         self.nets += int(width.sum())
-        for at, one in enumerate(declared, before):
-            if one.scope:
-                self.scoped[one.scope, one.name] = at
+        for row in np.flatnonzero(rows[:, 6]).tolist():
+            self.scoped[int(rows[row, 6]), int(rows[row, 0])] = before + row
 
     def new_result(self, place: int, name: str = "") -> int:
         """Return a new local net for the result of an operator at `place`, or one of that name."""
