@@ -5,6 +5,7 @@ Takes a request, gives the loaded design; from that the graph, times, trails and
 
 from __future__ import annotations
 
+import os
 from collections.abc import Mapping
 from typing import NamedTuple
 
@@ -203,6 +204,10 @@ def _units(request: Request, collector: Collector) -> list[Unit]:
     options = PreprocessOptions(request.include_dirs, dict(request.defines))
     units: list[Unit] = []
     before: Preprocessed | None = None
+    paths = [os.path.normpath(file) for file in request.files if isinstance(file, str)]
+    for path in dict.fromkeys(path for path in paths if paths.count(path) > 1):
+        collector.tell("U112", path=path)
+    collector.refuse()
     for file in request.files:
         before = preprocess(_file(file), options, collector, before)
         units.append(read_unit(before, collector))

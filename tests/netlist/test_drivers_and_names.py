@@ -108,3 +108,29 @@ def test_negative_pieces_of_a_constant_are_cut_to_their_width() -> None:
     )
     template = tardigate.read_text(verilog).loaded.flat.templates[0]
     assert template.parameters == "P=63"
+
+
+ARRAY = """
+module top(input [1:0] a, output [1:0] y);
+  wire [1:0] m [0:1];
+  assign #1 m[0] = a, m[1] = ~m[0];
+  assign #2 y = m[1];
+endmodule
+"""
+
+
+@pytest.mark.parametrize(
+    ("name", "nets"),
+    [
+        ("m", {"m[0][0]", "m[0][1]", "m[1][0]", "m[1][1]"}), ("m[0]", {"m[0][0]", "m[0][1]"}),
+        ("m[1][0]", {"m[1][0]"}), ("m[*][1]", {"m[0][1]", "m[1][1]"}),
+    ],
+)  # fmt: skip
+def test_arrays_of_nets_are_found_whole_by_element_and_by_bit(name: str, nets: set[str]) -> None:
+    trails = tardigate.read_text(ARRAY).slowest(50, sources=name)
+    assert {trail.source.name for trail in trails} == nets
+
+
+def test_an_element_that_is_not_there_is_refused() -> None:
+    with pytest.raises(tardigate.InputRefusedError):
+        tardigate.read_text(ARRAY).slowest(sources="m[2]")

@@ -5,6 +5,7 @@ from collections.abc import Callable
 import pytest
 from hypothesis import given, strategies as st
 
+import tardigate
 from tardigate.parts.draft import UndescribedModule, draft_text
 from tardigate.parts.dump import dump_kind
 from tardigate.parts.gates import BUFFERS, GATES, OPERATORS, THREE_STATE
@@ -117,3 +118,27 @@ def test_comments_are_at_most_100_columns_wide() -> None:
     comments = [line for line in draft_text([], [register, box]).splitlines() if "//" in line]
     assert len(comments) > 8
     assert max(map(len, comments)) <= 100
+
+
+UNTIMED = """
+module top(input [1:0] a, output y, z);
+  pick u1 (y, a[0], a[1]);
+  half u2 (z, a);
+endmodule
+primitive pick (y, a, b);
+  output y; input a, b;
+  table 0 ? : 0; 1 0 : 0; 1 1 : 1; endtable
+endprimitive
+module half(output y, input [1:0] a);
+  and (y, a[0], a[1]);
+  specify (a[0] => y) = 3; endspecify
+endmodule
+"""
+
+
+def test_a_default_is_drafted_for_primitives_and_cells_without_all_times() -> None:
+    design = tardigate.read_text(UNTIMED)
+    draft = design.draft()
+    assert "`half`, `pick`" in draft
+    filled = tardigate.read_text(UNTIMED, parts=draft.replace("-:-:-", "2"))
+    assert {sink.name: sink.settles_ns for sink in filled.settle().outputs()} == {"y": 2.0, "z": 3.0}

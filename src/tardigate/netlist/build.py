@@ -6,7 +6,7 @@ instances undescribed: `check` and the pipeline refuse what a figure would need.
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from typing import NamedTuple
 
 from tardigate.netlist.flat import Flat
@@ -45,17 +45,21 @@ def build(
     """Elaborate a design. Raises InputRefusedError."""
     modules = collect(units, library.describes, collector, bulk)
     collector.refuse()
-    found = find_top(modules, top, collector)
+    doubt = Collector()
+    found = find_top(modules, top, doubt)
     if found is None:
-        _tell_unreadable(modules, collector)
-    collector.refuse()
+        unread = _tell_unreadable(modules, modules.names(), collector)
+        for told in doubt.all() if not unread else ():
+            collector.add(told)
+        collector.refuse()
     assert found is not None
     shop = Shop(modules, library, collector)
     if any(unit.cells for unit in units):
         from tardigate.netlist.cell_shop import Cells  # few designs have any
 
         shop.cells = Cells(shop)
-    modules.readable(found, collector)
+    if not modules.readable(found, collector):
+        _tell_unreadable(modules, _below(modules, found), collector)
     collector.refuse()
     if shop.is_cell(found):
         collector.tell("N107", modules.span(found), name=found)
@@ -63,6 +67,8 @@ def build(
     first = shop.number(found, Overrides({}))
     templates = shop.elaborate_all()
     tell_ring(templates, collector)
+    if modules.has_broken:
+        _tell_unreadable(modules, _below(modules, found), collector)
     collector.refuse()
     flat = _stamped(templates, first, shop.kinds.kinds, found, modules, collector)
     return Built(
@@ -83,15 +89,29 @@ def _stamped(
         raise
 
 
-def _tell_unreadable(modules: Modules, collector: Collector) -> None:
-    """Tell what is wrong with modules that do not parse: that may be why there is not one top."""
+def _tell_unreadable(modules: Modules, names: Iterable[str], collector: Collector) -> bool:
+    """Tell what is wrong with those of some modules that do not parse; return whether there are any."""
     from tardigate.syntax.verilog_parser import SYNTAX  # few runs come here
 
-    for name in modules.names():
-        if not modules.described(name):
-            try:
+    any_told = False
+    for name in names:
+        try:
+            if not modules.described(name):
                 modules.tree(name)
-            except InputRefusedError as refused:
-                for diagnostic in refused.diagnostics:
-                    if diagnostic.code in SYNTAX:
-                        collector.add(diagnostic)
+        except InputRefusedError as refused:
+            for diagnostic in refused.diagnostics:
+                if diagnostic.code in SYNTAX:
+                    collector.add(diagnostic)
+                    any_told = True
+    return any_told
+
+
+def _below(modules: Modules, top: str) -> list[str]:
+    """Return the modules that the texts of a module and of those below it name."""
+    found = {top: None}
+    work = [top]
+    while work:
+        more = [below for below in modules.uses(work.pop()) if below not in found]
+        found |= dict.fromkeys(more)
+        work += more
+    return list(found)

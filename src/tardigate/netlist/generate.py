@@ -13,6 +13,7 @@ from tardigate.netlist.constants import NotConstantError, Value, evaluate, whole
 from tardigate.netlist.declare import Declarer
 from tardigate.netlist.parameters import parameter_values
 from tardigate.netlist.plain_tree import trees_of
+from tardigate.netlist.rounds import Round
 from tardigate.netlist.scopes import CHOICES, GENERATE, Scope
 from tardigate.syntax import tree
 
@@ -100,10 +101,12 @@ class _Expansion:
         values = {**scope.values}
         seen: set[int] = set()
         try:
+            holds = Round(loop.condition, loop.variable, values)
+            following = Round(loop.following, loop.variable, values)
             index = whole(evaluate(loop.first, values), loop.first.at)
             while True:
                 values[loop.variable] = Value(index, 32)
-                if not evaluate(loop.condition, values).value:
+                if not holds.value(values):
                     return
                 if index in seen or abs(index) >> 31:
                     reason = f"`{loop.variable}` comes to {index} again" if index in seen else "it overflows"
@@ -111,7 +114,7 @@ class _Expansion:
                     return
                 seen.add(index)
                 self._add(scope, loop.block, f"{loop.block.name or name}[{index}]", dict(values), looping)
-                index = whole(evaluate(loop.following, values), loop.following.at)
+                index = following.value(values)
         except NotConstantError as error:
             self.collector.tell("N120", self.text.span(error.at), reason=error.reason)
 

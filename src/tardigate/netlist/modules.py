@@ -85,6 +85,11 @@ class Modules:
             return False
         return True
 
+    @property
+    def has_broken(self) -> bool:
+        """Tell whether a module that was asked for could not be parsed."""
+        return bool(self._broken - self.behavioural.keys())
+
     def declarations(self, name: str) -> list[Parameter]:
         """Return the parameter declarations of a module that can be parsed, in order."""
         return declarations_of(self.tree(name))

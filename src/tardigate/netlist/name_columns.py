@@ -5,6 +5,7 @@ Takes the numbers of names in a file, gives columns that read like sequences of 
 
 from __future__ import annotations
 
+import re
 from abc import abstractmethod
 from collections.abc import Sequence
 from typing import overload
@@ -15,6 +16,8 @@ from numpy.typing import NDArray
 from tardigate.netlist.flat import CONSTANT_NAMES, CONSTANTS
 from tardigate.netlist.variables import RANGED, Shape, Variables
 from tardigate.syntax.intern import Interned
+
+_INDICES = re.compile(r"(\[-?\d+\])+$")
 
 
 class Column(Sequence[str]):
@@ -68,6 +71,7 @@ class NetNames(Column):
         name, bracket, index = text.rpartition("[")
         if bracket and index[:-1].lstrip("-").isdigit() and index[-1] == "]":
             found += self._bits_of(name, int(index[:-1]))
+            found += self._elements(text)
         if text.startswith("assign:"):
             found += [at for at in range(self._first_result, variables.nets) if self[at] == text]
         return found
@@ -79,8 +83,22 @@ class NetNames(Column):
             bits = variables.bits(at)
             if index is None:
                 found += bits
-            elif variables.flags[at] & RANGED or at in variables.arrays:
+            elif variables.flags[at] & RANGED:
                 found += [bit for bit in bits if self[bit].endswith(f"[{index}]")]
+        return found
+
+    def _elements(self, text: str) -> list[int]:
+        """Return the bits of the element of an array that is called `text`, or of all that begins so."""
+        variables = self._variables
+        found: list[int] = []
+        for at in self._called(_INDICES.sub("", text)) if variables.arrays else ():
+            names = [bit_name(variables, at, offset) for offset in range(int(variables.width[at]))]
+            base = int(variables.base[at])
+            found += [
+                base + offset
+                for offset, name in enumerate(names)
+                if at in variables.arrays and (name == text or name.startswith(f"{text}["))
+            ]
         return found
 
     def _called(self, name: str) -> list[int]:

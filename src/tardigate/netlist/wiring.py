@@ -133,7 +133,12 @@ class Wiring:
         dotted = ".".join((*elements, name))
         target = None if landing is None else self._hierarchy.target(landing, name)
         if target is None:
-            self.collector.tell("N137", self.span(reference.at, len(reference.path[0])), name=dotted)
+            from tardigate.netlist.lost_path import lost_at  # only on the way to a refusal
+
+            room = self.collector.room("N137")
+            hint = lost_at(self._hierarchy, elements, name, self.scope) if room else None
+            span = self.span(reference.at, len(reference.path[0]))
+            self.collector.tell("N137", span, name=dotted, hint=hint)
             return []
         inside = target.inside.variables
         outside = target.inside is not self._hierarchy

@@ -65,9 +65,24 @@ def draft_text(kinds: Sequence[Kind], modules: Sequence[UndescribedModule]) -> s
     for word, entries in (("gates", gates), ("operators", operators)):
         if entries:
             lines += ["", f"  {word} ns {{               //  min:typ:max", *_table(entries), "  }"]
+    cells = sorted({kind.name for kind in kinds if kind.group == "part"})
+    if cells:
+        lines += ["", *_default(cells)]
     for part in parts:
         lines += ["", *part]
     return "\n".join([*lines, "}", ""])
+
+
+def _default(cells: Sequence[str]) -> list[str]:
+    """Return a default, for primitives and cells of the source whose own times do not cover every change."""
+    shown = ", ".join(f"`{name}`" for name in cells[:6]) + (" ..." if len(cells) > 6 else "")
+    return [
+        f"  // {shown}: not every change has a time in the source. Give the instance of a",
+        "  // primitive a `#`, the specify block of a cell a path, or fill in what counts for all of them:",
+        "  default ns {",
+        *(f"    {symbol}  {EMPTY};" for symbol in PLAIN),
+        "  }",
+    ]
 
 
 def _gate_entry(kind: Kind) -> tuple[str, int, bool]:

@@ -10,7 +10,7 @@ from collections.abc import Sequence
 from typing import NamedTuple
 
 from tardigate.parts.gates import DelayOf, source_delays
-from tardigate.parts.kind import Edge, Kind, Way
+from tardigate.parts.kind import Edge, Kind, Origin, Way
 from tardigate.parts.kind_maker import KindHop, make_kind
 from tardigate.parts.source_delay import SourceDelay
 
@@ -46,9 +46,17 @@ def register_kind(
         forced = Edge.RISE if control.sets else Edge.FALL
         hops.append(KindHop(pin, 0, active, forced, after("LH" if control.sets else "HL")))
     pins = ["q", "clock", *_control_names(controls), *(f"d{i + 1}" for i in range(data))]
+    hops = [_said(hop, pins) for hop in hops]
     ways = [Way.OUTPUT] + [Way.INPUT] * (len(pins) - 1)
     sinks = range(2, len(pins))
     return make_kind(REGISTER, "operator", pins, ways, hops, sinks=sinks, register=True)
+
+
+def _said(hop: KindHop, pins: Sequence[str]) -> KindHop:
+    """Return a hop that says which change has no time, if it has none."""
+    if hop.delay.origin != Origin.MISSING or hop.delay.words:
+        return hop
+    return hop._replace(delay=hop.delay._replace(words=f"no `#` where {pins[hop.tail]} moves it"))
 
 
 def _control_names(controls: Sequence[Control]) -> list[str]:
