@@ -50,6 +50,7 @@ STEP = "written here, in the definition of `STEP`"
          [(3, "3'b9", ""), (1, "STEP", "`STEP` is defined here")]),
         ("`define STEP(p) {p}", "assign y = `STEP( 3'b9 );",
          [(3, "3'b9", ""), (1, "STEP", "`STEP` is defined here")]),
+        ("`define STEP(p) (p) & 3'b9", "assign y = `STEP(a);", [(3, "`STEP(a)", ""), (1, "3'b9", STEP)]),
         ("`define OTHER `STEP\n`define STEP 3'b9", "assign y = `OTHER;",
          [(4, "`OTHER", ""), (2, "3'b9", STEP)]),
         ("`define STEP a\\\n & 3'b9", "assign y = `STEP;", [(4, "`STEP", ""), (2, "3'b9", STEP)]),

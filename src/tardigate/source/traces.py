@@ -9,6 +9,7 @@ from __future__ import annotations
 import re
 from bisect import bisect_right
 from collections.abc import Iterator, Mapping
+from itertools import islice
 from typing import NamedTuple, Protocol
 
 from tardigate.source.files import SourceFile
@@ -50,7 +51,7 @@ class Named(Protocol):
 
 
 class Written(NamedTuple):
-    """A definition: its name from `at` to `start`, its text from there on."""
+    """A definition: its name, and what formal arguments it has, from `at` to `start`, then its text."""
 
     file: SourceFile
     name: bytes
@@ -91,15 +92,18 @@ class Traces:
         first: Written | None = None
         for macro in self._reached(at, use):
             first = first or macro
-            found = alone(word).search(macro.file.data, macro.start, macro.stop)
-            if found:
+            hits = list(islice(alone(word).finditer(macro.file.data, macro.start, macro.stop), 2))
+            if len(hits) > 1 and not word[:1].isalnum():
+                break  # which of the signs is meant cannot be told
+            for found in hits[:1]:
                 name = macro.name.decode("utf-8", "replace")
                 label = f"written here, in the definition of `{name}`"
                 return ((macro.file.span(found.start(), found.end()), label),)
         if first is None:
             return ()
         label = f"`{first.name.decode('utf-8', 'replace')}` is defined here"
-        return ((first.file.span(first.at, first.start), label),)
+        own = TOKEN.match(first.file.data, first.at)
+        return ((first.file.span(first.at, own.end() if own else first.start), label),)
 
     def _reached(self, at: int, use: bytes) -> Iterator[Written]:
         """Yield the definition behind a use, and those that it uses in turn, the nearest first."""
@@ -119,14 +123,14 @@ class Traces:
             place = self._earlier[name].defined
         if place is None:
             return None
-        stop = place.stop
         data = place.file.data
+        start = stop = _behind_formals(data, place.stop)
         while True:
             stop = data.find(b"\n", stop)
             if stop < 0:
-                return Written(place.file, name, place.start, place.stop, len(data))
+                return Written(place.file, name, place.start, start, len(data))
             if not data[:stop].endswith((b"\\", b"\\\r")):
-                return Written(place.file, name, place.start, place.stop, stop)
+                return Written(place.file, name, place.start, start, stop)
             stop += 1
 
     def included(self, at: int, path: str) -> tuple[tuple[Span, str], ...]:
@@ -136,6 +140,12 @@ class Traces:
             found.append((place.file.span(place.start, place.stop), "included from here"))
             path = place.file.path
         return tuple(found)
+
+
+def _behind_formals(data: bytes, at: int) -> int:
+    """Return where a macro's text begins when its name ends at `at`: behind its formal arguments, if any."""
+    close = data.find(b")", at) if data[at : at + 1] == b"(" else -1
+    return close + 1 if close >= 0 else at
 
 
 def alone(word: bytes) -> re.Pattern[bytes]:

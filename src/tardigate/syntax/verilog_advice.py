@@ -10,7 +10,7 @@ from collections.abc import Callable, Mapping
 from functools import cache
 from typing import NamedTuple
 
-from tardigate.source.diagnostic import Diagnostic, Related
+from tardigate.source.diagnostic import Diagnostic, Related, did_you_mean
 from tardigate.source.placed import PlacedText
 from tardigate.source.span import Span
 from tardigate.syntax.later_words import LATER
@@ -74,6 +74,13 @@ INFIX = frozenset({
 """What may begin an operand, and what may follow one; a list of all that helps nobody."""
 
 SLIPS = {
+    "IEEE 1364-2005 has no block on its own: leave `begin` and `end` out, or write `if (1) begin`.": (
+        "; generate begin",
+    ),
+    "A `parameter` cannot stand in a generate block: write `localparam`.": (
+        "; if (1) begin parameter",
+        "; if (1) begin : b parameter",
+    ),
     "Write the net in brackets: `.pin(net)`.": (
         "; u u(.p n", "; u u(.p ,", "; u u(.p )", "; u u(a, .p n", "; u u(a, .p ,", "; u u(a, .p )",
     ),
@@ -150,6 +157,8 @@ def _plain(site: Site, trouble: Trouble, hint: str | None) -> Diagnostic:
         wanted = f"`{repair.sign}`"
     if hint is None and repair is None and trouble.before and trouble.found.text in (*STARTERS, *CLOSERS):
         return _after(site, trouble, wanted)
+    if hint is None and trouble.found.text == "=" and len(trouble.before) == 2:  # `asign y = a;`
+        hint = did_you_mean(trouble.before[0].text, [*STARTERS])
     if hint is None and trouble.found.kind:
         hint = near(found, trouble.accepted, site.scout)
     return Diagnostic.of("V001", site.span(trouble.found), hint=hint, found=f"`{found}`", wanted=wanted)
