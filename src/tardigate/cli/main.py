@@ -12,7 +12,7 @@ from collections.abc import Callable, Sequence
 from tardigate import __version__
 from tardigate.cli.answer import Answer
 from tardigate.cli.options import HELP, Options, command_of, read_options
-from tardigate.cli.screen import Screen
+from tardigate.cli.screen import Screen, UnwrittenError
 from tardigate.cli.status import Status, status_of
 from tardigate.report.looks import Look
 
@@ -43,6 +43,10 @@ def run(words: Sequence[str] | None = None) -> int:
 def _act(words: list[str], screen: Screen) -> None:
     try:
         options = read_options(words)
+    except BrokenPipeError:
+        raise
+    except OSError as error:  # older Pythons let through what hinders the help
+        raise UnwrittenError(error.strerror or str(error)) from None
     except SystemExit:
         screen.text("")  # the help has been printed; whether it arrived is known once it is flushed
         raise

@@ -7,9 +7,10 @@ is faulty: `recovery`, on the same tables, tells where and what could stand ther
 
 from __future__ import annotations
 
-import re
 from collections.abc import Callable, Iterator
 from typing import Any
+
+from tardigate.syntax.patterns import compiled
 
 Make = Callable[[list[Any]], Any]
 
@@ -39,7 +40,7 @@ class Machine:
         self.tables = tables
         self._states: list[dict[str, int]] = tables["states"]
         self._start, self._end = tables["start"], tables["end"]
-        self._scan = re.compile(tables["pattern"])
+        self._scan = compiled(tables["pattern"])
         self._words: dict[str, dict[str, str]] = tables["words"]
         self.words = frozenset(word for some in self._words.values() for word in some)
         self._ignored = frozenset(tables["ignored"])

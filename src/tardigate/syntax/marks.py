@@ -10,10 +10,12 @@ import re
 from collections.abc import Callable
 from functools import cache
 
+from tardigate.syntax.patterns import compiled
+
 
 def late(pattern: bytes) -> Callable[[], re.Pattern[bytes]]:
     """Return a pattern that is compiled when it is first called for; most texts need few of them."""
-    return cache(lambda: re.compile(pattern))
+    return cache(lambda: compiled(pattern))
 
 
 NAME = re.compile(rb"[A-Za-z_][A-Za-z0-9_$]*|\\[^\s]+")

@@ -12,6 +12,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tardigate.syntax.outline import ModuleText
+from tardigate.syntax.patterns import compiled
 from tardigate.syntax.plain import STRANGE
 from tardigate.syntax.scan import CLOSE, DOT, LEFT, OPEN, OTHER, RIGHT, SEMICOLON, WORD, Scan
 
@@ -22,7 +23,7 @@ _WITH_PARENTHESES = ("if", "for", "while", "repeat", "wait")
 _CLOSERS = ("end", "join", "endcase", "endtask", "endfunction")
 _WORDS = (*_BEGINNERS, *_BLOCKS, *_CASES, *_WITH_PARENTHESES, *_CLOSERS, "forever", "else", "default")
 
-_STRING = re.compile(rb'"(?:[^"\\\n]++|\\.)*+"?', re.DOTALL)
+_STRING = compiled(rb'"(?:[^"\\\n]++|\\.)*+"?', re.DOTALL)
 _REAL = re.compile(rb"[0-9][0-9_]*(?:\.[0-9][0-9_]*)?(?:[eE][+\-]?[0-9_]+)?")
 _BASED = re.compile(
     rb"'[sS]?(?:[bB]\s*[01xXzZ?_]+|[oO]\s*[0-7xXzZ?_]+|[hH]\s*[0-9a-fA-FxXzZ?_]+|[dD]\s*(?:[0-9_]+|[xXzZ?]_*))"

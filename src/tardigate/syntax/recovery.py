@@ -7,10 +7,11 @@ tells one that an earlier one caused. Used on refused texts alone; words nothing
 
 from __future__ import annotations
 
-import re
 from collections import deque
 from collections.abc import Iterator, Mapping, Sequence
 from typing import Any, NamedTuple
+
+from tardigate.syntax.patterns import compiled
 
 END = "$END"
 """The terminal for the end of the text."""
@@ -100,7 +101,7 @@ class Scout:
         self._states: list[dict[str, int]] = tables["states"]
         self._rules = [(rule["size"], rule["name"]) for rule in tables["rules"]]
         self._start, self._last = tables["start"], tables["end"]
-        self._scan = re.compile(tables["pattern"])
+        self._scan = compiled(tables["pattern"])
         self._words: dict[str, dict[str, str]] = tables["words"]
         self._ignored = frozenset(tables["ignored"])
         self._terminals = (*tables["terminals"], END)

@@ -13,6 +13,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tardigate.syntax.intern import PAD, Interned, intern
+from tardigate.syntax.patterns import compiled
 
 SPACE, WORD, OPEN, CLOSE, COMMA, SEMICOLON, DOT, LEFT, RIGHT, OTHER = range(10)
 """Classes of bytes, and of marks: white space, word, ( ) , ; . [ ], anything else."""
@@ -30,7 +31,7 @@ _TABLE = bytes(_CLASSES)
 _PIECE = 1 << 18
 """Bytes that are looked at in one go."""
 
-_STRING = re.compile(rb'\\[^ \t\r\n\f\v]+|"(?:[^"\\\n]++|\\.)*+"?', re.DOTALL)
+_STRING = compiled(rb'\\[^ \t\r\n\f\v]+|"(?:[^"\\\n]++|\\.)*+"?', re.DOTALL)
 
 
 class Scan(NamedTuple):

@@ -6,7 +6,6 @@ not say what the table does.
 
 from __future__ import annotations
 
-import re
 from dataclasses import replace
 from functools import cache
 from typing import Any, cast
@@ -17,6 +16,7 @@ from tardigate.source.placed import PlacedText
 from tardigate.syntax.grammar import Reader
 from tardigate.syntax.lalr import NotInGrammarError, Token
 from tardigate.syntax.outline import ModuleText
+from tardigate.syntax.patterns import compiled
 from tardigate.syntax.tree import Primitive
 from tardigate.syntax.udp_check import Checker
 from tardigate.syntax.udp_draft import Declared, Draft, DraftRow, Word
@@ -32,7 +32,7 @@ _WIDE = 0xFEE0
 """From a sign of ASCII to its full-width form: see `udp.lark`."""
 _INNER = {code: code + _WIDE for code in range(128) if chr(code).isalnum()}
 _OUTER = {wide: code for code, wide in _INNER.items()}
-_ENDS = re.compile(r'\\\S+|"(?:[^"\\\n]++|\\.)*+"|(?<![\w$])(?:table|endtable)(?![\w$])')
+_ENDS = compiled(r'\\\S+|"(?:[^"\\\n]++|\\.)*+"|(?<![\w$])(?:table|endtable)(?![\w$])')
 
 
 def parse_primitive(unit: Unit, block: ModuleText) -> Primitive:
