@@ -71,6 +71,16 @@ def test_a_cell_of_procedural_code_is_undescribed_and_its_reason_told_when_figur
     assert [told.code for told in refused.value.diagnostics] == ["V004"]
 
 
+@pytest.mark.parametrize("events", ["@*", "@(*)", "@(C or D)", "@(posedge C or D)"])
+def test_a_cell_with_an_always_without_edges_is_undescribed(events: str) -> None:
+    text = BEHAVIOUR.format("`celldefine").replace("initial Q = 0; always @(posedge C)", f"always {events}")
+    design = tardigate.read_text(text)
+    assert [module.name for module in design.loaded.undescribed] == ["ff"]
+    with pytest.raises(tardigate.InputRefusedError) as refused:
+        design.settle()
+    assert [told.code for told in refused.value.diagnostics] == ["V010"]
+
+
 def test_any_other_module_of_procedural_code_is_refused_at_once() -> None:
     with pytest.raises(tardigate.InputRefusedError) as refused:
         tardigate.read_text(BEHAVIOUR.format(""))

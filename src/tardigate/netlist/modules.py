@@ -17,8 +17,10 @@ from tardigate.source.faults import InputRefusedError
 from tardigate.source.span import Span
 from tardigate.syntax.outline import ModuleText
 from tardigate.syntax.placing import in_force
-from tardigate.syntax.tree import Module, Parameter, Path, Specify, TimingCheck
+from tardigate.syntax.tree import Always, Module, Parameter, Path, Specify, TimingCheck
 from tardigate.syntax.verilog_reader import Unit, parse_module
+
+_PROCEDURAL = ("V004", "V010")
 
 
 @dataclass(slots=True)
@@ -74,10 +76,12 @@ class Modules:
         if name in self._broken:
             return False
         try:
-            self.tree(name)
+            module = self.tree(name)
+            if name in self.cells and not self.has_specify(name):
+                self._refuse_unclocked(module)
         except InputRefusedError as refused:
             self._broken.add(name)
-            if name in self.cells and all(told.code == "V004" for told in refused.diagnostics):
+            if name in self.cells and all(told.code in _PROCEDURAL for told in refused.diagnostics):
                 self.behavioural[name] = refused.diagnostics
                 return False
             for diagnostic in refused.diagnostics:
@@ -93,6 +97,16 @@ class Modules:
     def declarations(self, name: str) -> list[Parameter]:
         """Return the parameter declarations of a module that can be parsed, in order."""
         return declarations_of(self.tree(name))
+
+    def _refuse_unclocked(self, module: Module) -> None:
+        """Refuse a cell with an `always` that waits for no edge alone (V010): it is no register."""
+        text = self.unit(module.name).text
+        for item in module.items:
+            if isinstance(item, Always) and not (item.events and all(event.edge for event in item.events)):
+                reason = "it does not wait for edges alone"
+                span = text.span(item.at)
+                told = Diagnostic.of("V010", span, reason=reason, module=module.name)
+                raise InputRefusedError((told,))
 
     def says_times(self, name: str) -> bool:
         """Tell whether a module that can be parsed has a specify block with paths or checks."""
