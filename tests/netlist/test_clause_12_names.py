@@ -7,6 +7,8 @@ from collections.abc import Callable
 
 import pytest
 
+from tardigate.netlist.flat import Flat
+
 Lines = Callable[..., list[str]]
 Codes = Callable[..., list[str]]
 
@@ -200,3 +202,20 @@ def test_12_6_names_upwards(instances: Lines, told: Codes) -> None:
     text = "module board(input a, output y);\nwire n;\nbuf g (n, a);\nsub u (y);\nendmodule\nmodule sub(output y);\nbuf g (y, board.n);\nendmodule\n"
     codes = told(text)
     assert codes == ["N137"] or "buf u.g: out=y, in=n" in instances(text)
+
+
+LUT = """family F {
+  part LUT "table" {
+    parameter INIT[1:0] = 1;
+    inputs A; output Y = INIT[{A}];
+    times ns { tpd A => Y 1; }
+  }
+}
+"""
+
+
+def test_12_2_1_defparam_of_one_member_of_an_array_of_parts(elaborate: Callable[..., Flat]) -> None:
+    text = "module board(input [1:0] a, output [1:0] y);\nLUT u [1:0] (.A(a), .Y(y));\nLUT v [1:0] ();\n"
+    flat = elaborate(text + "defparam u[1].INIT = 2;\nendmodule\n", LUT)
+    values = [flat.kinds[kind].parameters for kind in flat.inst_kind.tolist()]
+    assert values == [(("INIT", 2),), (("INIT", 1),), (("INIT", 1),), (("INIT", 1),)]

@@ -221,10 +221,10 @@ class Hierarchy:
             found += self.scopes[at].blocks.values()
         return found
 
-    @property
-    def has_settings(self) -> bool:
-        """Tell whether any instance is set by a defparam."""
-        return bool(self._given)
+    def sets_members(self, seat: Seat) -> bool:
+        """Tell whether defparams set single members of an array of instances."""
+        name = seat.instance.name
+        return any(at == seat.scope and element.partition("[")[0] == name for at, element in self._given)
 
     def overrides(self, item: tree.Instances, scope: int) -> dict[str, Value] | None:
         """Return what an instance statement's `#(...)` overrides, None after telling (N168, N120)."""

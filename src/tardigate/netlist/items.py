@@ -151,6 +151,8 @@ class Items:
         connections = [tree.Connection("", terminal, terminal.at) for terminal in gate.terminals]
         nets = self._pins(pins, connections, len(indices), scalar=True)
         if nets is not None:
+            if gate.name:
+                self._note_name(gate.name, gate.at, gate.range is not None)
             self._add(kind, gate.name, gate.range is not None, indices, gate.at, nets)
 
     def _pulls(self, item: tree.Pulls) -> None:
@@ -184,8 +186,6 @@ class Items:
     def _add(
         self, kind: int, name: str, is_array: bool, indices: Sequence[int], at: int, pins: list[list[int]]
     ) -> None:
-        if name:
-            self._note_name(name, at, is_array)
         for index, nets in zip(indices, pins, strict=True):
             number = -1
             if is_array and name:
@@ -220,7 +220,8 @@ class Items:
                 self.collector.tell("N108", span, module=item.module)
                 return
             seat = Seat(item, instance, self.wiring.scope)
-            if self.hierarchy.has_settings and instance.range is not None:
+            self._note_name(instance.name, instance.at, instance.range is not None)
+            if instance.range is not None and self.hierarchy.sets_members(seat):
                 self._array_with_settings(seat, own or {})
             else:
                 values = self.hierarchy.settled(seat, instance.name, own or {})
@@ -258,8 +259,6 @@ class Items:
         if part is not None:
             self._add(number, instance.name, is_array, indices, instance.at, nets)
             return
-        if not only:
-            self._note_name(instance.name, instance.at, is_array)
         for index, of_copy in zip(indices, nets, strict=True):
             name = f"{self._prefix}{instance.name}" + (f"[{index}]" if is_array else "")
             self.children.append(Child(name, number, np.array(of_copy, np.int32), instance.at))
