@@ -139,3 +139,33 @@ def told() -> Callable[..., list[str]]:
 def delays() -> Callable[[str], dict[str, list[float]]]:
     """`delays(text)["g1 in>out rf"]`: min, typ and max in fs of a hop of a part instance."""
     return _delays
+
+
+CELL_WAYS = ("input", "output", "inout", "reg")
+
+
+def _cell_board(ports: str, body: str, block: str) -> str:
+    """Return a design that holds one instance of a cell, pin by pin on ports of the same names."""
+    names = [word for word in ports.replace(",", " ").split() if word not in CELL_WAYS and word[0] != "["]
+    pins = ", ".join(f".{name}({name})" for name in names)
+    return (
+        f"`timescale 1 ns / 1 ps\nmodule board({ports});\ncell_ u ({pins});\nendmodule\n"
+        f"module cell_({ports});\n{body}\nspecify\n{block}\nendspecify\nendmodule\n"
+    )
+
+
+@pytest.fixture(scope="session")
+def cell_board() -> Callable[..., str]:
+    """`cell_board(ports, body, block)`: a design that holds one instance of such a cell."""
+    return _cell_board
+
+
+@pytest.fixture
+def cell(delays: Callable[[str], dict[str, list[float]]]) -> Callable[..., dict[str, tuple[float, ...]]]:
+    """`cell("input a, output y", body, block)["a>y rf"]`: min, typ and max in ns of the cell's hops."""
+
+    def act(ports: str, body: str, block: str) -> dict[str, tuple[float, ...]]:
+        found = delays(_cell_board(ports, body, block))
+        return {key.removeprefix("u "): tuple(t / 10**6 for t in each) for key, each in found.items()}
+
+    return act

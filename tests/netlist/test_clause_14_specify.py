@@ -16,29 +16,6 @@ Cell = Callable[..., dict[str, tuple[float, ...]]]
 NS = 10**6
 
 
-@pytest.fixture
-def cell(delays: Callable[[str], Hops]) -> Cell:
-    """`cell("input a, output y", body, block)["a>y rf"]`: min, typ and max in ns of the cell's hops."""
-
-    def act(ports: str, body: str, block: str) -> dict[str, tuple[float, ...]]:
-        found = delays(_board(ports, body, block))
-        return {key.removeprefix("u "): tuple(t / NS for t in each) for key, each in found.items()}
-
-    return act
-
-
-def _board(ports: str, body: str, block: str) -> str:
-    """Return a design that holds one instance of a cell, pin by pin on ports of the same names."""
-    names = [word for word in ports.replace(",", " ").split() if word not in WAYS and word[0] != "["]
-    pins = ", ".join(f".{name}({name})" for name in names)
-    return (
-        f"`timescale 1 ns / 1 ps\nmodule board({ports});\ncell_ u ({pins});\nendmodule\n"
-        f"module cell_({ports});\n{body}\nspecify\n{block}\nendspecify\nendmodule\n"
-    )
-
-
-WAYS = ("input", "output", "inout", "reg")
-
 BUFFER = ("input a, output y", "buf (y, a);")
 AND = ("input a, b, output y", "and (y, a, b);")
 EITHER = ("input a, b, output y", "xor (y, a, b);")
@@ -99,11 +76,14 @@ def test_14_2_4_1_operators_of_conditions(cell: Cell, condition: str) -> None:
 
 @pytest.mark.parametrize("condition", ["m < 2", "hidden", "hidden == b"])
 def test_a_condition_that_is_not_looked_into_can_hold(
-    delays: Callable[[str], Hops], elaborate: Callable[..., Flat], condition: str
+    cell_board: Callable[..., str],
+    delays: Callable[[str], Hops],
+    elaborate: Callable[..., Flat],
+    condition: str,
 ) -> None:
     body = "reg hidden; initial hidden = 0; xor (y, a, b);"
     block = f"if ({condition}) (a => y) = 3; ifnone (a => y) = 1; (b, m *> y) = 9;"
-    text = _board("input a, b, input [1:0] m, output y", body, block)
+    text = cell_board("input a, b, input [1:0] m, output y", body, block)
     rows = [line for line in dump_kind(elaborate(text).kinds[0]).splitlines() if line.startswith("  a rise")]
     assert sorted(row.split()[5] for row in rows) == ["1:1:1", "1:1:1", "3:3:3", "3:3:3"]
     assert delays(text)["u b>y rr"] == [9 * NS] * 3
@@ -165,8 +145,10 @@ def test_4_10_3_specparams_outside_the_block_and_parameters(
     }  # fmt: skip
 
 
-def test_19_8_values_are_rounded_to_the_precision(delays: Callable[[str], Hops]) -> None:
-    text = _board(*BUFFER, "(a => y) = (1.5504, 2.0005);")
+def test_19_8_values_are_rounded_to_the_precision(
+    cell_board: Callable[..., str], delays: Callable[[str], Hops]
+) -> None:
+    text = cell_board(*BUFFER, "(a => y) = (1.5504, 2.0005);")
     assert delays(text) == {"u a>y rr": [1.550 * NS] * 3, "u a>y ff": [2.001 * NS] * 3}
 
 
@@ -183,8 +165,10 @@ def test_19_8_values_are_rounded_to_the_precision(delays: Callable[[str], Hops])
         ("(a => y) = (1, 2, 3, 4);", "N174"),
     ],
 )
-def test_faults_are_told_once_for_a_cell(told: Callable[..., list[str]], block: str, code: str) -> None:
-    text = _board("input a, b, output y", "and (y, a, b);", f"(b => y) = 1; {block}")
+def test_faults_are_told_once_for_a_cell(
+    cell_board: Callable[..., str], told: Callable[..., list[str]], block: str, code: str
+) -> None:
+    text = cell_board("input a, b, output y", "and (y, a, b);", f"(b => y) = 1; {block}")
     text = text.replace("endmodule\n", "cell_ v (.a(a), .b(b), .y());\nendmodule\n", 1)
     assert told(text).count(code) == 1
 
@@ -198,17 +182,20 @@ def test_14_4_the_larger_of_the_two(cell: Cell) -> None:
 
 
 def test_14_4_longest_and_shortest_way_inside(
+    cell_board: Callable[..., str],
     elaborate: Callable[..., Flat],
 ) -> None:
     body = "wire w; buf #5 (w, a); and (y, w, a);"
-    kind = elaborate(_board("input a, output y", body, "(a => y) = 3;")).kinds[0]
+    kind = elaborate(cell_board("input a, output y", body, "(a => y) = 3;")).kinds[0]
     rows = [line.split() for line in dump_kind(kind).splitlines() if "a rise -> y rise" in line]
     assert sorted(row[5] for row in rows) == ["3:3:3", "5:5:5"]
 
 
-def test_14_4_two_ways_of_one_pin_may_glitch(elaborate: Callable[..., Flat]) -> None:
+def test_14_4_two_ways_of_one_pin_may_glitch(
+    cell_board: Callable[..., str], elaborate: Callable[..., Flat]
+) -> None:
     body = "wire w; not #5 (w, a); and (y, w, a);"  # y is always 0 at last
-    rows = dump_kind(elaborate(_board("input a, output y", body, "(a => y) = 3;")).kinds[0]).splitlines()
+    rows = dump_kind(elaborate(cell_board("input a, output y", body, "(a => y) = 3;")).kinds[0]).splitlines()
     assert sorted(rows[1:]) == [
         "  a fall -> y fall 3:3:3", "  a fall -> y rise 5:5:5",
         "  a rise -> y fall 5:5:5", "  a rise -> y rise 3:3:3",
@@ -223,23 +210,27 @@ def test_14_4_what_no_path_times_takes_the_delay_inside(
     assert (found["b>y rr"], found["a>y rr"]) == ((1, 2, 3), _same(6))
 
 
-def test_what_nothing_times_is_named(elaborate: Callable[..., Flat]) -> None:
-    kind = elaborate(_board("input a, b, output y", "and (y, a, b);", "(a => y) = 6;")).kinds[0]
+def test_what_nothing_times_is_named(cell_board: Callable[..., str], elaborate: Callable[..., Flat]) -> None:
+    kind = elaborate(cell_board("input a, b, output y", "and (y, a, b);", "(a => y) = 6;")).kinds[0]
     assert kind.origin == Origin.MISSING
     assert "b => y" in kind.words
     assert "board.v:5" in kind.words
 
 
-def test_what_nothing_times_takes_the_default(elaborate: Callable[..., Flat]) -> None:
-    text = _board("input a, b, output y", "and (y, a, b);", "(a => y) = 6;")
+def test_what_nothing_times_takes_the_default(
+    cell_board: Callable[..., str], elaborate: Callable[..., Flat]
+) -> None:
+    text = cell_board("input a, b, output y", "and (y, a, b);", "(a => y) = 6;")
     kind = elaborate(text, "family F { default ns { tpd 8; } }").kinds[0]
     assert kind.origin == Origin.DEFAULT
     assert "b rise -> y rise 8:8:8" in dump_kind(kind)
 
 
-def test_a_gate_inside_takes_no_time_from_a_parts_file(elaborate: Callable[..., Flat]) -> None:
+def test_a_gate_inside_takes_no_time_from_a_parts_file(
+    cell_board: Callable[..., str], elaborate: Callable[..., Flat]
+) -> None:
     parts = "family F { gates ns { tpd and 8; } }"
-    kind = elaborate(_board(*AND, "(a, b *> y) = 6;"), parts).kinds[0]
+    kind = elaborate(cell_board(*AND, "(a, b *> y) = 6;"), parts).kinds[0]
     assert set(kind.delays.ravel().tolist()) == {6.0 * NS}
 
 
@@ -257,8 +248,10 @@ def test_a_gate_inside_takes_no_time_from_a_parts_file(elaborate: Callable[..., 
         ("assign y = a && b;", "rr ff"), ("wire w; and (y, a, w); buf (w, b);", "rr ff"),
     ],
 )  # fmt: skip
-def test_polarity_through_the_body(delays: Callable[[str], Hops], body: str, edges: str) -> None:
-    text = _board("input a, b, output y", body, "(a, b *> y) = 1;")
+def test_polarity_through_the_body(
+    cell_board: Callable[..., str], delays: Callable[[str], Hops], body: str, edges: str
+) -> None:
+    text = cell_board("input a, b, output y", body, "(a, b *> y) = 1;")
     text += "module half(input p, output q);\nnot (q, p);\nendmodule\n" if "half" in body else ""
     found = {key.split()[2] for key in delays(text) if key.startswith("u a>y")}
     assert found == set(edges.split())
@@ -272,12 +265,14 @@ def test_a_loop_of_gates_takes_the_paths_at_their_word(
     assert len(found) == 16
 
 
-def test_a_register_of_a_parts_file_inside(elaborate: Callable[..., Flat]) -> None:
+def test_a_register_of_a_parts_file_inside(
+    cell_board: Callable[..., str], elaborate: Callable[..., Flat]
+) -> None:
     parts = """family F { part DFF { inputs D, C; outputs Q; register posedge C { Q = D; }
     times ns { tpd C => Q 1; } } }"""
     body = "wire c, m; not (c, ckn); mux_ m0 (m, d, e, s); DFF f (.D(m), .C(c), .Q(q)); not (qn, q);"
     block = "(negedge ckn => (q +: d)) = 4; (negedge ckn => (qn -: d)) = 5;"
-    text = _board("input d, e, s, ckn, output q, qn", body, block)
+    text = cell_board("input d, e, s, ckn, output q, qn", body, block)
     text += "module mux_(output y, input a, b, s);\nassign y = s ? b : a;\nendmodule\n"
     kind = elaborate(text, parts).kinds[0]
     assert dump_kind(kind).splitlines() == [
@@ -288,10 +283,12 @@ def test_a_register_of_a_parts_file_inside(elaborate: Callable[..., Flat]) -> No
     ]  # fmt: skip
 
 
-def test_a_latch_that_hides_in_the_body(elaborate: Callable[..., Flat]) -> None:
+def test_a_latch_that_hides_in_the_body(
+    cell_board: Callable[..., str], elaborate: Callable[..., Flat]
+) -> None:
     body = "reg r; initial r = 0; buf (q, r);"
     block = "(d +=> q) = 1; (g => q) = 2; $setup(d, negedge g, 1);"
-    lines = dump_kind(elaborate(_board("input d, g, output q", body, block)).kinds[0]).splitlines()
+    lines = dump_kind(elaborate(cell_board("input d, g, output q", body, block)).kinds[0]).splitlines()
     assert lines == [
         "part cell_ PARTS register",
         "  d rise -> q rise 1:1:1", "  d fall -> q fall 1:1:1",
@@ -315,118 +312,15 @@ def test_parameters_choose_what_a_cell_does(delays: Callable[[str], Hops]) -> No
     assert delays(text) == {"u a>y rf": three, "u a>y fr": three, "v a>y rr": two, "v a>y ff": two}
 
 
-def test_a_parts_file_that_describes_the_name_wins(elaborate: Callable[..., Flat]) -> None:
+def test_a_parts_file_that_describes_the_name_wins(
+    cell_board: Callable[..., str], elaborate: Callable[..., Flat]
+) -> None:
     parts = "family F { part cell_ { inputs a; outputs y = a; times ns { tpd a => y 7; } } }"
-    kind = elaborate(_board(*BUFFER, "(a => y) = 6;"), parts).kinds[0]
+    kind = elaborate(cell_board(*BUFFER, "(a => y) = 6;"), parts).kinds[0]
     assert set(kind.delays.ravel().tolist()) == {7.0 * NS}
 
 
 # Registers of the body: primitives and textbook registers
-
-FLIP_FLOP = """primitive dff(q, d, c, r); output q; reg q; input d, c, r;
-table
- 0 r 1 : ? : 0; 1 r 1 : ? : 1; ? n 1 : ? : -; * ? 1 : ? : -; ? ? 0 : ? : 0; ? ? p : ? : -;
-endtable
-endprimitive
-"""
-LATCH = """primitive lat(q, d, g); output q; reg q; input d, g;
-table
- 0 1 : ? : 0; 1 1 : ? : 1; ? 0 : ? : -;
-endtable
-endprimitive
-"""
-
-
-def test_a_flip_flop_primitive(elaborate: Callable[..., Flat]) -> None:
-    body = "wire n; dff (n, d, ck, rn); not (qn, n); buf (q, n);"
-    block = """if (rn) (posedge ck => (q +: d)) = (4, 5); (posedge ck => (qn -: d)) = 6;
-    (negedge rn => (q +: 1'b0)) = (8, 7); (rn => qn) = 9;"""
-    text = _board("input d, ck, rn, output q, qn", body, block) + FLIP_FLOP
-    assert dump_kind(elaborate(text).kinds[0]).splitlines() == [
-        "part cell_ PARTS register",
-        "  ck rise -> q rise 4:4:4 launches", "  ck rise -> q fall 5:5:5 launches",
-        "  rn fall -> q fall 7:7:7",
-        "  ck rise -> qn rise 6:6:6 launches", "  ck rise -> qn fall 6:6:6 launches",
-        "  rn fall -> qn rise 9:9:9",
-        "  sinks d rn",
-    ]  # fmt: skip
-
-
-def test_a_latch_primitive_with_an_inverted_gate(elaborate: Callable[..., Flat]) -> None:
-    body = "wire g; not (g, gn); lat (q, d, g);"
-    text = _board("input d, gn, output q", body, "(d => q) = (1, 2); (gn => q) = 3;") + LATCH
-    assert dump_kind(elaborate(text).kinds[0]).splitlines() == [
-        "part cell_ PARTS register",
-        "  gn fall -> q rise 3:3:3 launches", "  gn fall -> q fall 3:3:3 launches",
-        "  d rise -> q rise 1:1:1", "  d fall -> q fall 2:2:2",
-        "  sinks d",
-    ]  # fmt: skip
-
-
-def test_14_4_a_latch_primitive_with_a_delay_of_its_own(elaborate: Callable[..., Flat]) -> None:
-    text = _board("input d, g, output q", "lat #5 (q, d, g);", "(d => q) = (1, 9); (g => q) = 3;") + LATCH
-    assert dump_kind(elaborate(text).kinds[0]).splitlines() == [
-        "part cell_ PARTS register",
-        "  g rise -> q rise 5:5:5 launches", "  g rise -> q fall 5:5:5 launches",
-        "  d rise -> q rise 5:5:5", "  d fall -> q fall 9:9:9",
-        "  sinks d",
-    ]  # fmt: skip
-
-
-def test_a_latch_before_the_gate_that_its_own_clock_closes(elaborate: Callable[..., Flat]) -> None:
-    body = "wire g, n; not (g, ck); lat (n, e, g); and (y, n, ck);"
-    text = _board("input e, ck, output y", body, "(ck => y) = (1, 2); $setup(e, posedge ck, 1);") + LATCH
-    assert dump_kind(elaborate(text).kinds[0]).splitlines() == [
-        "part cell_ PARTS register", "  ck rise -> y rise 1:1:1", "  ck fall -> y fall 2:2:2", "  sinks e",
-    ]  # fmt: skip
-
-
-def test_states_with_one_time_are_one_hop(elaborate: Callable[..., Flat]) -> None:
-    block = "if (b) (a => y) = 1; if (c) (a => y) = 1; ifnone (a => y) = 1; (b, c *> y) = 1;"
-    kind = elaborate(_board("input a, b, c, output y", "assign y = a & (b | c);", block)).kinds[0]
-    assert kind.hops == 6
-
-
-def test_a_gated_clock_is_taken_from_the_block(elaborate: Callable[..., Flat]) -> None:
-    body = "wire c; and (c, ck, en); dff (q, d, c, 1'b1);"
-    block = "(posedge ck => (q +: d)) = 4; $setup(d, posedge ck, 1);"
-    text = _board("input d, ck, en, output q", body, block) + FLIP_FLOP
-    assert dump_kind(elaborate(text).kinds[0]).splitlines() == [
-        "part cell_ PARTS register",
-        "  ck rise -> q rise 4:4:4 launches", "  ck rise -> q fall 4:4:4 launches", "  sinks d",
-    ]  # fmt: skip
-
-
-def test_a_textbook_register(elaborate: Callable[..., Flat]) -> None:
-    ports = "input d, ck, rn, output reg q"
-    body = "always @(posedge ck or negedge rn) if (!rn) q <= 0; else q <= d;"
-    block = "(posedge ck => (q +: d)) = 4; (negedge rn => (q +: 1'b0)) = 5;"
-    text = _board(ports, body, block).replace("output reg q", "output q", 1)
-    assert dump_kind(elaborate(text).kinds[0]).splitlines() == [
-        "part cell_ PARTS register",
-        "  ck rise -> q rise 4:4:4 launches", "  ck rise -> q fall 4:4:4 launches",
-        "  rn fall -> q fall 5:5:5",
-        "  sinks d rn",
-    ]  # fmt: skip
-
-
-def test_delayed_signals_of_a_check_are_what_they_follow(elaborate: Callable[..., Flat]) -> None:
-    body = "wire dck, dd; dff (q, dd, dck, 1'b1);"
-    block = "(posedge ck => (q +: d)) = 4; $setuphold(posedge ck, d, -1, 2, , , , dck, dd);"
-    text = _board("input d, ck, output q", body, block) + FLIP_FLOP
-    assert dump_kind(elaborate(text).kinds[0]).splitlines() == [
-        "part cell_ PARTS register",
-        "  ck rise -> q rise 4:4:4 launches", "  ck rise -> q fall 4:4:4 launches", "  sinks d",
-    ]  # fmt: skip
-
-
-def test_14_4_delays_of_a_primitive_and_of_buffers_before_it(elaborate: Callable[..., Flat]) -> None:
-    body = "wire c; buf #2 (c, ck); dff #(1, 6) (q, d, c, 1'b1);"
-    text = _board("input d, ck, output q", body, "(posedge ck => (q +: d)) = 4;") + FLIP_FLOP
-    assert dump_kind(elaborate(text).kinds[0]).splitlines() == [
-        "part cell_ PARTS register",
-        "  ck rise -> q rise 4:4:4 launches", "  ck rise -> q fall 8:8:8 launches", "  sinks d",
-    ]  # fmt: skip
 
 
 def test_a_condition_may_be_as_deep_as_it_likes(cell: Cell) -> None:
