@@ -219,3 +219,11 @@ def test_12_2_1_defparam_of_one_member_of_an_array_of_parts(elaborate: Callable[
     flat = elaborate(text + "defparam u[1].INIT = 2;\nendmodule\n", LUT)
     values = [flat.kinds[kind].parameters for kind in flat.inst_kind.tolist()]
     assert values == [(("INIT", 2),), (("INIT", 1),), (("INIT", 1),), (("INIT", 1),)]
+
+
+def test_12_5_a_net_reached_by_name_keeps_the_name_that_it_is_declared_with(instances: Lines) -> None:
+    """A port of an instance is called as the net that it is on, whoever else names it."""
+    text = "module board(input a, output y); sub u (a, ); buf g (y, u.k.q); endmodule\n"
+    text += "module sub(input a, output z); wire n; leaf k (a, n); endmodule\n"
+    text += "module leaf(input a, output q); not h (q, a); endmodule\n"
+    assert "buf g: out=y, in=u.n" in instances(text, top="board")
